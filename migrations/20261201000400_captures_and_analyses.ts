@@ -36,6 +36,19 @@ export async function up(knex: Knex): Promise<void> {
 		t.index(['practice_id', 'survey_id', 'created_at']);
 	});
 
+	// Files that have arrived but do not belong to a capture yet; cleared away when nothing claims them.
+	await knex.schema.createTable('uploads', (t) => {
+		t.text('id').primary();
+		t.text('practice_id').notNullable().references('practices.id');
+		t.text('survey_id').notNullable().references('surveys.id');
+		t.text('name').notNullable();
+		t.text('sha256').notNullable().references('stored_files.sha256');
+		t.bigInteger('size_bytes').notNullable();
+		t.text('uploaded_by').notNullable().references('users.id');
+		t.text('created_at').notNullable();
+		t.index(['practice_id', 'survey_id', 'created_at']);
+	});
+
 	await knex.schema.createTable('capture_files', (t) => {
 		t.text('id').primary();
 		t.text('practice_id').notNullable().references('practices.id');
@@ -114,7 +127,7 @@ export async function up(knex: Knex): Promise<void> {
 }
 
 export async function down(knex: Knex): Promise<void> {
-	for (const table of ['jobs', 'analysis_series', 'analyses', 'capture_files', 'captures', 'stored_files']) {
+	for (const table of ['jobs', 'analysis_series', 'analyses', 'capture_files', 'uploads', 'captures', 'stored_files']) {
 		await knex.schema.dropTable(table);
 	}
 }

@@ -1,0 +1,7 @@
+import type { Container } from '../container';
+import type { JobContext } from './job-definition';
+
+export type JobHandler = (container: Container, payload: unknown, context: JobContext) => Promise<void>;
+
+/** Kind → handler, loaded when first needed: the web process never pays for what only the worker runs. */
+export const JOB_HANDLERS: Record<string, () => Promise<JobHandler>> = {};
