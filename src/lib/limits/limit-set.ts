@@ -67,7 +67,14 @@ export interface LimitTable {
 	key: string;
 	title: string;
 	clause: string;
-	kind: 'limit' | 'compatibility-level' | 'planning-level' | 'emission-limit' | 'indicative' | 'recommendation' | string;
+	kind:
+		| 'limit'
+		| 'compatibility-level'
+		| 'planning-level'
+		| 'emission-limit'
+		| 'indicative'
+		| 'recommendation'
+		| string;
 	quantity: 'voltage' | 'current';
 	basis: LimitBasis;
 	/** The basis in words, as the library shows it. */
