@@ -1,4 +1,11 @@
-export const REVISION_STATUSES = ['draft', 'in-check', 'returned', 'issued', 'superseded', 'withdrawn'] as const;
+export const REVISION_STATUSES = [
+	'draft',
+	'in-check',
+	'returned',
+	'issued',
+	'superseded',
+	'withdrawn'
+] as const;
 export type RevisionStatus = (typeof REVISION_STATUSES)[number];
 
 /** Editable by its author: a fresh draft, or one that the checker sent back. */
