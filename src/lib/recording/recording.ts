@@ -42,6 +42,8 @@ export interface RecordingChannel {
 	ratio: { primary: number; secondary: number } | null;
 	/** Value range that the recorder can express, in baseUnit, when the file tells; for the clipping check. */
 	range: { min: number; max: number } | null;
+	/** Delay of this channel's sample after the sample time, seconds, where the file states one. */
+	skew_s?: number;
 }
 
 /** A stretch of samples taken at one rate; `toSample` is exclusive. */
@@ -49,6 +51,8 @@ export interface RateSegment {
 	samplingRate_Hz: number;
 	fromSample: number;
 	toSample: number;
+	/** Time without samples between the end of the segment before and this one; absent where they join. */
+	gapBefore_s?: number;
 }
 
 /** The moment of sample 0. `utcOffset_min` is null when the file does not tell its zone: the site's zone is used then. */
@@ -108,7 +112,10 @@ export interface Trend {
 	intervalStarts_s: Float64Array;
 	/** [intervalCount] 1 where the log marks the interval as flagged; null when the log has no such column. */
 	flagged: Uint8Array | null;
+	/** Aggregated (average or rms) values per interval. */
 	series: TrendSeries[];
+	/** Columns of minima and maxima inside each interval: kept for display, never for a percentile. */
+	extremes?: (TrendSeries & { extreme: 'minimum' | 'maximum' })[];
 	remarks: ReadRemark[];
 }
 
