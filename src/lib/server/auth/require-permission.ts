@@ -7,6 +7,12 @@ export function requirePermission(actor: Actor, action: Action): void {
 		throw new AppError('forbidden', `Your role (${actor.role}) does not allow this. Ask the owner of the practice.`);
 }
 
+/** As requirePermission, where any one of several actions is enough. */
+export function requireAnyPermission(actor: Actor, actions: readonly Action[]): void {
+	const granted = actions.find((action) => can(actor, action));
+	if (granted === undefined) requirePermission(actor, actions[0]!);
+}
+
 /** The client organisation a client acts for; consultants have none, and may not call this. */
 export function requireClientId(actor: Actor): string {
 	if (actor.role !== 'client' || actor.clientId === null)

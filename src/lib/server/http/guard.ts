@@ -1,7 +1,7 @@
 import { error, redirect, type RequestEvent } from '@sveltejs/kit';
 import type { Action, Actor } from '../../access/access';
 import { AppError } from '../app-error';
-import { requirePermission } from '../auth/require-permission';
+import { requireAnyPermission } from '../auth/require-permission';
 
 /** Where to come back after signing in: own paths only. */
 export function signInPath(url: URL): string {
@@ -27,16 +27,18 @@ export function asHttpError(event: RequestEvent, cause: unknown): never {
  * (tests/architecture proves that none is not). It asks for a signed-in actor and the permission, and turns the
  * use case's AppError into an HTTP status.
  *
+ * A list of permissions means any of them: a file that both consultants and the client's people may fetch.
+ *
  * `export const load = guard('register.read', async (event: PageServerLoadEvent, actor) => …)`
  */
 export function guard<E extends RequestEvent, R>(
-	permission: Action,
+	permission: Action | readonly Action[],
 	handle: (event: E, actor: Actor) => R | Promise<R>
 ): (event: E) => Promise<R> {
 	return async (event) => {
 		const actor = requireActor(event);
 		try {
-			requirePermission(actor, permission);
+			requireAnyPermission(actor, typeof permission === 'string' ? [permission] : permission);
 			return await handle(event, actor);
 		} catch (cause) {
 			asHttpError(event, cause);
