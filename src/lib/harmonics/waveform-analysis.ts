@@ -46,6 +46,22 @@ export interface QualityRemark {
 	channelIndex: number | null;
 }
 
+/** Powers of one phase, window by window; load convention: P > 0 flows into the installation. Arrays are [windowCount]. */
+export interface PhasePower {
+	phase: Phase;
+	voltageChannelIndex: number;
+	currentChannelIndex: number;
+	/** Mean of u·i over the window, harmonics included. */
+	activePower_W: Float64Array;
+	fundamentalActivePower_W: Float64Array;
+	/** Positive when the current lags. */
+	fundamentalReactivePower_var: Float64Array;
+	/** cos φ1. */
+	displacementFactor: Float64Array;
+	/** P/(U·I), true rms. */
+	powerFactor: Float64Array;
+}
+
 /** What the analyser makes of one waveform recording (IEC 61000-4-7 windows, synchronised to the measured fundamental). */
 export interface WaveformAnalysis {
 	engineVersion: string;
@@ -66,5 +82,7 @@ export interface WaveformAnalysis {
 	/** [windowCount] 1 = flagged. */
 	flagged: Uint8Array;
 	channels: ChannelAnalysis[];
+	/** One entry per phase with a voltage to neutral and a current; empty when there is none. */
+	powers?: PhasePower[];
 	quality: QualityRemark[];
 }

@@ -1,0 +1,54 @@
+/**
+ * Root-sum-square of the orders from … to of one row.
+ * row      values by order, index = order, V or A
+ * returns  same unit; NaN when any order of the range is missing: an absent order is not zero
+ */
+export function harmonicContent(row: Float64Array, fromOrder: number, toOrder: number): number {
+	if (toOrder < fromOrder) return NaN;
+	let sum = 0;
+	for (let order = fromOrder; order <= toOrder; order++) {
+		const value = row[order];
+		if (value === undefined) return NaN;
+		sum += value * value;
+	}
+	return Math.sqrt(sum);
+}
+
+/** Below this share of the channel's rms a fundamental is taken for absent. */
+const LEAST_FUNDAMENTAL = 1e-4;
+
+/**
+ * Total distortion in percent of the fundamental; of subgroups it is THDS, of lines THD.
+ * row        values by order of one window, index = order
+ * rms        true rms of the same window; decides whether there is a fundamental at all
+ * toOrder    highest order summed (50 for IEEE Std 519 and class A, 40 for EN 50160)
+ * returns    percent; NaN when there is no fundamental or an order is missing
+ * source     IEC 61000-4-7:2002+A1:2008, 3.3 (from memory)
+ */
+export function thd_pctOfFundamental(row: Float64Array, rms: number, toOrder: number): number {
+	const fundamental = row[1]!;
+	if (!(fundamental > LEAST_FUNDAMENTAL * rms)) return NaN;
+	return (100 * harmonicContent(row, 2, toOrder)) / fundamental;
+}
+
+/**
+ * Total demand distortion: the harmonic content of the current in percent of the maximum demand load current.
+ * row_A            current by order, index = order; interharmonics stay out
+ * demandCurrent_A  I_L, > 0
+ * toOrder          50 in IEEE Std 519
+ * source           IEEE Std 519-2014 and -2022, clause 3
+ */
+export function tdd_pctOfDemandCurrent(
+	row_A: Float64Array,
+	demandCurrent_A: number,
+	toOrder: number
+): number {
+	if (!(demandCurrent_A > 0)) return NaN;
+	return (100 * harmonicContent(row_A, 2, toOrder)) / demandCurrent_A;
+}
+
+/** Distortion on the rms from that on the fundamental, both in percent: THD_R = THD_F/√(1+THD_F²). */
+export function thd_pctOfRms(onFundamental_pct: number): number {
+	const ratio = onFundamental_pct / 100;
+	return (100 * ratio) / Math.sqrt(1 + ratio * ratio);
+}

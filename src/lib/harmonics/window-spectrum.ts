@@ -1,0 +1,74 @@
+import { planRealDft, type RealDftPlan } from '../numerics/dft/real-dft';
+import { designKaiserKernel } from '../numerics/resample/kaiser-kernel';
+import { planInterpolator, type Interpolator } from '../numerics/resample/interpolator';
+import { MAX_ORDER } from './intervals';
+
+/** Ripple and rejection of the interpolation: a millionth, two tens below what class I asks for. */
+const ATTENUATION_DB = 120;
+/**
+ * Orders are read up to this share of the sampling rate. Above it the recorder's own anti-alias filter is falling, and
+ * what it lets through from beyond half the rate lands there.
+ */
+const USABLE_SHARE_OF_RATE = 0.45;
+/** The fundamental may wander this much from its first estimate without leaving the kernel's passband. */
+const WANDER = 1.04;
+
+/** How the windows of one recording become spectra: points per window, interpolation and transform. */
+export interface WindowSpectrumPlan {
+	/** Points per window, a power of two. */
+	points: number;
+	/** Highest order with its subgroup inside the usable band. */
+	highestOrder: number;
+	/** Whether the lines between the highest order and the next are usable as well. */
+	reachesBeyondHighest: boolean;
+	/** Lines 0 … lineCount−1 are read. */
+	lineCount: number;
+	interpolator: Interpolator;
+	transform: RealDftPlan;
+}
+
+/** Highest order whose subgroup lies within 45 % of the sampling rate; at most MAX_ORDER, may be below 1. */
+export function highestUsableOrder(
+	samplingRate_Hz: number,
+	fundamental_Hz: number,
+	cyclesPerWindow: number
+): number {
+	const reach = (USABLE_SHARE_OF_RATE * samplingRate_Hz) / fundamental_Hz;
+	return Math.min(MAX_ORDER, Math.floor(reach - 1 / cyclesPerWindow + 1e-9));
+}
+
+/**
+ * Chooses points and kernel so that nothing folds onto a line that is read: content from (points/window − highest line)
+ * or from (sampling rate − highest line) upwards is suppressed by 120 dB, the lines read pass within 1e-6.
+ * Among the powers of two that do so the cheapest is taken.
+ */
+export function planWindowSpectrum(
+	samplingRate_Hz: number,
+	fundamental_Hz: number,
+	cyclesPerWindow: 10 | 12
+): WindowSpectrumPlan {
+	const highestOrder = highestUsableOrder(samplingRate_Hz, fundamental_Hz, cyclesPerWindow);
+	const frequency = fundamental_Hz / samplingRate_Hz;
+	const reachesBeyondHighest = (highestOrder + 1) * frequency * WANDER <= USABLE_SHARE_OF_RATE;
+	const top = reachesBeyondHighest ? highestOrder + 1 : highestOrder + 1 / cyclesPerWindow;
+	const passband = Math.min(top * frequency * WANDER, 0.46);
+	const lineCount = cyclesPerWindow * (highestOrder + 1) + 1;
+	let best: { points: number; cost: number; stopband: number } | null = null;
+	for (let points = 1024; points <= 16384; points *= 2) {
+		const outputRate = (points * frequency) / (WANDER * cyclesPerWindow);
+		const stopband = Math.min(1, outputRate) - passband;
+		if (stopband < 1.15 * passband || points < 2 * lineCount) continue;
+		const taps = ATTENUATION_DB / (14.36 * (stopband - passband));
+		const cost = points * (taps + 12);
+		if (!best || cost < best.cost) best = { points, cost, stopband };
+	}
+	if (!best) throw new Error(`No window length fits ${samplingRate_Hz} Hz at ${fundamental_Hz} Hz`);
+	return {
+		points: best.points,
+		highestOrder,
+		reachesBeyondHighest,
+		lineCount,
+		interpolator: planInterpolator(designKaiserKernel(passband, best.stopband, ATTENUATION_DB)),
+		transform: planRealDft(best.points)
+	};
+}
