@@ -1,0 +1,191 @@
+import type { EChartsOption } from 'echarts';
+import type { Phase } from '../recording/phase';
+import type { ChartTable } from './chart-table';
+import {
+	CHART_PALETTES,
+	categoryAxisStyle,
+	chartBase,
+	legendStyle,
+	phaseStyle,
+	tooltipStyle,
+	valueAxisStyle,
+	type ChartMode
+} from './theme';
+
+export interface WaveformChannelPoints {
+	label: string;
+	phase: Phase;
+	quantity: 'voltage' | 'current';
+	/** V or A, primary or secondary as `valueAxis…` says. */
+	unit: string;
+	/** Interleaved [seconds, value, …], raw or thinned by decimateMinMax; NaN breaks the line. */
+	points: ArrayLike<number>;
+}
+
+export interface WaveformData {
+	channels: readonly WaveformChannelPoints[];
+	/** The whole capture, seconds from its first sample, even when `points` cover a part. */
+	extent_s: { from: number; to: number };
+	/** The part shown; the whole when absent. */
+	view_s?: { from: number; to: number };
+	/** e.g. "Voltage, V primary"; used for the panel of that quantity. */
+	valueAxis?: { voltage?: string; current?: string };
+	/** 10/12-cycle windows to be marked, e.g. the worst one. */
+	windows?: readonly { from_s: number; to_s: number; label: string }[];
+}
+
+const QUANTITIES = ['voltage', 'current'] as const;
+
+/** Instantaneous values over time: voltages in the upper panel, currents in the lower, zoomed together. */
+export function buildWaveformOption(data: WaveformData, mode: ChartMode): EChartsOption {
+	const palette = CHART_PALETTES[mode];
+	const panels = QUANTITIES.filter((q) => data.channels.some((c) => c.quantity === q));
+	const zoomable = mode !== 'print';
+	const view = data.view_s ?? data.extent_s;
+	const top = 58;
+	const gap = 56;
+	const bottom = zoomable ? 84 : 44;
+	return {
+		...chartBase(mode),
+		legend: { ...legendStyle(mode), itemWidth: 26 },
+		tooltip: {
+			...tooltipStyle(mode),
+			trigger: 'axis',
+			axisPointer: { type: 'line', lineStyle: { color: palette.copper } },
+			valueFormatter: (value) => (typeof value === 'number' ? value.toPrecision(5) : 'no data')
+		},
+		axisPointer: { link: [{ xAxisIndex: 'all' }] },
+		// Heights in percent of what the fixed margins leave cannot be said directly: the panels share it by halves.
+		grid: panels
+			.map((_, i) =>
+				panels.length === 1
+					? { left: 64, right: 16, top, bottom }
+					: i === 0
+						? { left: 64, right: 16, top, bottom: `${50}%` }
+						: { left: 64, right: 16, top: '50%', bottom }
+			)
+			.map((grid, i) => (panels.length === 2 && i === 1 ? { ...grid, top: `${50 + gapShare(gap)}%` } : grid)),
+		xAxis: panels.map((_, i) => ({
+			...categoryAxisStyle(mode),
+			type: 'value',
+			gridIndex: i,
+			min: data.extent_s.from,
+			max: data.extent_s.to,
+			axisLine: { onZero: false, show: true, lineStyle: { color: palette.ink } },
+			name: i === panels.length - 1 ? 'Time, s' : undefined,
+			nameLocation: 'middle',
+			nameGap: 26,
+			axisLabel: {
+				...categoryAxisStyle(mode).axisLabel,
+				show: i === panels.length - 1,
+				hideOverlap: true
+			}
+		})),
+		yAxis: panels.map((quantity, i) => ({
+			...valueAxisStyle(mode),
+			type: 'value',
+			gridIndex: i,
+			name: axisName(data, quantity),
+			scale: true
+		})),
+		dataZoom: zoomable
+			? [
+					{ type: 'inside', xAxisIndex: 'all', startValue: view.from, endValue: view.to, filterMode: 'none' },
+					{
+						type: 'slider',
+						xAxisIndex: 'all',
+						startValue: view.from,
+						endValue: view.to,
+						filterMode: 'none',
+						height: 22,
+						bottom: 8,
+						showDataShadow: false,
+						brushSelect: false,
+						borderColor: palette.edge,
+						fillerColor: `${palette.copper}22`,
+						handleStyle: { color: palette.ground, borderColor: palette.copper },
+						moveHandleStyle: { color: palette.copper, opacity: 0.5 },
+						textStyle: { color: palette.inkSoft, fontSize: 12 },
+						labelFormatter: (value: number) => `${value.toFixed(4)} s`
+					}
+				]
+			: undefined,
+		series: data.channels.map((channel) => waveformSeries(channel, data, panels, mode))
+	};
+}
+
+/** Room between the panels for the lower one's axis name, as a share of an ordinary height of 460 px. */
+function gapShare(gap_px: number): number {
+	return Math.round((100 * gap_px) / 2 / 460) + 1;
+}
+
+function axisName(data: WaveformData, quantity: 'voltage' | 'current'): string {
+	const given = data.valueAxis?.[quantity];
+	if (given) return given;
+	const unit = data.channels.find((c) => c.quantity === quantity)?.unit ?? '';
+	return `${quantity === 'voltage' ? 'Voltage' : 'Current'}, ${unit}`;
+}
+
+function waveformSeries(
+	channel: WaveformChannelPoints,
+	data: WaveformData,
+	panels: readonly ('voltage' | 'current')[],
+	mode: ChartMode
+) {
+	const palette = CHART_PALETTES[mode];
+	const style = phaseStyle(channel.phase, mode);
+	const panel = panels.indexOf(channel.quantity);
+	const isFirst = data.channels.find((c) => c.quantity === channel.quantity) === channel;
+	return {
+		type: 'line' as const,
+		name: channel.label,
+		xAxisIndex: panel,
+		yAxisIndex: panel,
+		dimensions: ['time', 'value'],
+		data: pairs(channel.points),
+		showSymbol: false,
+		symbol: style.symbol,
+		connectNulls: false,
+		color: style.color,
+		lineStyle: { width: 1.25, type: style.dash, color: style.color },
+		emphasis: { disabled: true },
+		markArea:
+			isFirst && data.windows?.length
+				? {
+						silent: true,
+						itemStyle: { color: palette.copper, opacity: 0.1 },
+						label: { color: palette.copper, fontSize: 12, position: 'insideTop' as const },
+						data: data.windows.map((w): [{ name: string; xAxis: number }, { xAxis: number }] => [
+							{ name: w.label, xAxis: w.from_s },
+							{ xAxis: w.to_s }
+						])
+					}
+				: undefined
+	};
+}
+
+function pairs(points: ArrayLike<number>): [number, number][] {
+	const list: [number, number][] = [];
+	for (let i = 0; i + 1 < points.length; i += 2) list.push([points[i] as number, points[i + 1] as number]);
+	return list;
+}
+
+/** The points as drawn, channel after channel. */
+export function waveformTable(data: WaveformData): ChartTable {
+	return {
+		columns: [
+			{ label: 'Channel' },
+			{ label: 'Time, s', numeric: true, digits: 6 },
+			{ label: 'Value', numeric: true, digits: 4 },
+			{ label: 'Unit' }
+		],
+		rows: data.channels.flatMap((channel) =>
+			pairs(channel.points).map(([time, value]) => [
+				channel.label,
+				time,
+				Number.isNaN(value) ? null : value,
+				channel.unit
+			])
+		)
+	};
+}
