@@ -161,9 +161,9 @@ function prepare(
 	});
 }
 
-/** The stated nominal frequency where the measurement is within 15 % of it, else the nearer of 50 and 60. */
+/** The stated nominal frequency where the first estimate is about within 15 % of it, else the nearer of 50 and 60. */
 function nominalFor(measured_Hz: number, stated_Hz: 50 | 60 | null): 50 | 60 {
-	if (stated_Hz !== null && Math.abs(measured_Hz / stated_Hz - 1) <= 0.15) return stated_Hz;
+	if (stated_Hz !== null && Math.abs(measured_Hz / stated_Hz - 1) <= 0.16) return stated_Hz;
 	return measured_Hz < 55 ? 50 : 60;
 }
 

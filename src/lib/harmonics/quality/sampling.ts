@@ -6,6 +6,8 @@ import type { ChannelMapping, QualityRemark } from '../waveform-analysis';
 const COMFORTABLE_SAMPLES_PER_CYCLE = 128;
 /** Range in which windows of 10 or 12 cycles are defined: −15 % of 50 Hz … +15 % of 60 Hz. */
 const PERMITTED_HZ = { from: 42.5, to: 69 };
+/** A fundamental measured on the very bound is inside; Hz. */
+const BOUND_TOLERANCE_HZ = 0.005;
 
 export function findRateLimits(
 	samplingRate_Hz: number,
@@ -48,7 +50,10 @@ export function findFrequencyFaults(
 	measured_Hz: number
 ): QualityRemark[] {
 	const remarks: QualityRemark[] = [];
-	if (measured_Hz < PERMITTED_HZ.from || measured_Hz > PERMITTED_HZ.to) {
+	if (
+		measured_Hz < PERMITTED_HZ.from - BOUND_TOLERANCE_HZ ||
+		measured_Hz > PERMITTED_HZ.to + BOUND_TOLERANCE_HZ
+	) {
 		remarks.push({
 			severity: 'blocks',
 			code: 'frequency-out-of-range',
