@@ -6,6 +6,14 @@ import { createJobQueue } from './jobs/job-queue';
 import { createLog, type Log } from './log';
 import { createOutbox, type MailTransport } from './mail/outbox';
 import { createMailTransport } from './mail/transport';
+import { createAccountService } from './services/account.service';
+import { createDeskService } from './services/desk.service';
+import { createInstrumentsService } from './services/instruments.service';
+import { createPortalService } from './services/portal.service';
+import { createQueriesService } from './services/queries.service';
+import { createRegisterService } from './services/register.service';
+import { createSignInService } from './services/sign-in.service';
+import { createSurveysService } from './services/surveys.service';
 import type { ServiceDeps } from './service-deps';
 import type { BlobStore } from './storage/blob-store';
 import { createDiskBlobStore } from './storage/disk-blob-store';
@@ -19,9 +27,17 @@ export interface Overrides {
 }
 
 // One line per service, e.g. `captures: createCapturesService(deps)`.
-// eslint-disable-next-line @typescript-eslint/no-unused-vars -- the first service will take it
 function buildServices(deps: ServiceDeps) {
-	return {};
+	return {
+		signIn: createSignInService(deps),
+		register: createRegisterService(deps),
+		surveys: createSurveysService(deps),
+		instruments: createInstrumentsService(deps),
+		account: createAccountService(deps),
+		portal: createPortalService(deps),
+		queries: createQueriesService(deps),
+		desk: createDeskService(deps)
+	};
 }
 
 export type Services = ReturnType<typeof buildServices>;

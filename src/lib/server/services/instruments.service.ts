@@ -1,0 +1,119 @@
+import type { Actor } from '../../access/access';
+import type { CalibrationFacts, InstrumentFacts } from '../../register/instrument-facts';
+import { AppError, requireFound } from '../app-error';
+import { appendAudit } from '../audit/audit-log';
+import { requirePermission } from '../auth/require-permission';
+import { withTransaction } from '../db/database';
+import {
+	listInstruments,
+	loadInstrumentPage,
+	type InstrumentListQuery
+} from '../read-models/instrument-list';
+import { instrumentsRepository } from '../repositories/instruments.repository';
+import { scopeOf } from '../repositories/scope';
+import type { ServiceDeps } from '../service-deps';
+
+/** Instruments of the practice and the calibrations that make their readings count. */
+export function createInstrumentsService({ db, clock }: ServiceDeps) {
+	const today = () => clock().toISOString().slice(0, 10);
+
+	return {
+		async list(actor: Actor, query: InstrumentListQuery) {
+			requirePermission(actor, 'register.read');
+			return listInstruments(db, scopeOf(actor), query, today());
+		},
+
+		async page(actor: Actor, instrumentId: string) {
+			requirePermission(actor, 'register.read');
+			return requireFound(await loadInstrumentPage(db, scopeOf(actor), instrumentId, today()), 'instrument');
+		},
+
+		async create(actor: Actor, facts: InstrumentFacts): Promise<string> {
+			requirePermission(actor, 'register.write');
+			const now = clock();
+			return withTransaction(db, async (trx) => {
+				const id = await instrumentsRepository(trx, scopeOf(actor)).add(facts, now.toISOString());
+				await appendAudit(
+					trx,
+					actor,
+					{
+						action: 'instrument.created',
+						subjectKind: 'instrument',
+						subjectId: id,
+						detail: { name: facts.name, serialNumber: facts.serialNumber }
+					},
+					now
+				);
+				return id;
+			});
+		},
+
+		/** Accuracy goes into the uncertainty of verdicts: the audit keeps both states. */
+		async update(actor: Actor, instrumentId: string, facts: InstrumentFacts): Promise<void> {
+			requirePermission(actor, 'register.write');
+			await withTransaction(db, async (trx) => {
+				const instruments = instrumentsRepository(trx, scopeOf(actor));
+				const before = requireFound(await instruments.byId(instrumentId), 'instrument');
+				await instruments.update(instrumentId, facts);
+				await appendAudit(
+					trx,
+					actor,
+					{
+						action: 'instrument.changed',
+						subjectKind: 'instrument',
+						subjectId: instrumentId,
+						detail: { before, after: facts }
+					},
+					clock()
+				);
+			});
+		},
+
+		async setArchived(actor: Actor, instrumentId: string, archived: boolean): Promise<void> {
+			requirePermission(actor, 'register.write');
+			const now = clock();
+			await withTransaction(db, async (trx) => {
+				const instruments = instrumentsRepository(trx, scopeOf(actor));
+				const instrument = requireFound(await instruments.byId(instrumentId), 'instrument');
+				await instruments.setArchived(instrumentId, archived ? now.toISOString() : null);
+				await appendAudit(
+					trx,
+					actor,
+					{
+						action: archived ? 'instrument.archived' : 'instrument.restored',
+						subjectKind: 'instrument',
+						subjectId: instrumentId,
+						detail: { name: instrument.name }
+					},
+					now
+				);
+			});
+		},
+
+		async addCalibration(actor: Actor, instrumentId: string, facts: CalibrationFacts): Promise<void> {
+			requirePermission(actor, 'register.write');
+			if (facts.calibratedOn > today())
+				throw new AppError(
+					'invalid',
+					'The day of calibration lies in the future. Enter the day on the certificate.'
+				);
+			const now = clock();
+			await withTransaction(db, async (trx) => {
+				const instruments = instrumentsRepository(trx, scopeOf(actor));
+				requireFound(await instruments.byId(instrumentId), 'instrument');
+				const id = await instruments.addCalibration(instrumentId, facts, now.toISOString());
+				await appendAudit(
+					trx,
+					actor,
+					{
+						action: 'calibration.added',
+						subjectKind: 'instrument',
+						subjectId: instrumentId,
+						detail: { calibrationId: id, ...facts }
+					},
+					now
+				);
+			});
+		}
+	};
+}
