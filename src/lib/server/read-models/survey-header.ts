@@ -10,8 +10,10 @@ import {
 	type SurveyStageKey,
 	type SurveyStages
 } from '../../register/survey-stages';
+import { ratioClassLabel } from '../../register/ratio-class';
 import type { Db } from '../db/database';
 import type { PointRow, SurveyRow } from '../db/rows';
+import { limitSetsRepository } from '../repositories/limit-sets.repository';
 import { toPointFacts } from '../repositories/point-mapping';
 import type { Scope } from '../repositories/scope';
 import { loadSurveyProgress } from './survey-progress';
@@ -41,6 +43,10 @@ export interface SurveyHeader {
 		/** I_sc ÷ I_L, unrounded; null when one of them is not known. */
 		shortCircuitRatio: number | null;
 	};
+	/** Printed label of the limit class the ratio falls in; null where there is none. */
+	ratioClass: string | null;
+	/** "IEEE Std 519, 2022"; null when no limit set is chosen. */
+	limitSetTitle: string | null;
 	progress: SurveyProgress;
 	stages: SurveyStages;
 	next: SurveyStageKey;
@@ -100,6 +106,12 @@ export async function loadSurveyHeader(db: Db, scope: Scope, surveyId: string): 
 		...(await loadSurveyProgress(db, scope, surveyId, row.updated_at))
 	};
 	const stages = surveyStages(progress);
+	const shortCircuitRatio =
+		demandCurrent_A === null || shortCircuitCurrent_A === null
+			? null
+			: shortCircuitCurrent_A / demandCurrent_A;
+	const limitSet =
+		row.limit_set_id === null ? null : await limitSetsRepository(db, scope.practiceId).byId(row.limit_set_id);
 	return {
 		survey: {
 			id: row.survey_id,
@@ -121,11 +133,13 @@ export async function loadSurveyHeader(db: Db, scope: Scope, surveyId: string): 
 			limitSetId: row.limit_set_id,
 			facts,
 			assessed,
-			shortCircuitRatio:
-				demandCurrent_A === null || shortCircuitCurrent_A === null
-					? null
-					: shortCircuitCurrent_A / demandCurrent_A
+			shortCircuitRatio
 		},
+		ratioClass:
+			limitSet === null || shortCircuitRatio === null
+				? null
+				: ratioClassLabel(limitSet, facts.nominalVoltage_V, shortCircuitRatio),
+		limitSetTitle: limitSet === null ? null : `${limitSet.standard}, ${limitSet.edition}`,
 		progress,
 		stages,
 		next: nextStage(stages)
