@@ -4,4 +4,7 @@ import type { JobContext } from './job-definition';
 export type JobHandler = (container: Container, payload: unknown, context: JobContext) => Promise<void>;
 
 /** Kind → handler, loaded when first needed: the web process never pays for what only the worker runs. */
-export const JOB_HANDLERS: Record<string, () => Promise<JobHandler>> = {};
+export const JOB_HANDLERS: Record<string, () => Promise<JobHandler>> = {
+	'recognise-capture': async () => (await import('./recognise-capture.handler')).handle,
+	'analyse-capture': async () => (await import('./analyse-capture.handler')).handle
+};

@@ -1,0 +1,58 @@
+import { z } from 'zod';
+import { PHASES } from '../../recording/phase';
+import { samplesLayout } from './samples-blob';
+
+/** Part of an analysis that lists and pages read without touching the long series. */
+const qualityRemark = z.object({
+	severity: z.enum(['blocks', 'warns', 'notes']),
+	code: z.string(),
+	sentence: z.string(),
+	channelIndex: z.number().int().nullable()
+});
+
+const summaryChannel = z.object({
+	channelIndex: z.number().int(),
+	name: z.string(),
+	quantity: z.enum(['voltage', 'current']),
+	phase: z.enum(PHASES),
+	toPrimary: z.number()
+});
+
+const waveformSummary = z.object({
+	kind: z.literal('waveform'),
+	nominalFrequency_Hz: z.union([z.literal(50), z.literal(60)]),
+	cyclesPerWindow: z.number().int(),
+	referenceChannelIndex: z.number().int(),
+	highestOrder: z.number().int(),
+	windowCount: z.number().int(),
+	flaggedCount: z.number().int(),
+	channels: z.array(summaryChannel),
+	quality: z.array(qualityRemark),
+	samples: samplesLayout
+});
+
+const trendSummary = z.object({
+	kind: z.literal('trend'),
+	interval_s: z.number(),
+	intervalCount: z.number().int(),
+	flaggedCount: z.number().int(),
+	quality: z.array(qualityRemark)
+});
+
+export const analysisSummary = z.discriminatedUnion('kind', [waveformSummary, trendSummary]);
+export type AnalysisSummary = z.infer<typeof analysisSummary>;
+export type WaveformSummary = z.infer<typeof waveformSummary>;
+export type TrendSummary = z.infer<typeof trendSummary>;
+
+/** What the figures of an analysis rest on, beside the samples. */
+export interface AnalysisParameters {
+	nominalFrequency_Hz: 50 | 60;
+	/** Instant of the first sample or interval, milliseconds since 1970-01-01 UTC. */
+	start_ms: number;
+	settings: unknown;
+	fileHashes: string[];
+}
+
+export function parseSummary(json: string): AnalysisSummary {
+	return analysisSummary.parse(JSON.parse(json));
+}

@@ -1,0 +1,137 @@
+import { nominalVoltagesByPhase_V } from '../../harmonics/nominal-voltages';
+import { readCapture } from '../../recording/read-capture';
+import type { CaptureContent } from '../../recording/recording';
+import { parseSettings } from '../analysis/capture-settings';
+import { prepareTrend, prepareWaveform, type PreparedAnalysis } from '../analysis/prepare-analysis';
+import type { Container } from '../container';
+import { withTransaction, type Db } from '../db/database';
+import type { CaptureRow } from '../db/rows';
+import { captureSurvey, type CaptureSurvey } from '../read-models/capture-list';
+import { analysesRepository } from '../repositories/analyses.repository';
+import { capturesRepository } from '../repositories/captures.repository';
+import { storedFilesRepository } from '../repositories/stored-files.repository';
+import { releaseCapture } from '../services/captures.service';
+import { analyseCapture } from './analyse-capture.job';
+import { assessSurvey } from './assess-survey.job';
+import type { JobHandler } from './handlers';
+import { JobCancelled, JobFailed, JobInterrupted, type JobContext } from './job-definition';
+
+export const handle: JobHandler = async (container, rawPayload, context) => {
+	const { captureId, surveyId } = analyseCapture.payload.parse(rawPayload);
+	const { db, clock } = container;
+	const captures = capturesRepository(db, context);
+	const capture = await captures.byId(captureId);
+	const survey = await captureSurvey(db, context, surveyId);
+	if (!capture || !survey) throw new JobFailed('The capture was removed before it could be analysed.');
+	try {
+		await captures.update(captureId, { status: 'analysing', problem: null }, clock());
+		const content = await readOriginals(container, capture, context);
+		const prepared = await prepare(container, capture, survey, content, context);
+		await context.progress(1, 1, 'storing the readings');
+		await withTransaction(db, (trx) => save(container, trx, capture, prepared, context));
+	} catch (cause) {
+		await settle(container, captureId, cause, context);
+		throw cause;
+	}
+};
+
+async function readOriginals(
+	container: Container,
+	capture: CaptureRow,
+	context: JobContext
+): Promise<CaptureContent> {
+	const files = await capturesRepository(container.db, context).filesOf([capture.id]);
+	const total_bytes = files.reduce((sum, file) => sum + file.size_bytes, 0);
+	let done_bytes = 0;
+	const originals = [];
+	for (const file of files) {
+		await context.progress(done_bytes, total_bytes + 1, `reading ${file.name}`);
+		originals.push({ name: file.name, bytes: await container.blobs.read(file.sha256) });
+		done_bytes += file.size_bytes;
+	}
+	const read = readCapture(originals);
+	if (!read.ok) throw new JobFailed(read.problem.sentence);
+	return read.value;
+}
+
+function prepare(
+	container: Container,
+	capture: CaptureRow,
+	survey: CaptureSurvey,
+	content: CaptureContent,
+	context: JobContext
+): Promise<PreparedAnalysis> {
+	if (capture.mappings_json === null || capture.started_at === null)
+		throw new JobFailed(
+			'The channels of this capture are not confirmed yet. Confirm them and analyse again.'
+		);
+	const settings = parseSettings(capture.mappings_json);
+	const basis = {
+		start_ms: Date.parse(capture.started_at),
+		nominalFrequency_Hz: survey.nominalFrequency_Hz,
+		nominalVoltages_V: nominalVoltagesByPhase_V(survey.system, survey.nominalVoltage_V),
+		phaseNames: survey.phaseNames
+	};
+	if (content.kind === 'waveform' && settings.kind === 'waveform')
+		return prepareWaveform(container.blobs, content, settings.channels, basis, context);
+	if (content.kind === 'trend' && settings.kind === 'trend')
+		return prepareTrend(content, settings.columns, basis);
+	throw new JobFailed('The confirmed channels do not fit what the files hold. Confirm them again.');
+}
+
+/** Everything that an analysis leaves behind, and the end of the job, stand or fall together. */
+async function save(
+	container: Container,
+	trx: Db,
+	capture: CaptureRow,
+	prepared: PreparedAnalysis,
+	context: JobContext
+): Promise<void> {
+	const now = container.clock();
+	const files = await capturesRepository(trx, context).filesOf([capture.id]);
+	if (prepared.samples)
+		await storedFilesRepository(trx).record(prepared.samples, 'application/x-sinewright-samples', now);
+	await analysesRepository(trx, context).add(
+		{
+			client_id: capture.client_id,
+			capture_id: capture.id,
+			engine_version: prepared.engineVersion,
+			parameters_json: JSON.stringify({
+				...prepared.parameters,
+				settings: parseSettings(capture.mappings_json ?? 'null'),
+				fileHashes: files.map((file) => file.sha256)
+			}),
+			summary_json: JSON.stringify(prepared.summary),
+			created_at: now.toISOString()
+		},
+		prepared.series
+	);
+	await capturesRepository(trx, context).update(capture.id, { status: 'analysed', problem: null }, now);
+	await container.jobs.enqueue(
+		trx,
+		assessSurvey,
+		{ surveyId: capture.survey_id },
+		{ practiceId: context.practiceId }
+	);
+	await context.finish(trx);
+}
+
+/** Leaves the capture in a state that tells the truth about how the attempt ended. */
+async function settle(
+	container: Container,
+	captureId: string,
+	cause: unknown,
+	context: JobContext
+): Promise<void> {
+	const { db, clock } = container;
+	const captures = capturesRepository(db, context);
+	if (cause instanceof JobInterrupted) await captures.update(captureId, { status: 'queued' }, clock());
+	else if (cause instanceof JobCancelled) await releaseCapture(db, context, captureId, clock());
+	else {
+		const problem =
+			cause instanceof JobFailed
+				? cause.message
+				: `Something went wrong on our side. Quote reference ${context.jobId}.`;
+		await captures.update(captureId, { status: 'failed', problem }, clock());
+	}
+}

@@ -1,0 +1,116 @@
+import { captureFacts } from '../../recording/capture-facts';
+import { suggestMappings } from '../../recording/channel-suggestion';
+import { readCapture } from '../../recording/read-capture';
+import { startToUtc_ms } from '../../recording/recording-start';
+import type { CaptureContent, CaptureFile } from '../../recording/recording';
+import { appendAudit } from '../audit/audit-log';
+import type { Container } from '../container';
+import { withTransaction } from '../db/database';
+import type { UploadRow } from '../db/rows';
+import { captureSurvey, type CaptureSurvey, type StoredFacts } from '../read-models/capture-list';
+import { capturesRepository } from '../repositories/captures.repository';
+import { uploadsRepository } from '../repositories/uploads.repository';
+import type { JobHandler } from './handlers';
+import { JobCancelled, JobFailed, type JobContext } from './job-definition';
+import { recogniseCapture } from './recognise-capture.job';
+
+/** The start instant, where the file alone tells it or the site's zone completes it. */
+function startedAt(content: CaptureContent, survey: CaptureSurvey): string | null {
+	if (!content.start) return null;
+	return new Date(startToUtc_ms(content.start, survey.timeZone).utc_ms).toISOString();
+}
+
+async function readFiles(
+	container: Container,
+	uploads: UploadRow[],
+	context: JobContext
+): Promise<CaptureFile[]> {
+	const total_bytes = uploads.reduce((sum, upload) => sum + upload.size_bytes, 0);
+	let done_bytes = 0;
+	const files: CaptureFile[] = [];
+	for (const upload of uploads) {
+		await context.progress(done_bytes, total_bytes + 1, `reading ${upload.name}`);
+		files.push({ name: upload.name, bytes: await container.blobs.read(upload.sha256) });
+		done_bytes += upload.size_bytes;
+	}
+	await context.progress(done_bytes, total_bytes + 1, 'recognising what the files hold');
+	return files;
+}
+
+/** Lets go of the uploads and ends the job with the reader's sentence, in one transaction: nothing stays half. */
+async function giveUp(
+	container: Container,
+	context: JobContext,
+	uploadIds: readonly string[],
+	sentence: string
+): Promise<never> {
+	await withTransaction(container.db, async (trx) => {
+		await uploadsRepository(trx, context).remove(uploadIds);
+		await container.jobs.end(trx, context.jobId, 'failed', sentence);
+	});
+	throw new JobFailed(sentence);
+}
+
+export const handle: JobHandler = async (container, rawPayload, context) => {
+	const payload = recogniseCapture.payload.parse(rawPayload);
+	const { db, clock } = container;
+	const survey = await captureSurvey(db, context, payload.surveyId);
+	const uploads = await uploadsRepository(db, context).ofSurvey(payload.surveyId, payload.uploadIds);
+	if (!survey || uploads.length !== payload.uploadIds.length)
+		return giveUp(
+			container,
+			context,
+			payload.uploadIds,
+			'The uploaded files are no longer there. Choose them again.'
+		);
+	try {
+		const read = readCapture(await readFiles(container, uploads, context));
+		if (!read.ok) return await giveUp(container, context, payload.uploadIds, read.problem.sentence);
+		const content = read.value;
+		const facts: StoredFacts = {
+			...captureFacts(content),
+			suggestions: suggestMappings(content, {
+				system: survey.system,
+				phaseNames: survey.phaseNames,
+				voltageTransformer: survey.voltageRatio,
+				currentTransformer: survey.currentRatio
+			})
+		};
+		await context.progress(0, 1, 'storing what was recognised');
+		await withTransaction(db, async (trx) => {
+			const now = clock().toISOString();
+			const id = await capturesRepository(trx, context).add({
+				capture: {
+					client_id: survey.clientId,
+					survey_id: survey.id,
+					name: payload.name,
+					kind: content.kind,
+					format: content.format,
+					variant: content.variant,
+					facts_json: JSON.stringify(facts),
+					started_at: startedAt(content, survey),
+					duration_s: facts.duration_s,
+					uploaded_by: payload.requestedBy.userId,
+					created_at: now
+				},
+				files: uploads.map(({ name, sha256, size_bytes }) => ({ name, sha256, size_bytes }))
+			});
+			await uploadsRepository(trx, context).remove(payload.uploadIds);
+			await appendAudit(
+				trx,
+				{ ...payload.requestedBy, practiceId: context.practiceId },
+				{
+					action: 'capture.recognised',
+					subjectKind: 'capture',
+					subjectId: id,
+					detail: { format: content.format, variant: content.variant }
+				},
+				clock()
+			);
+			await context.finish(trx);
+		});
+	} catch (cause) {
+		if (cause instanceof JobCancelled) await uploadsRepository(db, context).remove(payload.uploadIds);
+		throw cause;
+	}
+};
