@@ -10,6 +10,10 @@ declare global {
 		interface Locals {
 			/** Who acts in this request, in which practice and role; null when nobody is signed in. */
 			actor: Actor | null;
+			/** Name of the organisation that a client acts for. */
+			clientName: string | null;
+			/** Hash of the session's token: names the session, opens nothing. */
+			sessionId: string | null;
 			requestId: string;
 			theme: 'light' | 'dark' | 'auto';
 		}

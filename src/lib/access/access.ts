@@ -32,9 +32,11 @@ export type Action =
 	| 'portal.read' // issued reports of one's own organisation
 	| 'portal.acknowledge'
 	| 'portal.query'
-	| 'portal.act';
+	| 'portal.act'
+	| 'account.manage'; // one's own name, password and devices
 
 const CONSULTANT: readonly Action[] = [
+	'account.manage',
 	'register.read',
 	'register.write',
 	'capture.read',
@@ -50,7 +52,13 @@ const GRANTS: Record<Role, ReadonlySet<Action>> = {
 	owner: new Set<Action>([...CONSULTANT, 'report.check', 'practice.manage']),
 	checker: new Set<Action>([...CONSULTANT, 'report.check']),
 	engineer: new Set<Action>(CONSULTANT),
-	client: new Set<Action>(['portal.read', 'portal.acknowledge', 'portal.query', 'portal.act'])
+	client: new Set<Action>([
+		'account.manage',
+		'portal.read',
+		'portal.acknowledge',
+		'portal.query',
+		'portal.act'
+	])
 };
 
 export function can(actor: Pick<Actor, 'role'>, action: Action): boolean {

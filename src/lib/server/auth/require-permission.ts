@@ -4,7 +4,10 @@ import { AppError } from '../app-error';
 /** First line of every use case. Throws `forbidden` when the actor's role does not include the action. */
 export function requirePermission(actor: Actor, action: Action): void {
 	if (!can(actor, action))
-		throw new AppError('forbidden', `Your role (${actor.role}) does not allow this. Ask the owner of the practice.`);
+		throw new AppError(
+			'forbidden',
+			`Your role (${actor.role}) does not allow this. Ask the owner of the practice.`
+		);
 }
 
 /** As requirePermission, where any one of several actions is enough. */
