@@ -5,7 +5,7 @@ import {
 	CHART_PALETTES,
 	axisTextStyle,
 	chartBase,
-	legendStyle,
+	chartFont,
 	phaseStyle,
 	tooltipStyle,
 	type ChartMode
@@ -26,7 +26,7 @@ export interface PhasorData {
 }
 
 /** Share of the circle's radius that the longest arrow of a quantity reaches; currents stay inside the voltages. */
-const REACH = { voltage: 1, current: 0.7 };
+const REACH = { voltage: 0.82, current: 0.56 };
 
 /** Arrows from the centre, angles counter-clockwise from the right; each quantity on a scale of its own. */
 export function buildPhasorOption(data: PhasorData, mode: ChartMode): EChartsOption {
@@ -35,9 +35,8 @@ export function buildPhasorOption(data: PhasorData, mode: ChartMode): EChartsOpt
 		Math.max(...data.phasors.filter((p) => p.quantity === quantity).map((p) => p.magnitude));
 	return {
 		...chartBase(mode),
-		legend: { ...legendStyle(mode), itemWidth: 26 },
 		tooltip: { ...tooltipStyle(mode), trigger: 'item' },
-		polar: { center: ['50%', '56%'], radius: '70%' },
+		polar: { center: ['50%', '50%'], radius: '82%' },
 		angleAxis: {
 			type: 'value',
 			min: 0,
@@ -49,13 +48,13 @@ export function buildPhasorOption(data: PhasorData, mode: ChartMode): EChartsOpt
 			axisTick: { show: true, length: 4, lineStyle: { color: palette.edge } },
 			axisLabel: {
 				...axisTextStyle(mode),
-				formatter: (value: number) => (value === 360 ? '' : `${value > 180 ? value - 360 : value}°`)
+				formatter: (value: number) => (value === 360 ? '' : `${value > 180 ? `−${360 - value}` : value}°`)
 			},
 			splitLine: { show: true, lineStyle: { color: palette.rule } }
 		},
 		radiusAxis: {
 			min: 0,
-			max: 1.08,
+			max: 1,
 			show: true,
 			axisLine: { show: false },
 			axisTick: { show: false },
@@ -74,7 +73,7 @@ export function buildPhasorOption(data: PhasorData, mode: ChartMode): EChartsOpt
 				color: style.color,
 				lineStyle: {
 					color: style.color,
-					width: p.quantity === 'voltage' ? 2 : 2,
+					width: 2,
 					type: p.quantity === 'voltage' ? ('solid' as const) : [5, 3]
 				},
 				showAllSymbol: true,
@@ -92,7 +91,7 @@ export function buildPhasorOption(data: PhasorData, mode: ChartMode): EChartsOpt
 							formatter: p.label,
 							position: labelSide(angle),
 							color: palette.ink,
-							fontFamily: 'IBM Plex Sans',
+							fontFamily: chartFont(mode),
 							fontSize: 12
 						}
 					}

@@ -137,7 +137,7 @@ function phaseBars(
 	];
 }
 
-/** The limit over the full width of each order's band, with a riser where it changes. */
+/** The limit as one step line over the full width of each order's band; it breaks where no limit applies. */
 function limitSteps(limits: readonly (number | null)[], mode: ChartMode): CustomSeriesOption {
 	const palette = CHART_PALETTES[mode];
 	return {
@@ -147,29 +147,40 @@ function limitSteps(limits: readonly (number | null)[], mode: ChartMode): Custom
 		z: 5,
 		color: palette.ink,
 		itemStyle: { color: palette.ink },
-		encode: { x: 0, y: 1 },
-		data: limits.flatMap((limit, i) => (limit === null ? [] : [[i, limit]])),
+		// One item draws it all; its value lets the axis reach the greatest limit.
+		data: [[0, Math.max(0, ...limits.filter((limit) => limit !== null))]],
 		renderItem: (_, api) => {
-			const index = Number(api.value(0));
-			const limit = Number(api.value(1));
-			const [x = 0, y = 0] = api.coord([index, limit]);
 			const size = api.size?.([1, 0]);
 			const halfBand = (Array.isArray(size) ? (size[0] ?? 0) : (size ?? 0)) / 2;
-			const points: [number, number][] = [
-				[x - halfBand, y],
-				[x + halfBand, y]
-			];
-			const next = limits[index + 1];
-			if (next !== null && next !== undefined && next !== limit) {
-				points.push([x + halfBand, api.coord([index, next])[1] ?? y]);
-			}
 			return {
-				type: 'polyline',
-				shape: { points },
-				style: { stroke: palette.ink, lineWidth: 1.5, fill: 'none' }
+				type: 'group',
+				children: runsOf(limits).map((run) => ({
+					type: 'polyline' as const,
+					shape: {
+						points: run.flatMap(({ index, limit }): [number, number][] => {
+							const [x = 0, y = 0] = api.coord([index, limit]);
+							return [
+								[x - halfBand, y],
+								[x + halfBand, y]
+							];
+						})
+					},
+					style: { stroke: palette.ink, lineWidth: 1.5, fill: 'none' }
+				}))
 			};
 		}
 	};
+}
+
+function runsOf(limits: readonly (number | null)[]): { index: number; limit: number }[][] {
+	const runs: { index: number; limit: number }[][] = [];
+	limits.forEach((limit, index) => {
+		if (limit === null) return;
+		const last = runs.at(-1);
+		if (last && last.at(-1)?.index === index - 1) last.push({ index, limit });
+		else runs.push([{ index, limit }]);
+	});
+	return runs;
 }
 
 function tooltipText(data: SpectrumData, parameters: unknown): string {

@@ -79,7 +79,12 @@ export const CHART_PALETTES: Record<ChartMode, ChartPalette> = {
 	}
 };
 
+/** The PDF registers its font under exactly this name and knows no list of substitutes. */
 export const CHART_FONT = 'IBM Plex Sans';
+
+export function chartFont(mode: ChartMode): string {
+	return mode === 'print' ? CHART_FONT : `${CHART_FONT}, ui-sans-serif, sans-serif`;
+}
 export const CHART_TEXT_PX = 12;
 
 /** How one conductor is drawn: colour, and for those who cannot tell colours a dash and a marker of its own. */
@@ -112,7 +117,7 @@ export function chartBase(mode: ChartMode): EChartsOption {
 	return {
 		animation: false,
 		backgroundColor: mode === 'print' ? palette.ground : 'transparent',
-		textStyle: { fontFamily: CHART_FONT, fontSize: CHART_TEXT_PX, color: palette.ink },
+		textStyle: { fontFamily: chartFont(mode), fontSize: CHART_TEXT_PX, color: palette.ink },
 		aria: { enabled: false }
 	};
 }
@@ -127,13 +132,13 @@ export function legendStyle(mode: ChartMode) {
 		itemGap: 18,
 		inactiveColor: palette.edge,
 		inactiveBorderColor: palette.edge,
-		textStyle: { fontFamily: CHART_FONT, fontSize: CHART_TEXT_PX, color: palette.inkSoft }
+		textStyle: { fontFamily: chartFont(mode), fontSize: CHART_TEXT_PX, color: palette.inkSoft }
 	};
 }
 
 export function axisTextStyle(mode: ChartMode) {
 	const palette = CHART_PALETTES[mode];
-	return { fontFamily: CHART_FONT, fontSize: CHART_TEXT_PX, color: palette.inkSoft };
+	return { fontFamily: chartFont(mode), fontSize: CHART_TEXT_PX, color: palette.inkSoft };
 }
 
 /** Axis lines and graticule. The value axis has no line of its own: the graticule carries it. */
@@ -174,6 +179,6 @@ export function tooltipStyle(mode: ChartMode) {
 		padding: [6, 10],
 		shadowBlur: 0,
 		shadowColor: 'transparent',
-		textStyle: { fontFamily: CHART_FONT, fontSize: 13, color: palette.ink }
+		textStyle: { fontFamily: chartFont(mode), fontSize: 13, color: palette.ink }
 	};
 }

@@ -5,6 +5,7 @@ import {
 	CHART_PALETTES,
 	categoryAxisStyle,
 	chartBase,
+	chartFont,
 	legendStyle,
 	phaseStyle,
 	tooltipStyle,
@@ -35,10 +36,11 @@ export interface TrendData {
 /** Values over time with the percentile and the limit drawn; flagged intervals masked. */
 export function buildTrendOption(data: TrendData, mode: ChartMode): EChartsOption {
 	const palette = CHART_PALETTES[mode];
-	const time = timeFormat(data.zone);
+	const shift_ms = siteShift_ms(data);
+	const time = timeFormat(data.zone, shift_ms);
 	const rules = [
-		...(data.limit ? [rule(data.limit, palette.ink, 'solid' as const)] : []),
-		...(data.percentile ? [rule(data.percentile, palette.copper, [6, 3])] : [])
+		...(data.limit ? [rule(data.limit, palette.ink, 'solid' as const, mode)] : []),
+		...(data.percentile ? [rule(data.percentile, palette.copper, [6, 3], mode)] : [])
 	];
 	return {
 		...chartBase(mode),
@@ -75,7 +77,7 @@ export function buildTrendOption(data: TrendData, mode: ChartMode): EChartsOptio
 		series: data.series.map((series, i) => ({
 			type: 'line' as const,
 			name: series.label,
-			data: maskFlagged(series, data.flagged),
+			data: maskFlagged(series, data.flagged).map(([at, value]) => [at + shift_ms, value]),
 			showSymbol: false,
 			symbol: phaseStyle(series.phase, mode).symbol,
 			connectNulls: false,
@@ -93,8 +95,8 @@ export function buildTrendOption(data: TrendData, mode: ChartMode): EChartsOptio
 							silent: true,
 							itemStyle: { color: palette.slate, opacity: 0.22 },
 							data: data.flagged.map((f): [{ xAxis: number }, { xAxis: number }] => [
-								{ xAxis: f.from_ms },
-								{ xAxis: f.to_ms }
+								{ xAxis: f.from_ms + shift_ms },
+								{ xAxis: f.to_ms + shift_ms }
 							])
 						}
 					}
@@ -103,15 +105,22 @@ export function buildTrendOption(data: TrendData, mode: ChartMode): EChartsOptio
 	};
 }
 
-function rule(line: { label: string; value: number }, color: string, type: 'solid' | number[]) {
+function rule(
+	line: { label: string; value: number },
+	color: string,
+	type: 'solid' | number[],
+	mode: ChartMode
+) {
 	return {
 		yAxis: line.value,
 		lineStyle: { color, width: 1.5, type },
 		label: {
 			formatter: line.label,
-			position: 'insideStartTop' as const,
+			position: 'insideEndTop' as const,
 			color,
-			fontFamily: 'IBM Plex Sans',
+			backgroundColor: CHART_PALETTES[mode].ground,
+			padding: [1, 4],
+			fontFamily: chartFont(mode),
 			fontSize: 12
 		}
 	};
@@ -152,7 +161,36 @@ export function maskFlagged(
 	return points;
 }
 
-function timeFormat(zone: string) {
+/**
+ * Ticks fall on round hours of the axis, so the axis runs on the site's clock as it was at the first interval.
+ * Labels are computed from the true instant: across a change to summer time they stay right.
+ */
+function siteShift_ms(data: TrendData): number {
+	const first = data.series.find((series) => series.times_ms.length > 0)?.times_ms[0];
+	if (first === undefined) return 0;
+	const parts = new Intl.DateTimeFormat('en-GB', {
+		timeZone: data.zone,
+		year: 'numeric',
+		month: 'numeric',
+		day: 'numeric',
+		hour: 'numeric',
+		minute: 'numeric',
+		second: 'numeric',
+		hourCycle: 'h23'
+	}).formatToParts(first);
+	const part = (type: string) => Number(parts.find((p) => p.type === type)?.value);
+	const wallClock_ms = Date.UTC(
+		part('year'),
+		part('month') - 1,
+		part('day'),
+		part('hour'),
+		part('minute'),
+		part('second')
+	);
+	return wallClock_ms - Math.floor(first / 1000) * 1000;
+}
+
+function timeFormat(zone: string, shift_ms: number) {
 	const day = new Intl.DateTimeFormat('en-GB', { timeZone: zone, day: 'numeric', month: 'short' });
 	const clock = new Intl.DateTimeFormat('en-GB', {
 		timeZone: zone,
@@ -160,16 +198,15 @@ function timeFormat(zone: string) {
 		minute: '2-digit',
 		hourCycle: 'h23'
 	});
-	const full = (value: number) => `${day.format(value)}, ${clock.format(value)}`;
-	return {
-		full,
-		short: (value: number) => (clock.format(value) === '00:00' ? day.format(value) : full(value))
-	};
+	const full = (value: number) => `${day.format(value - shift_ms)}, ${clock.format(value - shift_ms)}`;
+	const short = (value: number) =>
+		clock.format(value - shift_ms) === '00:00' ? day.format(value - shift_ms) : full(value);
+	return { full, short };
 }
 
 export function trendTable(data: TrendData): ChartTable {
 	const isFlagged = (time: number) => data.flagged.some((f) => time >= f.from_ms && time < f.to_ms);
-	const { full } = timeFormat(data.zone);
+	const { full } = timeFormat(data.zone, 0);
 	return {
 		columns: [
 			{ label: `Interval start, ${data.zone}` },

@@ -37,14 +37,11 @@ export interface WaveformData {
 const QUANTITIES = ['voltage', 'current'] as const;
 
 /** Instantaneous values over time: voltages in the upper panel, currents in the lower, zoomed together. */
-export function buildWaveformOption(data: WaveformData, mode: ChartMode): EChartsOption {
+export function buildWaveformOption(data: WaveformData, mode: ChartMode, height_px: number): EChartsOption {
 	const palette = CHART_PALETTES[mode];
 	const panels = QUANTITIES.filter((q) => data.channels.some((c) => c.quantity === q));
 	const zoomable = mode !== 'print';
 	const view = data.view_s ?? data.extent_s;
-	const top = 58;
-	const gap = 56;
-	const bottom = zoomable ? 84 : 44;
 	return {
 		...chartBase(mode),
 		legend: { ...legendStyle(mode), itemWidth: 26 },
@@ -55,16 +52,7 @@ export function buildWaveformOption(data: WaveformData, mode: ChartMode): EChart
 			valueFormatter: (value) => (typeof value === 'number' ? value.toPrecision(5) : 'no data')
 		},
 		axisPointer: { link: [{ xAxisIndex: 'all' }] },
-		// Heights in percent of what the fixed margins leave cannot be said directly: the panels share it by halves.
-		grid: panels
-			.map((_, i) =>
-				panels.length === 1
-					? { left: 64, right: 16, top, bottom }
-					: i === 0
-						? { left: 64, right: 16, top, bottom: `${50}%` }
-						: { left: 64, right: 16, top: '50%', bottom }
-			)
-			.map((grid, i) => (panels.length === 2 && i === 1 ? { ...grid, top: `${50 + gapShare(gap)}%` } : grid)),
+		grid: panelGrids(panels.length, height_px, zoomable ? 84 : 44),
 		xAxis: panels.map((_, i) => ({
 			...categoryAxisStyle(mode),
 			type: 'value',
@@ -114,9 +102,17 @@ export function buildWaveformOption(data: WaveformData, mode: ChartMode): EChart
 	};
 }
 
-/** Room between the panels for the lower one's axis name, as a share of an ordinary height of 460 px. */
-function gapShare(gap_px: number): number {
-	return Math.round((100 * gap_px) / 2 / 460) + 1;
+/** Equal panels, one above the other, each with room over it for its axis name. */
+function panelGrids(count: number, height_px: number, bottom_px: number) {
+	const top_px = 58;
+	const gap_px = 40;
+	const panel_px = (height_px - top_px - bottom_px - (count - 1) * gap_px) / Math.max(1, count);
+	return Array.from({ length: count }, (_, i) => ({
+		left: 64,
+		right: 16,
+		top: top_px + i * (panel_px + gap_px),
+		height: panel_px
+	}));
 }
 
 function axisName(data: WaveformData, quantity: 'voltage' | 'current'): string {
