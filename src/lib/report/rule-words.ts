@@ -1,35 +1,16 @@
 import type { DecisionRule } from '../assessment/assessment';
-import type { LimitBasis, StatisticRule } from '../limits/limit-set';
-import { formatOrdinal } from '../units/format';
-
-/** What the percentages of a table are of, after the word "percent": "of demand current I_L". */
-export function basisWords(basis: LimitBasis): string {
-	switch (basis) {
-		case 'demand-current':
-			return 'of demand current I_L';
-		case 'nominal-voltage':
-			return 'of nominal voltage';
-		case 'fundamental':
-			return 'of the fundamental';
-	}
-}
-
-function intervalWords(interval_s: number): string {
-	if (interval_s === 600) return '10-minute values';
-	return interval_s === 3 ? '3-second values' : `values over ${interval_s} s`;
-}
-
-/** "weekly 95th percentile of 10-minute values". */
-export function statisticWords(rule: Pick<StatisticRule, 'interval_s' | 'percentile' | 'period'>): string {
-	const period = rule.period === 'week' ? 'weekly' : 'daily';
-	if (rule.percentile === 100) return `${period} maximum of ${intervalWords(rule.interval_s)}`;
-	return `${period} ${formatOrdinal(rule.percentile)} percentile of ${intervalWords(rule.interval_s)}`;
-}
+import { ruleWords } from '../assessment/wording';
+import type { LimitTable } from '../limits/limit-set';
 
 /** Key that a capture too short for any percentile carries instead of a rule's. */
 export const SNAPSHOT_KEY = 'snapshot';
-export const SNAPSHOT_WORDS =
-	'value of the capture, indicative only: too short for the percentile that the rule asks for';
+
+/** How a value came about, as a noun: "95th percentile of the week’s 10-minute values". */
+export function statisticText(table: Pick<LimitTable, 'statistics'> | undefined, key: string): string {
+	const rule = table?.statistics.find((candidate) => candidate.key === key);
+	if (rule !== undefined) return ruleWords(rule);
+	return 'greatest value of the capture, indicative only';
+}
 
 export function decisionRuleWords(rule: DecisionRule): string {
 	return rule === 'guarded'

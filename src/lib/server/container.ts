@@ -7,6 +7,10 @@ import { createLog, type Log } from './log';
 import { createOutbox, type MailTransport } from './mail/outbox';
 import { createMailTransport } from './mail/transport';
 import { createAccountService } from './services/account.service';
+import { createInvitationsService } from './services/invitations.service';
+import { createMailboxService } from './services/mailbox.service';
+import { createPeopleService } from './services/people.service';
+import { createPracticeService } from './services/practice.service';
 import { createDeskService } from './services/desk.service';
 import { createInstrumentsService } from './services/instruments.service';
 import { createPortalService } from './services/portal.service';
@@ -16,6 +20,10 @@ import { createSignInService } from './services/sign-in.service';
 import { createSurveysService } from './services/surveys.service';
 import type { ServiceDeps } from './service-deps';
 import type { BlobStore } from './storage/blob-store';
+import { createAssessmentsService } from './services/assessments.service';
+import { createCapturesService } from './services/captures.service';
+import { createReadingsService } from './services/readings.service';
+import { createUploadsService } from './services/uploads.service';
 import { createDiskBlobStore } from './storage/disk-blob-store';
 
 export interface Overrides {
@@ -34,9 +42,17 @@ function buildServices(deps: ServiceDeps) {
 		surveys: createSurveysService(deps),
 		instruments: createInstrumentsService(deps),
 		account: createAccountService(deps),
+		invitations: createInvitationsService(deps),
+		people: createPeopleService(deps),
+		practice: createPracticeService(deps),
+		mailbox: createMailboxService(deps),
 		portal: createPortalService(deps),
 		queries: createQueriesService(deps),
-		desk: createDeskService(deps)
+		desk: createDeskService(deps),
+		uploads: createUploadsService(deps),
+		captures: createCapturesService(deps),
+		readings: createReadingsService(deps),
+		assessments: createAssessmentsService(deps)
 	};
 }
 

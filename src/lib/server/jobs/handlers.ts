@@ -6,5 +6,6 @@ export type JobHandler = (container: Container, payload: unknown, context: JobCo
 /** Kind → handler, loaded when first needed: the web process never pays for what only the worker runs. */
 export const JOB_HANDLERS: Record<string, () => Promise<JobHandler>> = {
 	'recognise-capture': async () => (await import('./recognise-capture.handler')).handle,
-	'analyse-capture': async () => (await import('./analyse-capture.handler')).handle
+	'analyse-capture': async () => (await import('./analyse-capture.handler')).handle,
+	'assess-survey': async () => (await import('./assess-survey.handler')).handle
 };

@@ -40,13 +40,6 @@ export function pointKindWords(model: ReportModel): string {
 	return model.point.kind === 'pcc' ? 'point of common coupling' : 'in-plant point';
 }
 
-export const SYSTEM_WORDS = {
-	'single-phase': 'single phase',
-	'split-phase': 'split phase, three-wire',
-	'three-wire': 'three phases, three-wire',
-	'four-wire': 'three phases, four-wire'
-} as const;
-
 /** First 16 digits in groups of four, as a title block shows a hash. */
 export function shortHash(sha256: string): string {
 	return (sha256.slice(0, 16).match(/.{4}/g) ?? []).join(' ');

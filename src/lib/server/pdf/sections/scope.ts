@@ -1,7 +1,8 @@
 import type { Content } from 'pdfmake/interfaces';
+import { SYSTEM_WORDS } from '../../../register/point-facts';
 import { ADVISORY_STATEMENT } from '../../../report/cautions';
 import { formatCurrent, formatNumber, formatVoltage } from '../../../units/format';
-import { measuredWords, pointKindWords, SYSTEM_WORDS } from '../document-words';
+import { measuredWords, pointKindWords } from '../document-words';
 import { contentWidth } from '../print-style';
 import type { SheetContext } from '../sheet-context';
 import { singleLineSvg } from '../single-line-drawing';
@@ -39,7 +40,7 @@ export function scopeSection(context: SheetContext): Content[] {
 			['Point', `${point.name}, ${pointKindWords(model)}`],
 			[
 				'System',
-				`${formatVoltage(point.nominalVoltage_V)}, ${point.nominalFrequency_Hz} Hz, ${SYSTEM_WORDS[point.system]}`
+				`${formatVoltage(point.nominalVoltage_V)}, ${point.nominalFrequency_Hz} Hz, ${SYSTEM_WORDS[point.system].word.toLowerCase()}`
 			],
 			['Phases', `${names.L1}, ${names.L2}, ${names.L3}; neutral ${names.N}`],
 			[

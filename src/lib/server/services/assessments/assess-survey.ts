@@ -1,0 +1,152 @@
+import { assess } from '../../../assessment/assess';
+import type { Assessment } from '../../../assessment/assessment';
+import { applicableSets } from '../../../limits/applicable-sets';
+import type { LimitSet } from '../../../limits/limit-set';
+import { toAssessedPoint } from '../../../register/assessed-point';
+import type { PointFacts } from '../../../register/point-facts';
+import { seriesForSurvey } from '../../analysis/survey-series';
+import { appendAudit } from '../../audit/audit-log';
+import { withTransaction, type Db } from '../../db/database';
+import { assessmentsRepository, type AssessmentInputRecord } from '../../repositories/assessments.repository';
+import { instrumentsRepository } from '../../repositories/instruments.repository';
+import { limitSetsRepository } from '../../repositories/limit-sets.repository';
+import { toPointFacts } from '../../repositories/point-mapping';
+import { pointsRepository } from '../../repositories/points.repository';
+import type { Scope } from '../../repositories/scope';
+import { sitesRepository } from '../../repositories/sites.repository';
+import { surveysRepository } from '../../repositories/surveys.repository';
+import { STATED_ORDERS, surveyUncertainty } from './survey-uncertainty';
+
+/** Who asked for it; the worker acts for nobody in particular after an analysis. */
+export interface Assessor {
+	userId: string | null;
+	name: string;
+}
+
+export interface PreparedAssessment {
+	clientId: string;
+	engineVersion: string;
+	input: AssessmentInputRecord;
+	assessment: Assessment;
+}
+
+/** The point's own limit set, or the one that suits it best, with the reason. */
+export async function limitSetOfPoint(
+	db: Db,
+	scope: Scope,
+	facts: PointFacts
+): Promise<{ limitSet: LimitSet; reason: string } | null> {
+	const sets = limitSetsRepository(db, scope.practiceId);
+	if (facts.limitSetId !== null) {
+		const chosen = await sets.byId(facts.limitSetId);
+		return chosen === null ? null : { limitSet: chosen, reason: facts.limitSetReason };
+	}
+	const best = applicableSets({ ...facts, country: null }, await sets.list())[0];
+	return best === undefined ? null : { limitSet: best.limitSet, reason: best.reason };
+}
+
+async function sourceHash(db: Db, limitSetId: number): Promise<string> {
+	return (await db('limit_sets').where({ id: limitSetId }).first('source_sha256'))?.source_sha256 ?? '';
+}
+
+/**
+ * Gathers a survey's series, point, limits and uncertainty, and judges them. Saves nothing.
+ * returns  null while there is nothing to judge, or no limit set to judge by
+ */
+export async function prepareAssessment(
+	db: Db,
+	scope: Scope,
+	surveyId: string
+): Promise<PreparedAssessment | null> {
+	const survey = await surveysRepository(db, scope).byId(surveyId);
+	const pointRow = survey && (await pointsRepository(db, scope).byId(survey.point_id));
+	const site = survey && (await sitesRepository(db, scope).byId(survey.site_id));
+	if (!survey || !pointRow || !site) return null;
+	const facts = toPointFacts(pointRow);
+	const chosen = await limitSetOfPoint(db, scope, facts);
+	const gathered = await seriesForSurvey(db, scope, surveyId);
+	if (chosen === null || gathered.series.length === 0) return null;
+	const instrument =
+		survey.instrument_id === null
+			? null
+			: ((await instrumentsRepository(db, scope).byId(survey.instrument_id)) ?? null);
+	const uncertainty = surveyUncertainty(instrument, pointRow.ct_primary_a);
+	const point = toAssessedPoint(facts);
+	const assessment = assess({
+		point,
+		limitSet: chosen.limitSet,
+		series: gathered.series,
+		siteTimeZone: site.time_zone,
+		uncertainty,
+		decisionRule: survey.decision_rule
+	});
+	return {
+		clientId: survey.client_id,
+		engineVersion: gathered.engineVersion,
+		assessment,
+		input: {
+			point,
+			siteTimeZone: site.time_zone,
+			limitSet: {
+				id: chosen.limitSet.id,
+				key: chosen.limitSet.key,
+				title: assessment.limitSetTitle,
+				sourceSha256: await sourceHash(db, chosen.limitSet.id),
+				reason: chosen.reason
+			},
+			uncertaintyAtOrders: STATED_ORDERS.map((order) => ({
+				order,
+				voltage_pct: uncertainty.voltage_pctOfReading(order),
+				current_pct: uncertainty.current_pctOfReading(order)
+			})),
+			instrumentId: survey.instrument_id,
+			analysisIds: gathered.analysisIds,
+			captures: gathered.captures
+		}
+	};
+}
+
+/**
+ * Judges a survey anew and makes the result current; without anything to judge, no verdict stands any more.
+ * `finish` runs inside the saving transaction.
+ */
+export async function assessAndSave(
+	db: Db,
+	scope: Scope,
+	surveyId: string,
+	assessor: Assessor,
+	now: Date,
+	finish: (trx: Db) => Promise<void> = async () => undefined
+): Promise<string | null> {
+	const prepared = await prepareAssessment(db, scope, surveyId);
+	return withTransaction(db, async (trx) => {
+		const assessments = assessmentsRepository(trx, scope);
+		let id: string | null = null;
+		if (prepared === null) await assessments.retireCurrent(surveyId);
+		else {
+			id = await assessments.addCurrent({
+				...prepared,
+				surveyId,
+				createdBy: assessor.userId,
+				at: now.toISOString()
+			});
+			const actor =
+				assessor.userId === null
+					? { userId: null, name: assessor.name, practiceId: scope.practiceId }
+					: { userId: assessor.userId, name: assessor.name, practiceId: scope.practiceId };
+			await appendAudit(
+				trx,
+				actor,
+				{
+					action: 'assessment.made',
+					subjectKind: 'assessment',
+					subjectId: id,
+					detail: { surveyId, verdict: prepared.assessment.verdict, limitSet: prepared.input.limitSet.key }
+				},
+				now
+			);
+		}
+		await finish(trx);
+		return id;
+	});
+}
