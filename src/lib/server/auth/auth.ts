@@ -123,6 +123,10 @@ export async function openSession(
 		if (cause instanceof AuthError && cause.type === 'CredentialsSignin') return false;
 		throw cause;
 	}
+	// Where to go next is ours to say; Auth.js' own note of it is not used.
+	event.cookies.delete(`${isSecure(container().config) ? '__Secure-' : ''}authjs.callback-url`, {
+		path: '/'
+	});
 	// Who signs in anew in the same browser leaves no second session behind.
 	if (event.locals.sessionId !== null) await container().services.account.endSession(event.locals.sessionId);
 	return true;

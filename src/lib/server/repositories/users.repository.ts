@@ -10,14 +10,12 @@ export function usersRepository(db: Db) {
 		/** `email` in its stored form (see normaliseEmail). */
 		byEmail: (email: string): Promise<UserRow | undefined> => db('users').where({ email }).first(),
 
-		async insert(entry: { email: string; name: string; passwordHash: string; now: string }): Promise<string> {
+		async insert(entry: { email: string; name: string; now: string }): Promise<string> {
 			const id = newId();
 			await db('users').insert({
 				id,
 				email: entry.email,
 				name: entry.name,
-				password_hash: entry.passwordHash,
-				email_verified_at: entry.now,
 				created_at: entry.now
 			});
 			return id;
