@@ -35,6 +35,10 @@ export interface UncertaintyStatement {
 	text: string;
 	voltage_pctOfReading: (order: number) => number;
 	current_pctOfReading: (order: number) => number;
+	/** Least expanded uncertainty of a voltage, percent of nominal voltage; absent = none stated. */
+	voltageFloor_pctOfNominal?: number;
+	/** Least expanded uncertainty of a current, A on the primary side; absent = none stated. */
+	currentFloor_A?: number;
 }
 
 export interface VerdictRow {
@@ -98,6 +102,8 @@ export interface Assessment {
 	rows: VerdictRow[];
 	/** Facts still missing, each a sentence that says what it is needed for. */
 	missing: string[];
+	/** Facts that a reader should know beside the verdict (neutral, dc, flagged intervals), each a sentence. */
+	notes?: string[];
 	/** Figures shown beside the verdict; per phase where it applies. */
 	headline: {
 		tdd: { phase: Phase; value_pct: number }[];
