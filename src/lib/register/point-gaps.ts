@@ -15,8 +15,9 @@ export function pointGaps(facts: Pick<PointFacts, 'limitSetId' | 'demand' | 'sho
 	if (facts.limitSetId === null)
 		gaps.push({
 			fact: 'limit-set',
-			short: 'needs a limit set',
-			sentence: 'No limit set is chosen. Without one nothing can be judged.'
+			short: 'no limit set chosen',
+			sentence:
+				'No limit set is chosen. Until one is, the verdict takes the published one that suits best, and names it.'
 		});
 	if (facts.demand.method === 'unknown')
 		gaps.push({

@@ -1,23 +1,34 @@
-import { NOT_KNOWN, powerVoltage_V, type ComputedCurrent } from './demand-facts';
-import type { PointFacts } from './point-facts';
+import { computeShortCircuit as shortCircuitOf, type ShortCircuitSource } from '../assessment/short-circuit';
+import { NOT_KNOWN, type ComputedCurrent } from './demand-facts';
+import type { PointFacts, ShortCircuit } from './point-facts';
 
-/** Short-circuit current I_sc at the point: as given, or from fault level or transformer. */
+function sourceOf(shortCircuit: Exclude<ShortCircuit, { method: 'unknown' }>): ShortCircuitSource {
+	switch (shortCircuit.method) {
+		case 'current':
+			return { kind: 'given', shortCircuitCurrent_A: shortCircuit.shortCircuitCurrent_A };
+		case 'fault-level':
+			return { kind: 'fault-level', faultLevel_VA: shortCircuit.faultLevel_VA };
+		case 'transformer':
+			return {
+				kind: 'transformer',
+				rating_VA: shortCircuit.rating_VA,
+				impedance_pct: shortCircuit.impedance_pct,
+				upstreamFaultLevel_VA: shortCircuit.upstreamFaultLevel_VA
+			};
+	}
+}
+
+/** Short-circuit current I_sc at a point: as given, or from fault level or transformer. */
 export function computeShortCircuit(
 	point: Pick<PointFacts, 'shortCircuit' | 'system' | 'nominalVoltage_V'>
 ): ComputedCurrent {
-	const { shortCircuit } = point;
-	switch (shortCircuit.method) {
-		case 'unknown':
-			return NOT_KNOWN;
-		case 'current':
-			return { current_A: shortCircuit.shortCircuitCurrent_A, working: [], remarks: [] };
-		case 'fault-level':
-			return { current_A: shortCircuit.faultLevel_VA / powerVoltage_V(point), working: [], remarks: [] };
-		case 'transformer': {
-			const own_VA = shortCircuit.rating_VA / (shortCircuit.impedance_pct / 100);
-			const upstream_VA = shortCircuit.upstreamFaultLevel_VA;
-			const level_VA = upstream_VA === null ? own_VA : 1 / (1 / own_VA + 1 / upstream_VA);
-			return { current_A: level_VA / powerVoltage_V(point), working: [], remarks: [] };
-		}
-	}
+	if (point.shortCircuit.method === 'unknown') return NOT_KNOWN;
+	const computed = shortCircuitOf(sourceOf(point.shortCircuit), point);
+	return computed.ok
+		? {
+				current_A: computed.value.shortCircuitCurrent_A,
+				working: computed.value.working,
+				remarks: computed.value.assumptions
+			}
+		: { ...NOT_KNOWN, remarks: [computed.problem] };
 }

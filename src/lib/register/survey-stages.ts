@@ -99,7 +99,7 @@ function governingText(governing: (number | 'THD' | 'TDD')[]): string {
 	return names.length > GOVERNING_SHOWN ? `${shown} and ${names.length - GOVERNING_SHOWN} more` : shown;
 }
 
-function verdictStage({ point, readings, assessment }: SurveyProgress): Omit<SurveyStage, 'href'> {
+function verdictStage({ readings, assessment }: SurveyProgress): Omit<SurveyStage, 'href'> {
 	if (assessment !== null) {
 		const word = VERDICT_WORDS[assessment.verdict].word;
 		const named = assessment.verdict === 'compliant' || assessment.governing.length === 0;
@@ -115,9 +115,6 @@ function verdictStage({ point, readings, assessment }: SurveyProgress): Omit<Sur
 			text: 'needs readings',
 			blockedBy: 'A verdict needs readings. Upload a capture and confirm its channels first.'
 		};
-	const limitSet = point.gaps.find((gap) => gap.fact === 'limit-set');
-	if (limitSet !== undefined)
-		return { progress: 'blocked', text: limitSet.short, blockedBy: limitSet.sentence };
 	return { progress: 'open', text: 'not assessed yet', blockedBy: null };
 }
 
