@@ -8,7 +8,8 @@ import {
 	chartFont,
 	phaseStyle,
 	tooltipStyle,
-	type ChartMode
+	type ChartMode,
+	type ChartSize
 } from './theme';
 
 export interface PhasorData {
@@ -26,17 +27,22 @@ export interface PhasorData {
 }
 
 /** Share of the circle's radius that the longest arrow of a quantity reaches; currents stay inside the voltages. */
-const REACH = { voltage: 0.82, current: 0.56 };
+const REACH = { voltage: 0.78, current: 0.54 };
 
 /** Arrows from the centre, angles counter-clockwise from the right; each quantity on a scale of its own. */
-export function buildPhasorOption(data: PhasorData, mode: ChartMode): EChartsOption {
+export function buildPhasorOption(
+	data: PhasorData,
+	mode: ChartMode,
+	size: ChartSize = { width_px: 480, height_px: 380 }
+): EChartsOption {
+	const radius_px = Math.max(40, Math.min(size.width_px - 100, size.height_px - 56) / 2);
 	const palette = CHART_PALETTES[mode];
 	const longest = (quantity: 'voltage' | 'current') =>
 		Math.max(...data.phasors.filter((p) => p.quantity === quantity).map((p) => p.magnitude));
 	return {
 		...chartBase(mode),
 		tooltip: { ...tooltipStyle(mode), trigger: 'item' },
-		polar: { center: ['50%', '50%'], radius: '82%' },
+		polar: { center: ['50%', '50%'], radius: radius_px },
 		angleAxis: {
 			type: 'value',
 			min: 0,

@@ -1,12 +1,13 @@
 import type { EChartsOption } from 'echarts';
 import { init } from './echarts-core';
+import type { ChartSize } from './theme';
 
 /**
  * A chart as an SVG text without a browser, for the PDF and for downloads. Text stays text, in the font family of
  * the theme. The same option and size give the same bytes, whatever was drawn before: element ids, which the
  * library counts up over the life of the process, are numbered anew, and the classes it adds for pointers go.
  */
-export function renderChartSvg(option: EChartsOption, size: { width_px: number; height_px: number }): string {
+export function renderChartSvg(option: EChartsOption, size: ChartSize): string {
 	const chart = init(null, null, {
 		renderer: 'svg',
 		ssr: true,

@@ -3,13 +3,16 @@ import type { Phase } from '../recording/phase';
 import type { ChartTable } from './chart-table';
 import {
 	CHART_PALETTES,
+	DEFAULT_CHART_SIZE,
+	headroom,
 	categoryAxisStyle,
 	chartBase,
 	legendStyle,
 	phaseStyle,
 	tooltipStyle,
 	valueAxisStyle,
-	type ChartMode
+	type ChartMode,
+	type ChartSize
 } from './theme';
 
 export interface SpectrumData {
@@ -27,7 +30,11 @@ const OVER = 'part over the limit';
 const LIMIT = 'limit';
 
 /** Bars per order, phases side by side; the limit as a step line over them; what exceeds it hatched. */
-export function buildSpectrumOption(data: SpectrumData, mode: ChartMode): EChartsOption {
+export function buildSpectrumOption(
+	data: SpectrumData,
+	mode: ChartMode,
+	size: ChartSize = DEFAULT_CHART_SIZE
+): EChartsOption {
 	const palette = CHART_PALETTES[mode];
 	const overLimit = data.phases.some((p) =>
 		p.values.some((value, i) => value !== null && exceedance(value, data.limits?.[i] ?? null) > 0)
@@ -37,13 +44,18 @@ export function buildSpectrumOption(data: SpectrumData, mode: ChartMode): EChart
 		...(overLimit ? [{ name: OVER, icon: 'rect' }] : []),
 		...(data.limits ? [{ name: LIMIT, icon: 'path://M0 4h14v2h-14z' }] : [])
 	];
+	const room = headroom(
+		legendNames.map(({ name }) => name),
+		data.valueAxis,
+		size.width_px
+	);
 	return {
 		...chartBase(mode),
 		legend: { ...legendStyle(mode), data: legendNames },
 		grid: {
 			left: 8,
 			right: 12,
-			top: 58,
+			top: room.top_px,
 			bottom: 24,
 			outerBoundsMode: 'same',
 			outerBoundsContain: 'axisLabel'
@@ -64,10 +76,11 @@ export function buildSpectrumOption(data: SpectrumData, mode: ChartMode): EChart
 			axisTick: { show: false },
 			axisLabel: {
 				...categoryAxisStyle(mode).axisLabel,
-				interval: labelEvery(data.orders)
+				interval: labelEvery(data.orders),
+				hideOverlap: true
 			}
 		},
-		yAxis: { ...valueAxisStyle(mode), type: 'value', name: data.valueAxis, min: 0 },
+		yAxis: { ...valueAxisStyle(mode), type: 'value', name: room.axisName, min: 0 },
 		series: [
 			...data.phases.flatMap((p) => phaseBars(p, data.limits, mode, overLimit)),
 			...(data.limits ? [limitSteps(data.limits, mode)] : [])

@@ -87,6 +87,47 @@ export function chartFont(mode: ChartMode): string {
 }
 export const CHART_TEXT_PX = 12;
 
+export interface ChartSize {
+	width_px: number;
+	height_px: number;
+}
+
+export const DEFAULT_CHART_SIZE: ChartSize = { width_px: 720, height_px: 340 };
+
+/** Mean advance of a character at CHART_TEXT_PX, rounded up: widths are estimated, since paper cannot measure. */
+const CHARACTER_PX = 6.6;
+const LINE_PX = 18;
+
+/** Room over the plot for the legend and the name of the value axis, both of which wrap on a narrow screen. */
+export function headroom(legend: readonly string[], axisName: string, width_px: number) {
+	const LEGEND_MARK_PX = 50;
+	let rows = legend.length > 0 ? 1 : 0;
+	let used = 0;
+	for (const name of legend) {
+		const entry = LEGEND_MARK_PX + name.length * CHARACTER_PX;
+		if (used > 0 && used + entry > width_px) {
+			rows++;
+			used = 0;
+		}
+		used += entry;
+	}
+	const nameLines = breakLines(axisName, Math.max(120, width_px - 60) / CHARACTER_PX);
+	return {
+		top_px: rows * (LINE_PX + 6) + nameLines.length * LINE_PX + 16,
+		axisName: nameLines.join('\n')
+	};
+}
+
+function breakLines(text: string, mostCharacters: number): string[] {
+	const lines = [''];
+	for (const word of text.split(' ')) {
+		const last = lines.at(-1) ?? '';
+		if (last && last.length + 1 + word.length > mostCharacters) lines.push(word);
+		else lines[lines.length - 1] = last ? `${last} ${word}` : word;
+	}
+	return lines;
+}
+
 /** How one conductor is drawn: colour, and for those who cannot tell colours a dash and a marker of its own. */
 export interface PhaseStyle {
 	color: string;
@@ -161,7 +202,12 @@ export function valueAxisStyle(mode: ChartMode) {
 		axisLabel: axisTextStyle(mode),
 		// The name stands over the axis, flush with the plot's left edge, where it is read first.
 		nameLocation: 'end' as const,
-		nameTextStyle: { ...axisTextStyle(mode), align: 'left' as const, verticalAlign: 'bottom' as const },
+		nameTextStyle: {
+			...axisTextStyle(mode),
+			align: 'left' as const,
+			verticalAlign: 'bottom' as const,
+			lineHeight: 16
+		},
 		splitLine: { show: true, lineStyle: { color: palette.rule, width: 1 } }
 	};
 }

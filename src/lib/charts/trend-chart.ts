@@ -3,6 +3,8 @@ import type { Phase } from '../recording/phase';
 import type { ChartTable } from './chart-table';
 import {
 	CHART_PALETTES,
+	DEFAULT_CHART_SIZE,
+	headroom,
 	categoryAxisStyle,
 	chartBase,
 	chartFont,
@@ -10,7 +12,8 @@ import {
 	phaseStyle,
 	tooltipStyle,
 	valueAxisStyle,
-	type ChartMode
+	type ChartMode,
+	type ChartSize
 } from './theme';
 
 export interface TrendData {
@@ -34,7 +37,16 @@ export interface TrendData {
 }
 
 /** Values over time with the percentile and the limit drawn; flagged intervals masked. */
-export function buildTrendOption(data: TrendData, mode: ChartMode): EChartsOption {
+export function buildTrendOption(
+	data: TrendData,
+	mode: ChartMode,
+	size: ChartSize = DEFAULT_CHART_SIZE
+): EChartsOption {
+	const room = headroom(
+		data.series.map(({ label }) => label),
+		data.valueAxis,
+		size.width_px
+	);
 	const palette = CHART_PALETTES[mode];
 	const shift_ms = siteShift_ms(data);
 	const time = timeFormat(data.zone, shift_ms);
@@ -49,7 +61,7 @@ export function buildTrendOption(data: TrendData, mode: ChartMode): EChartsOptio
 		grid: {
 			left: 8,
 			right: 16,
-			top: 58,
+			top: room.top_px,
 			bottom: mode === 'print' ? 24 : 56,
 			outerBoundsMode: 'same',
 			outerBoundsContain: 'axisLabel'
@@ -72,7 +84,7 @@ export function buildTrendOption(data: TrendData, mode: ChartMode): EChartsOptio
 			nameGap: 26,
 			axisLabel: { ...categoryAxisStyle(mode).axisLabel, hideOverlap: true, formatter: time.short }
 		},
-		yAxis: { ...valueAxisStyle(mode), type: 'value', name: data.valueAxis, min: 0 },
+		yAxis: { ...valueAxisStyle(mode), type: 'value', name: room.axisName, min: 0 },
 		dataZoom: mode === 'print' ? undefined : [{ type: 'inside', filterMode: 'none' }, zoomSlider(mode)],
 		series: data.series.map((series, i) => ({
 			type: 'line' as const,

@@ -3,13 +3,16 @@ import type { Phase } from '../recording/phase';
 import type { ChartTable } from './chart-table';
 import {
 	CHART_PALETTES,
+	DEFAULT_CHART_SIZE,
+	headroom,
 	categoryAxisStyle,
 	chartBase,
 	legendStyle,
 	phaseStyle,
 	tooltipStyle,
 	valueAxisStyle,
-	type ChartMode
+	type ChartMode,
+	type ChartSize
 } from './theme';
 
 export interface WaveformChannelPoints {
@@ -37,7 +40,17 @@ export interface WaveformData {
 const QUANTITIES = ['voltage', 'current'] as const;
 
 /** Instantaneous values over time: voltages in the upper panel, currents in the lower, zoomed together. */
-export function buildWaveformOption(data: WaveformData, mode: ChartMode, height_px: number): EChartsOption {
+export function buildWaveformOption(
+	data: WaveformData,
+	mode: ChartMode,
+	size: ChartSize = { ...DEFAULT_CHART_SIZE, height_px: 460 }
+): EChartsOption {
+	const room = headroom(
+		data.channels.map(({ label }) => label),
+		// One line over the upper panel; the names of the panels are short.
+		'Voltage',
+		size.width_px
+	);
 	const palette = CHART_PALETTES[mode];
 	const panels = QUANTITIES.filter((q) => data.channels.some((c) => c.quantity === q));
 	const zoomable = mode !== 'print';
@@ -52,7 +65,7 @@ export function buildWaveformOption(data: WaveformData, mode: ChartMode, height_
 			valueFormatter: (value) => (typeof value === 'number' ? value.toPrecision(5) : 'no data')
 		},
 		axisPointer: { link: [{ xAxisIndex: 'all' }] },
-		grid: panelGrids(panels.length, height_px, zoomable ? 84 : 44),
+		grid: panelGrids(panels.length, room.top_px + 4, size.height_px - (zoomable ? 84 : 44)),
 		xAxis: panels.map((_, i) => ({
 			...categoryAxisStyle(mode),
 			type: 'value',
@@ -74,6 +87,10 @@ export function buildWaveformOption(data: WaveformData, mode: ChartMode, height_
 			type: 'value',
 			gridIndex: i,
 			name: axisName(data, quantity),
+			axisLabel: {
+				...valueAxisStyle(mode).axisLabel,
+				formatter: (value: number) => value.toLocaleString('en-GB').replace('-', '−')
+			},
 			scale: true
 		})),
 		dataZoom: zoomable
@@ -103,10 +120,9 @@ export function buildWaveformOption(data: WaveformData, mode: ChartMode, height_
 }
 
 /** Equal panels, one above the other, each with room over it for its axis name. */
-function panelGrids(count: number, height_px: number, bottom_px: number) {
-	const top_px = 58;
+function panelGrids(count: number, top_px: number, end_px: number) {
 	const gap_px = 40;
-	const panel_px = (height_px - top_px - bottom_px - (count - 1) * gap_px) / Math.max(1, count);
+	const panel_px = (end_px - top_px - (count - 1) * gap_px) / Math.max(1, count);
 	return Array.from({ length: count }, (_, i) => ({
 		left: 64,
 		right: 16,

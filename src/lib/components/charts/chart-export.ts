@@ -1,4 +1,5 @@
 import type { EChartsOption } from 'echarts';
+import type { ChartSize } from '$lib/charts/theme';
 
 /** Gives a file to the browser to save. */
 export function downloadBlob(blob: Blob, fileName: string): void {
@@ -11,10 +12,7 @@ export function downloadBlob(blob: Blob, fileName: string): void {
 }
 
 /** The chart as it would be printed, twice as fine as the screen's pixels. */
-export async function chartPng(
-	option: EChartsOption,
-	size: { width_px: number; height_px: number }
-): Promise<Blob> {
+export async function chartPng(option: EChartsOption, size: ChartSize): Promise<Blob> {
 	const { init } = await import('$lib/charts/echarts-core');
 	const canvasHolder = document.createElement('div');
 	const chart = init(canvasHolder, null, {
@@ -34,10 +32,7 @@ export async function chartPng(
 	}
 }
 
-export async function chartSvg(
-	option: EChartsOption,
-	size: { width_px: number; height_px: number }
-): Promise<Blob> {
+export async function chartSvg(option: EChartsOption, size: ChartSize): Promise<Blob> {
 	const { renderChartSvg } = await import('$lib/charts/render-chart-svg');
 	return new Blob([renderChartSvg(option, size)], { type: 'image/svg+xml' });
 }
