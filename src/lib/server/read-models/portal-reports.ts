@@ -68,13 +68,15 @@ export async function portalReports(
 			verdict: 'a.verdict',
 			evidence: 'a.evidence',
 			advisory: 'a.advisory',
-			acknowledgedAt: 'ack.acknowledged_at',
-			openQueries: db('queries as q')
+			acknowledgedAt: 'ack.acknowledged_at'
+		})
+		.select(
+			db('queries as q')
 				.count('*')
 				.whereRaw('q.revision_id = v.id')
 				.whereNot('q.status', 'closed')
-				.as('openQueries') as never
-		})
+				.as('openQueries')
+		)
 		.orderBy([{ column: 'v.issued_at', order: 'desc' }, { column: 'v.id' }])
 		.limit(PORTAL_PAGE_SIZE)
 		.offset((filter.page - 1) * PORTAL_PAGE_SIZE);
