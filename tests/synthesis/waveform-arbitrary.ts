@@ -31,7 +31,7 @@ function channelArbitrary(index: number, sampleCount: number): fc.Arbitrary<Wave
 		}));
 }
 
-function segmentsOf(sampleCount: number, rates: number[]): RateSegment[] {
+function segmentsOf(sampleCount: number, rates: readonly number[]): RateSegment[] {
 	const share = Math.floor(sampleCount / rates.length);
 	return rates.map((samplingRate_Hz, index) => ({
 		samplingRate_Hz,

@@ -1,4 +1,4 @@
-import type { Phase } from './phase';
+import { LINE_TO_LINE_PHASES, type Phase } from './phase';
 
 /** What a file says about the conductor of a channel: its own field, and the channel's name. */
 export interface PhaseText {
@@ -84,12 +84,16 @@ export function phaseHints(channels: readonly PhaseText[]): (Phase | null)[] {
 	const letters = lettersInUse(channels);
 	return channels.map(({ field, name }) => {
 		if (isResidualCurrent(name)) return 'N';
-		const fieldPhase = phaseOfWord(field, letters);
-		if (fieldPhase !== null && !/^\d/.test(field.trim())) return fieldPhase;
-		return (
-			phaseAfterQuantity(name, letters) ?? phaseAmongWords(name, letters) ?? distinctDigit(field, channels)
-		);
+		const fromField = /^\s*\d/.test(field) ? null : phaseOfWord(field, letters);
+		const fromName = phaseAfterQuantity(name, letters) ?? phaseAmongWords(name, letters);
+		// Some recorders write one conductor in the field of a line-to-line voltage; the name then says both.
+		if (fromName !== null && isPair(fromName)) return fromName;
+		return fromField ?? fromName ?? distinctDigit(field, channels);
 	});
+}
+
+function isPair(phase: Phase): boolean {
+	return (LINE_TO_LINE_PHASES as readonly Phase[]).includes(phase);
 }
 
 /** A digit field means a conductor only where channels differ in it; recorders also write one feeder number everywhere. */

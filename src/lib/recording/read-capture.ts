@@ -1,0 +1,62 @@
+import type { Result } from '../result';
+import { incompleteGroupSentence } from './group-capture-files';
+import { looksLikeCff } from './readers/comtrade/cff';
+import { looksLikeCfg, readComtrade } from './readers/comtrade/read-comtrade';
+import { readDelimitedText, type DelimitedTextOptions } from './readers/delimited-text/read-delimited-text';
+import { refuse } from './readers/read-problem';
+import type { CaptureContent, CaptureFile, ReadProblem } from './recording';
+
+export { groupCaptureFiles } from './group-capture-files';
+
+/** First bytes of files that are no captures, or of formats that are not read, with what to do instead. */
+const OTHER_FORMATS: { bytes: number[]; words: string }[] = [
+	{
+		bytes: [0x50, 0x4b, 0x03, 0x04],
+		words: 'a packed archive or a spreadsheet workbook; unpack it, or save the sheet as CSV'
+	},
+	{ bytes: [0xd0, 0xcf, 0x11, 0xe0], words: 'an office document; save the table as CSV' },
+	{ bytes: [0x25, 0x50, 0x44, 0x46], words: 'a PDF document; export the samples as COMTRADE or CSV' },
+	{ bytes: [0x52, 0x49, 0x46, 0x46], words: 'a RIFF (WAV) file; export the samples as COMTRADE or CSV' },
+	{ bytes: [0x40, 0x14, 0x11, 0x4a], words: 'a PQDIF file; export the samples as COMTRADE or CSV' },
+	{ bytes: [0x1f, 0x8b], words: 'a gzip archive; unpack it' },
+	{ bytes: [0x89, 0x50, 0x4e, 0x47], words: 'a picture; upload the samples themselves' },
+	{ bytes: [0xff, 0xd8, 0xff], words: 'a picture; upload the samples themselves' }
+];
+
+/**
+ * Reads one capture, one file or a set that belongs together. The format is told from the content; a name only
+ * decides where content cannot (a data file without its configuration).
+ */
+export function readCapture(
+	files: CaptureFile[],
+	options: DelimitedTextOptions = {}
+): Result<CaptureContent, ReadProblem> {
+	const [first] = files;
+	if (first === undefined)
+		return refuse('no-files', '', null, 'No file was given; a capture of one file or a set was expected.');
+	const configuration = files.find(
+		({ name, bytes }) => looksLikeCff(bytes) || looksLikeCfg(bytes) || /\.(cfg|cff)$/i.test(name)
+	);
+	if (configuration !== undefined) return readComtrade(files);
+	const incomplete = incompleteGroupSentence(files.map(({ name }) => name));
+	if (incomplete !== null && !isTableByName(first))
+		return refuse('capture-incomplete', first.name, null, incomplete);
+	for (const file of files) {
+		const other = OTHER_FORMATS.find(({ bytes }) => bytes.every((byte, at) => file.bytes[at] === byte));
+		if (other !== undefined)
+			return refuse(
+				'format-not-read',
+				file.name,
+				'byte 0',
+				`${file.name} begins (byte 0) like ${other.words}. COMTRADE (CFG with DAT, or CFF) or delimited text was expected.`
+			);
+	}
+	return readDelimitedText(files, options);
+}
+
+/** A ".dat" with headings is a table of its own; rows of bare numbers, or binary, belong to a configuration. */
+function isTableByName({ name, bytes }: CaptureFile): boolean {
+	if (!/\.dat$/i.test(name)) return false;
+	const head = new TextDecoder('windows-1252').decode(bytes.subarray(0, 200));
+	return /^\s*["#%A-Za-z]/.test(head) && !head.includes('\u0000');
+}
