@@ -49,7 +49,7 @@ function entriesOf(lines: HeadLine[], layout: TableLayout): Entry[] {
 }
 
 function splitByMark(text: string): [string, string] | null {
-	const match = /^\W*([^:=]+?)\s*[:=]\s*(.+)$/.exec(text.trim());
+	const match = /^\W*([^:=\t;,]+?)\s*[:=\t;,]\s*(.+)$/.exec(text.trim());
 	return match === null ? null : [match[1] ?? '', (match[2] ?? '').trim()];
 }
 

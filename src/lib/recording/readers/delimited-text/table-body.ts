@@ -95,6 +95,7 @@ class BodyReader {
 		let from = start;
 		let inQuotes = false;
 		let readable = 0;
+		const unreadBefore = { ...this.unread };
 		for (let at = start; at <= end; at++) {
 			const byte = at < end ? (bytes[at] as number) : separator;
 			if (byte === QUOTE) inQuotes = !inQuotes;
@@ -108,6 +109,7 @@ class BodyReader {
 			from = at + 1;
 		}
 		if (readable === 0) {
+			Object.assign(this.unread, unreadBefore);
 			this.dropRow(start, end);
 			return;
 		}

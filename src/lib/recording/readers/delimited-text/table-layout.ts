@@ -120,8 +120,28 @@ function isDataRow(text: string, { separator, decimal, columnCount }: Candidate)
 /** Finds separator, decimal sign, headings and first row; null where the text is no table of numbers. */
 export function detectLayout(lines: HeadLine[], isUnit: (text: string) => boolean): TableLayout | null {
 	const written = lines.filter(({ text }) => text.trim() !== '');
-	const candidate = bestCandidate(written.slice(-SAMPLE_ROWS).map(({ text }) => text));
-	if (candidate === null) return null;
+	const best = bestCandidate(written.slice(-SAMPLE_ROWS).map(({ text }) => text));
+	if (best === null) return null;
+	return layoutFor(lines, commaOfOneColumn(written, best), isUnit) ?? layoutFor(lines, best, isUnit);
+}
+
+/**
+ * "325,269" is one value or two. Where the heading above such rows is a single field, it is one value with a
+ * decimal comma.
+ */
+function commaOfOneColumn(written: HeadLine[], best: Candidate): Candidate {
+	if (best.separator !== ',' || best.columnCount !== 2) return best;
+	const firstRow = written.findIndex(({ text }) => isDataRow(text, best));
+	const heading = written[firstRow - 1]?.text;
+	const isSingle = heading !== undefined && splitFields(heading, ',').length === 1;
+	return isSingle ? { separator: ';', decimal: ',', columnCount: 1, score: best.score } : best;
+}
+
+function layoutFor(
+	lines: HeadLine[],
+	candidate: Candidate,
+	isUnit: (text: string) => boolean
+): TableLayout | null {
 	const isRow = lines.map(({ text }) => isDataRow(text, candidate));
 	const firstRow = lines.findIndex((_, index) => {
 		if (!isRow[index]) return false;

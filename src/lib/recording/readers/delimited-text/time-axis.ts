@@ -157,13 +157,17 @@ export function evenSpacing(axis: TimeAxis): EvenSpacing | null {
 	const last = axis.times_s.length - 1;
 	const step_s = (axis.times_s[last] as number) / last;
 	if (!(step_s > 0)) return null;
+	let deviation_s = 0;
+	for (let row = 0; row <= last; row++)
+		deviation_s = Math.max(deviation_s, Math.abs((axis.times_s[row] as number) - row * step_s));
 	// A lost sample moves some row by half a step at least; a clock that is being disciplined moves it far less.
-	const tolerance_s = Math.max(1.01 * axis.resolution_s, 0.1 * step_s);
-	for (let row = 0; row <= last; row++) {
-		if (!(Math.abs((axis.times_s[row] as number) - row * step_s) <= tolerance_s)) return null;
-	}
-	const uncertainty = axis.resolution_s / (axis.times_s[last] as number);
-	return { samplingRate_Hz: roundest(1 / step_s, uncertainty), isCoarse: axis.resolution_s > 0.45 * step_s };
+	const isEven = deviation_s <= 0.1 * step_s;
+	if (!isEven && !(deviation_s <= 1.01 * axis.resolution_s)) return null;
+	const span_s = axis.times_s[last] as number;
+	// Times cut to twelve significant digits show a finer step at the start than at the end.
+	const written_s = Math.max(axis.resolution_s, 1e-11 * span_s);
+	const uncertainty_s = Math.min(written_s, 2 * deviation_s + 1e-12 * span_s);
+	return { samplingRate_Hz: roundest(1 / step_s, uncertainty_s / span_s), isCoarse: !isEven };
 }
 
 /** The value with the fewest digits among those that the rounding of the times leaves possible. */
