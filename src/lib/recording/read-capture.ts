@@ -6,8 +6,6 @@ import { readDelimitedText, type DelimitedTextOptions } from './readers/delimite
 import { refuse } from './readers/read-problem';
 import type { CaptureContent, CaptureFile, ReadProblem } from './recording';
 
-export { groupCaptureFiles } from './group-capture-files';
-
 /** First bytes of files that are no captures, or of formats that are not read, with what to do instead. */
 const OTHER_FORMATS: { bytes: number[]; words: string }[] = [
 	{
