@@ -63,11 +63,11 @@ export function assessItem(
 ): VerdictRow[] {
 	const strict = measure(context, levelItemOf(item, orders), false);
 	if (strict.measured.length > 0) {
-		const rows = strict.measured.map((measured) => judgedRow(context, item, orders, limit, measured));
-		return [
-			...rows,
+		const rows = [
+			...strict.measured.map((measured) => judgedRow(context, item, orders, limit, measured)),
 			...strict.unmet.map((rule) => missingRow(context, item, limit, rule, strict.outcomes.get(rule.key)))
 		];
+		return inRuleOrder(context.table, rows);
 	}
 	if (item.kind === 'total') {
 		// A total without some of its orders is a lower bound: it can prove an exceedance and never compliance.
@@ -83,6 +83,15 @@ export function assessItem(
 	return outcome?.kind === 'too-few'
 		? [missingRow(context, item, limit, base, outcome)]
 		: [missingRow(context, item, limit, null, undefined)];
+}
+
+/** Rows in the order in which the table states its rules; a snapshot stands last. */
+function inRuleOrder(table: LimitTable, rows: VerdictRow[]): VerdictRow[] {
+	const place = (row: VerdictRow) => {
+		const index = table.statistics.findIndex((rule) => rule.key === row.statisticKey);
+		return index < 0 ? table.statistics.length : index;
+	};
+	return rows.sort((a, b) => place(a) - place(b));
 }
 
 interface Measurement {
