@@ -238,20 +238,19 @@ export interface ReportWaveform {
 	captureName: string;
 	/** Seconds from the capture's first sample. */
 	from_s: number;
-	channels: {
-		quantity: 'voltage' | 'current';
-		phase: Phase;
-		unit: 'V' | 'A';
-		times_s: number[];
-		values: number[];
-	}[];
+	to_s: number;
+	/** Interleaved [seconds, value, …], primary V or A; null where samples are missing. */
+	channels: { quantity: 'voltage' | 'current'; phase: Phase; unit: 'V' | 'A'; points: (number | null)[] }[];
 }
 
 export interface ReportTrend {
 	title: string;
 	quantity: 'voltage' | 'current';
 	ofWhat: string;
-	phases: { phase: Phase; points: { at: string; value_pct: number | null }[] }[];
+	/** Starts of the intervals, milliseconds since 1970 UTC, and a value for each; null where there is none. */
+	phases: { phase: Phase; times_ms: number[]; values_pct: (number | null)[] }[];
+	flagged: { from_ms: number; to_ms: number }[];
+	percentile: { label: string; value_pct: number } | null;
 	limit_pct: number | null;
 }
 

@@ -50,10 +50,17 @@ export function worstByItem<R extends VerdictRow>(rows: readonly R[]): R[] {
 	return groupByItem(rows).flatMap((group) => speakingRow(group.rows) ?? []);
 }
 
-/** A row worth a line of its own: a total, not plainly compliant, or over a tenth of its limit. */
+/** Worth a line of its own: a total, not plainly compliant, or over a tenth of its limit. */
+export function isNotableLevel(
+	isTotal: boolean,
+	verdict: VerdictRow['verdict'],
+	utilisation: number | null
+): boolean {
+	return isTotal || verdict !== 'compliant' || (utilisation !== null && utilisation > 0.1);
+}
+
 export function isNotable(row: Pick<VerdictRow, 'item' | 'verdict' | 'utilisation'>): boolean {
-	if (row.item.kind === 'total' || row.verdict !== 'compliant') return true;
-	return row.utilisation !== null && row.utilisation > 0.1;
+	return isNotableLevel(row.item.kind === 'total', row.verdict, row.utilisation);
 }
 
 /** Orders and totals over their limit, by name, each once: ["5th", "TDD"]. */

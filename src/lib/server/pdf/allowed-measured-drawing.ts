@@ -36,7 +36,7 @@ export function allowedMeasuredSvg(figure: ComparedFigure, width: number): strin
 		? Math.max(x(figure.measured_pct), x(figure.allowed_pct) + 100)
 		: Math.min(x(figure.allowed_pct) - 5, Math.max(x(figure.measured_pct), 96));
 	const text = (cx: number, y: number, anchor: string, colour: string, words: string, size = 9): string =>
-		`<text x="${cx.toFixed(2)}" y="${y}" text-anchor="${anchor}" font-family="Plex" font-size="${size}" fill="${colour}">${words}</text>`;
+		`<text x="${cx.toFixed(2)}" y="${y}" text-anchor="${anchor}" font-family="IBM Plex Sans" font-size="${size}" fill="${colour}">${words}</text>`;
 	return [
 		`<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 ${width} 64" width="${width}" height="64">`,
 		text(Math.max(allowedAt, over ? 60 : 0), 11, allowedAnchor, INK, `allowed ${figure.allowedText}`),

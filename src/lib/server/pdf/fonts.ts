@@ -7,7 +7,7 @@ const resolve = createRequire(import.meta.url).resolve;
  * dependencies, so they resolve in development, in tests and beside the built server alike.
  */
 export const FONTS = {
-	Plex: {
+	'IBM Plex Sans': {
 		normal: resolve('@expo-google-fonts/ibm-plex-sans/400Regular/IBMPlexSans_400Regular.ttf'),
 		bold: resolve('@expo-google-fonts/ibm-plex-sans/600SemiBold/IBMPlexSans_600SemiBold.ttf'),
 		italics: resolve('@expo-google-fonts/ibm-plex-sans/400Regular_Italic/IBMPlexSans_400Regular_Italic.ttf'),
@@ -15,7 +15,7 @@ export const FONTS = {
 			'@expo-google-fonts/ibm-plex-sans/600SemiBold_Italic/IBMPlexSans_600SemiBold_Italic.ttf'
 		)
 	},
-	PlexMono: {
+	'IBM Plex Mono': {
 		normal: resolve('@expo-google-fonts/ibm-plex-mono/400Regular/IBMPlexMono_400Regular.ttf'),
 		bold: resolve('@expo-google-fonts/ibm-plex-mono/600SemiBold/IBMPlexMono_600SemiBold.ttf'),
 		italics: resolve('@expo-google-fonts/ibm-plex-mono/400Regular_Italic/IBMPlexMono_400Regular_Italic.ttf'),

@@ -103,7 +103,7 @@ export function reportDefinition(
 			producer: 'Sinewright',
 			creationDate: new Date(model.document.createdAt)
 		},
-		defaultStyle: { font: 'Plex', fontSize: 9.5, color: INK, lineHeight: 1.15 },
+		defaultStyle: { font: 'IBM Plex Sans', fontSize: 9.5, color: INK, lineHeight: 1.15 },
 		footer: (page, pages) => {
 			count = pages;
 			return titleBlock(context, page, pages);

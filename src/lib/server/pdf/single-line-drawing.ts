@@ -13,7 +13,7 @@ function label(
 ): string {
 	const colour = options.colour ?? (options.soft ? INK_SOFT : INK);
 	return (
-		`<text x="${x}" y="${y}" font-family="Plex" font-size="8" fill="${colour}" text-anchor="${options.anchor ?? 'middle'}"` +
+		`<text x="${x}" y="${y}" font-family="IBM Plex Sans" font-size="8" fill="${colour}" text-anchor="${options.anchor ?? 'middle'}"` +
 		`${options.bold ? ' font-weight="bold"' : ''}>${escape(words)}</text>`
 	);
 }

@@ -11,6 +11,17 @@ export function rich(text: string): Content[] {
 	);
 }
 
+/**
+ * Text in the fixed-width face, its spaces in the other one: the spaces of the fixed-width files lie behind their
+ * last outline, where the font reader cannot measure them.
+ */
+export function figures(text: string): Content[] {
+	return text
+		.split(/([\s\u00a0]+)/)
+		.filter((part) => part !== '')
+		.map((part) => (/^[\s\u00a0]/.test(part) ? { text: part } : { text: part, font: 'IBM Plex Mono' }));
+}
+
 /** pdfmake writes into what it is given, so each call makes a fresh node. */
 export function paragraph(text: string, style: Record<string, unknown> = {}): Content {
 	return { text: rich(text), margin: [0, 0, 0, 6], ...style };
@@ -126,10 +137,10 @@ export function ruledTable(
 			if (typeof cell !== 'string') return cell as TableCell;
 			const column = columns[i];
 			return {
-				text: rich(cell),
+				text: column?.mono ? figures(cell) : rich(cell),
 				alignment: column?.align ?? 'left',
 				fontSize: size,
-				...(column?.mono ? { font: 'PlexMono', fontSize: size - 0.3 } : {})
+				...(column?.mono ? { fontSize: size - 0.3 } : {})
 			};
 		})
 	);

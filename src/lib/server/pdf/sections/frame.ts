@@ -2,6 +2,7 @@ import type { Content } from 'pdfmake/interfaces';
 import { numberWords, shortHash, statusWords } from '../document-words';
 import { INK, INK_SOFT, MARGIN, RULE, TONE } from '../print-style';
 import type { SheetContext } from '../sheet-context';
+import { figures } from '../typeset';
 
 /** Head of a sheet: section on the left, document on the right, ruled. */
 export function sheetHead(left: string, right: string): Content {
@@ -33,10 +34,9 @@ function cell(label: string, value: string, mono = false, attention = false): Co
 		stack: [
 			{ text: label, fontSize: 5.8, color: INK_SOFT },
 			{
-				text: value,
+				text: mono ? figures(value) : value,
 				fontSize: mono ? 7 : 7.3,
 				margin: [0, 1, 0, 0],
-				...(mono ? { font: 'PlexMono' } : {}),
 				...(attention ? { color: TONE.oxide.text, bold: true } : {})
 			}
 		]

@@ -4,11 +4,10 @@ import type { ReportCapture, ReportTable } from '../../../report/report-model';
 import { formatDuration, formatNumber } from '../../../units/format';
 import { INK_SOFT } from '../print-style';
 import type { SheetContext } from '../sheet-context';
-import { facts, heading, rich, ruledTable, soft } from '../typeset';
+import { facts, figures, heading, rich, ruledTable, soft } from '../typeset';
 
 const hash = (sha256: string): Content => ({
-	text: sha256.match(/.{32}/g)?.join(' ') ?? sha256,
-	font: 'PlexMono',
+	text: figures(sha256.match(/.{32}/g)?.join(' ') ?? sha256),
 	fontSize: 6.6
 });
 

@@ -2,10 +2,11 @@ import type { Content, TableCell } from 'pdfmake/interfaces';
 import { formatCurrent, formatNumber, formatShare } from '../../../units/format';
 import { decimalsBeside } from '../../../units/format-beside';
 import type { ReportRow, ReportRule, ReportTable } from '../../../report/report-model';
+import { isNotableLevel } from '../../../report/verdict-table';
 import type { Phase } from '../../../recording/phase';
 import { contentWidth, INK, INK_SOFT, OXIDE_WASH, TONE } from '../print-style';
 import type { SheetContext } from '../sheet-context';
-import { bullets, heading, paragraph, rich, ruledTable, soft, verdictTag } from '../typeset';
+import { bullets, figures, heading, paragraph, rich, ruledTable, soft, verdictTag } from '../typeset';
 
 function worstOf(
 	values: readonly { phase: Phase; value_pct: number }[]
@@ -20,7 +21,7 @@ function keyFigure(label: string, value: string, note: string): TableCell {
 	return {
 		stack: [
 			{ text: rich(label), fontSize: 7.5, color: INK_SOFT },
-			{ text: value, fontSize: 14, font: 'PlexMono', margin: [0, 2, 0, 1] },
+			{ text: figures(value), fontSize: 14, margin: [0, 2, 0, 1] },
 			{ text: rich(note), fontSize: 7.5, color: INK_SOFT }
 		]
 	};
@@ -148,15 +149,8 @@ function utilisationText(utilisation: number | null): string {
 		: formatNumber(utilisation * 100, { decimals: decimalsBeside(utilisation * 100, 100, 0) });
 }
 
-/** Whether a row is worth a line of its own: over a tenth of its limit, a total, or not plainly compliant. */
-function isNotable(row: ReportRow): boolean {
-	return (
-		row.order === null || row.verdict !== 'compliant' || (row.utilisation !== null && row.utilisation > 0.1)
-	);
-}
-
 function ruleTable({ model, phase }: SheetContext, table: ReportTable, rule: ReportRule): Content[] {
-	const notable = rule.rows.filter(isNotable);
+	const notable = rule.rows.filter((row) => isNotableLevel(row.order === null, row.verdict, row.utilisation));
 	const left = rule.rows.length - notable.length;
 	const cells = (row: ReportRow): (string | Content)[] => [
 		row.label,
@@ -164,8 +158,7 @@ function ruleTable({ model, phase }: SheetContext, table: ReportTable, rule: Rep
 			const over = row.cells.find((c) => c.phase === p)?.verdict === 'exceeds';
 			return over
 				? {
-						text: valueText(row, p),
-						font: 'PlexMono',
+						text: figures(valueText(row, p)),
 						fontSize: 7.7,
 						alignment: 'right',
 						color: TONE.oxide.text,
