@@ -10,12 +10,11 @@ import {
 	type SurveyStageKey,
 	type SurveyStages
 } from '../../register/survey-stages';
-import { ratioClassLabel } from '../../register/ratio-class';
 import type { Db } from '../db/database';
 import type { PointRow, SurveyRow } from '../db/rows';
-import { limitSetsRepository } from '../repositories/limit-sets.repository';
 import { toPointFacts } from '../repositories/point-mapping';
 import type { Scope } from '../repositories/scope';
+import { limitsOfPoint } from './point-page';
 import { loadSurveyProgress } from './survey-progress';
 
 /** Title block and rail: what every page of a survey carries. */
@@ -110,8 +109,6 @@ export async function loadSurveyHeader(db: Db, scope: Scope, surveyId: string): 
 		demandCurrent_A === null || shortCircuitCurrent_A === null
 			? null
 			: shortCircuitCurrent_A / demandCurrent_A;
-	const limitSet =
-		row.limit_set_id === null ? null : await limitSetsRepository(db, scope.practiceId).byId(row.limit_set_id);
 	return {
 		survey: {
 			id: row.survey_id,
@@ -135,11 +132,7 @@ export async function loadSurveyHeader(db: Db, scope: Scope, surveyId: string): 
 			assessed,
 			shortCircuitRatio
 		},
-		ratioClass:
-			limitSet === null || shortCircuitRatio === null
-				? null
-				: ratioClassLabel(limitSet, facts.nominalVoltage_V, shortCircuitRatio),
-		limitSetTitle: limitSet === null ? null : `${limitSet.standard}, ${limitSet.edition}`,
+		...(await limitsOfPoint(db, scope, facts)),
 		progress,
 		stages,
 		next: nextStage(stages)

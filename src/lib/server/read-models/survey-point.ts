@@ -3,7 +3,7 @@ import type { Db } from '../db/database';
 import type { SurveyRow } from '../db/rows';
 import { toPointFacts } from '../repositories/point-mapping';
 import type { Scope } from '../repositories/scope';
-import { limitSetTitle } from './point-page';
+import { limitsOfPoint } from './point-page';
 import { instrumentChoices, type SurveyChoices } from './survey-choices';
 
 /** The first stage of a survey: the point's facts, and what the survey itself states. */
@@ -12,6 +12,7 @@ export interface SurveyPoint {
 	pointId: string;
 	facts: PointFacts;
 	limitSetTitle: string | null;
+	ratioClass: string | null;
 	pointUpdatedAt: string;
 	/** The survey's own instrument is among them, also when it is archived. */
 	instruments: SurveyChoices['instruments'];
@@ -37,11 +38,12 @@ export async function loadSurveyPoint(db: Db, scope: Scope, surveyId: string): P
 				dueOn: null
 			});
 	}
+	const facts = toPointFacts(row);
 	return {
 		survey,
 		pointId: row.id,
-		facts: toPointFacts(row),
-		limitSetTitle: await limitSetTitle(db, scope, row.limit_set_id),
+		facts,
+		...(await limitsOfPoint(db, scope, facts)),
 		pointUpdatedAt: row.updated_at,
 		instruments
 	};
