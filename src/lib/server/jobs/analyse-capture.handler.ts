@@ -68,9 +68,9 @@ function prepare(
 	const settings = parseSettings(capture.mappings_json);
 	const basis = {
 		start_ms: Date.parse(capture.started_at),
-		nominalFrequency_Hz: survey.nominalFrequency_Hz,
-		nominalVoltages_V: nominalVoltagesByPhase_V(survey.system, survey.nominalVoltage_V),
-		phaseNames: survey.phaseNames
+		nominalFrequency_Hz: survey.facts.nominalFrequency_Hz,
+		nominalVoltages_V: nominalVoltagesByPhase_V(survey.facts.system, survey.facts.nominalVoltage_V),
+		phaseNames: survey.facts.phaseNames
 	};
 	if (content.kind === 'waveform' && settings.kind === 'waveform')
 		return prepareWaveform(container.blobs, content, settings.channels, basis, context);

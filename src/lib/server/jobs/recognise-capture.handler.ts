@@ -69,12 +69,7 @@ export const handle: JobHandler = async (container, rawPayload, context) => {
 		const content = read.value;
 		const facts: StoredFacts = {
 			...captureFacts(content),
-			suggestions: suggestMappings(content, {
-				system: survey.system,
-				phaseNames: survey.phaseNames,
-				voltageTransformer: survey.voltageRatio,
-				currentTransformer: survey.currentRatio
-			})
+			suggestions: suggestMappings(content, survey.facts)
 		};
 		await context.progress(0, 1, 'storing what was recognised');
 		await withTransaction(db, async (trx) => {

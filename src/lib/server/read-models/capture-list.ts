@@ -1,6 +1,6 @@
 import type { CaptureFacts } from '../../recording/capture-facts';
 import type { MappingSuggestion } from '../../recording/channel-suggestion';
-import type { PhaseNames } from '../../recording/phase';
+import type { PointFacts } from '../../register/point-facts';
 import { parseSummary, type AnalysisSummary } from '../analysis/analysis-summary';
 import { parseSettings, type CaptureSettings } from '../analysis/capture-settings';
 import type { Db } from '../db/database';
@@ -8,6 +8,7 @@ import type { CaptureRow, PointRow } from '../db/rows';
 import { analyseCapture } from '../jobs/analyse-capture.job';
 import type { JobState } from '../jobs/job-queue';
 import { recogniseCapture } from '../jobs/recognise-capture.job';
+import { toPointFacts } from '../repositories/point-mapping';
 import type { Scope } from '../repositories/scope';
 import { likePattern, type ListPage, type ListQuery } from './list-query';
 
@@ -17,26 +18,16 @@ export interface StoredFacts extends CaptureFacts {
 	suggestions: MappingSuggestion[];
 }
 
-/** The survey that captures belong to, with what mapping and analysis need of its point and site. */
+/** The survey that captures belong to, with what mapping, analysis and readings need of its point and site. */
 export interface CaptureSurvey {
 	id: string;
 	clientId: string;
 	number: string;
-	title: string;
-	status: 'open' | 'closed';
 	timeZone: string;
-	system: PointRow['system'];
-	pointKind: PointRow['kind'];
-	nominalVoltage_V: number;
-	nominalFrequency_Hz: 50 | 60;
-	phaseNames: PhaseNames;
-	currentRatio: { primary: number; secondary: number } | null;
-	voltageRatio: { primary: number; secondary: number } | null;
+	facts: PointFacts;
 }
 
-function ratio(primary: number | null, secondary: number | null) {
-	return primary !== null && secondary !== null ? { primary, secondary } : null;
-}
+type Joined = PointRow & { survey_id: string; survey_number: string; time_zone: string };
 
 export async function captureSurvey(db: Db, scope: Scope, surveyId: string): Promise<CaptureSurvey | null> {
 	const query = db('surveys')
@@ -44,39 +35,21 @@ export async function captureSurvey(db: Db, scope: Scope, surveyId: string): Pro
 		.join('sites', 'sites.id', 'surveys.site_id')
 		.where('surveys.id', surveyId)
 		.where('surveys.practice_id', scope.practiceId);
-	if (scope.clientId !== undefined) query.where('surveys.client_id', scope.clientId);
-	const row = await query.first(
-		'surveys.id',
-		'surveys.client_id',
-		'surveys.number',
-		'surveys.title',
-		'surveys.status',
-		'sites.time_zone',
-		'points.system',
-		'points.kind',
-		'points.nominal_voltage_v',
-		'points.nominal_frequency_hz',
-		'points.phase_names_json',
-		'points.ct_primary_a',
-		'points.ct_secondary_a',
-		'points.vt_primary_v',
-		'points.vt_secondary_v'
-	);
+	if (scope.clientId !== undefined) void query.where('surveys.client_id', scope.clientId);
+	const row = await query
+		.select<Joined[]>('points.*', {
+			survey_id: 'surveys.id',
+			survey_number: 'surveys.number',
+			time_zone: 'sites.time_zone'
+		})
+		.first();
 	if (!row) return null;
 	return {
-		id: row.id,
+		id: row.survey_id,
 		clientId: row.client_id,
-		number: row.number,
-		title: row.title,
-		status: row.status,
+		number: row.survey_number,
 		timeZone: row.time_zone,
-		system: row.system,
-		pointKind: row.kind,
-		nominalVoltage_V: row.nominal_voltage_v,
-		nominalFrequency_Hz: row.nominal_frequency_hz,
-		phaseNames: JSON.parse(row.phase_names_json) as PhaseNames,
-		currentRatio: ratio(row.ct_primary_a, row.ct_secondary_a),
-		voltageRatio: ratio(row.vt_primary_v, row.vt_secondary_v)
+		facts: toPointFacts(row)
 	};
 }
 
@@ -122,8 +95,8 @@ export async function captureList(
 			.where('captures.practice_id', scope.practiceId)
 			.where('captures.survey_id', surveyId)
 			.whereNull('captures.removed_at');
-		if (scope.clientId !== undefined) own.where('captures.client_id', scope.clientId);
-		if (query.q) own.whereRaw(`captures.name like ? escape '\\'`, [likePattern(query.q)]);
+		if (scope.clientId !== undefined) void own.where('captures.client_id', scope.clientId);
+		if (query.q) void own.whereRaw(`captures.name like ? escape '\\'`, [likePattern(query.q)]);
 		return own;
 	};
 	const total = (await matching().count<{ n: number }[]>({ n: '*' }).first())?.n ?? 0;
@@ -141,10 +114,9 @@ export async function captureList(
 			rows.map((row) => row.id)
 		)
 		.groupBy('capture_id')
-		.select<{ capture_id: string; files: number; bytes: number }[]>('capture_id', {
-			files: db.raw('count(*)'),
-			bytes: db.raw('sum(size_bytes)')
-		});
+		.select<{ capture_id: string; files: number; bytes: number }[]>(
+			db.raw('capture_id, count(*) as files, sum(size_bytes) as bytes')
+		);
 	return {
 		rows: rows.map((row) =>
 			listRow(
@@ -213,7 +185,7 @@ export async function captureDetail(
 		.where('captures.survey_id', surveyId)
 		.where('captures.practice_id', scope.practiceId)
 		.whereNull('captures.removed_at');
-	if (scope.clientId !== undefined) query.where('captures.client_id', scope.clientId);
+	if (scope.clientId !== undefined) void query.where('captures.client_id', scope.clientId);
 	const row = await query.first('captures.*', { uploader: 'users.name' });
 	if (!row) return null;
 	const own = { practice_id: scope.practiceId, capture_id: captureId };
@@ -256,18 +228,18 @@ export interface SurveyJob extends JobState {
 export async function surveyJobs(db: Db, scope: Scope, surveyId: string, now: Date): Promise<SurveyJob[]> {
 	const rows = await db('jobs')
 		.where('jobs.practice_id', scope.practiceId)
-		.whereIn('kind', [recogniseCapture.kind, analyseCapture.kind])
-		.whereRaw(`json_extract(payload_json, '$.surveyId') = ?`, [surveyId])
+		.whereIn('jobs.kind', [recogniseCapture.kind, analyseCapture.kind])
+		.whereRaw(`json_extract(jobs.payload_json, '$.surveyId') = ?`, [surveyId])
 		.andWhere((recent) =>
 			recent
 				.whereIn('jobs.status', ['queued', 'running'])
 				.orWhere((failed) =>
 					failed
 						.where('jobs.status', 'failed')
-						.where('finished_at', '>', new Date(now.getTime() - NEWS_MS).toISOString())
+						.where('jobs.finished_at', '>', new Date(now.getTime() - NEWS_MS).toISOString())
 				)
 		)
-		.leftJoin('captures', 'captures.id', db.raw(`json_extract(payload_json, '$.captureId')`))
+		.leftJoin('captures', 'captures.id', db.raw(`json_extract(jobs.payload_json, '$.captureId')`))
 		.orderBy('jobs.created_at')
 		.select('jobs.*', { capture_name: 'captures.name' });
 	return rows.map((row) => {

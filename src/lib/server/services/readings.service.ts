@@ -1,0 +1,84 @@
+import type { Actor } from '../../access/access';
+import type { PhaseNames } from '../../recording/phase';
+import { AppError, requireFound } from '../app-error';
+import { parseSummary } from '../analysis/analysis-summary';
+import { readWaveformSlice, type WaveformRange, type WaveformSlice } from '../analysis/waveform-slice';
+import { requirePermission } from '../auth/require-permission';
+import type { CaptureRow } from '../db/rows';
+import { captureSurvey } from '../read-models/capture-list';
+import { readings, type Readings, type ReadingsQuestion } from '../read-models/readings';
+import { analysesRepository } from '../repositories/analyses.repository';
+import { capturesRepository } from '../repositories/captures.repository';
+import { scopeOf } from '../repositories/scope';
+import type { ServiceDeps } from '../service-deps';
+
+export interface ReadingsPage {
+	survey: { id: string; timeZone: string; phaseNames: PhaseNames; advisory: boolean };
+	/** Captures of the survey that have been analysed, and how many have not. */
+	captures: { id: string; name: string; kind: CaptureRow['kind']; startedAt: string | null }[];
+	notAnalysed: number;
+	/** The capture shown; null when none has been analysed. */
+	captureId: string | null;
+	readings: Readings | null;
+}
+
+/** Figures of one capture, as the readings page and the waveform view ask for them. */
+export function createReadingsService({ db, blobs }: ServiceDeps) {
+	async function page(
+		actor: Actor,
+		surveyId: string,
+		captureId: string | null,
+		asked: ReadingsQuestion
+	): Promise<ReadingsPage> {
+		requirePermission(actor, 'capture.read');
+		const scope = scopeOf(actor);
+		const survey = requireFound(await captureSurvey(db, scope, surveyId), 'survey');
+		const rows = await capturesRepository(db, scope).ofSurvey(survey.id);
+		const analysed = new Set(
+			(await analysesRepository(db, scope).currentOfSurvey(survey.id)).map((analysis) => analysis.capture_id)
+		);
+		const captures = rows.filter((row) => analysed.has(row.id));
+		const shown = captures.find((row) => row.id === captureId) ?? captures[0];
+		if (captureId !== null && shown?.id !== captureId && !rows.some((row) => row.id === captureId))
+			throw new AppError('not-found', 'This capture does not exist, or you have no access to it.');
+		return {
+			survey: {
+				id: survey.id,
+				timeZone: survey.timeZone,
+				phaseNames: survey.facts.phaseNames,
+				advisory: survey.facts.kind === 'in-plant'
+			},
+			captures: captures.map((row) => ({
+				id: row.id,
+				name: row.name,
+				kind: row.kind,
+				startedAt: row.started_at
+			})),
+			notAnalysed: rows.length - captures.length,
+			captureId: shown?.id ?? null,
+			readings: shown ? await readings(db, scope, survey, shown, asked) : null
+		};
+	}
+
+	/** Samples of a stretch of an analysed waveform, raw or thinned to about the points asked for. */
+	async function waveform(
+		actor: Actor,
+		captureId: string,
+		asked: WaveformRange & { channels?: readonly number[] | undefined }
+	): Promise<WaveformSlice> {
+		requirePermission(actor, 'capture.read');
+		const scope = scopeOf(actor);
+		const capture = requireFound(await capturesRepository(db, scope).byId(captureId), 'capture');
+		const analysis = await analysesRepository(db, scope).currentOf(capture.id);
+		const summary = analysis ? parseSummary(analysis.summary_json) : null;
+		if (summary?.kind !== 'waveform')
+			throw new AppError(
+				'conflict',
+				'This capture has no waveform to show yet. Confirm its channels; the view is made with the analysis.'
+			);
+		const channels = asked.channels ?? summary.samples.channels.map((channel) => channel.channelIndex);
+		return readWaveformSlice(blobs, summary.samples, asked, channels);
+	}
+
+	return { page, waveform };
+}

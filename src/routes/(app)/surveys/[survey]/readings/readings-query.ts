@@ -1,0 +1,22 @@
+import { z } from 'zod';
+import { MAX_ORDER } from '$lib/harmonics/intervals';
+
+/** What the address asks for. Whatever is not understood falls back: an old link must still open. */
+const query = z.object({
+	capture: z.string().nullable().catch(null),
+	quantity: z.enum(['voltage', 'current']).catch('voltage'),
+	window: z.coerce.number().int().min(1).nullable().catch(null),
+	order: z.union([z.literal('total'), z.coerce.number().int().min(1).max(MAX_ORDER)]).catch('total'),
+	interval: z.enum(['window', '3s', '10min']).nullable().catch(null)
+});
+
+export function parseReadingsQuery(parameters: URLSearchParams) {
+	const given = (name: string) => parameters.get(name) || null;
+	return query.parse({
+		capture: given('capture'),
+		quantity: given('quantity'),
+		window: given('window') === null || given('window') === 'all' ? null : given('window'),
+		order: given('order') ?? 'total',
+		interval: given('interval')
+	});
+}
