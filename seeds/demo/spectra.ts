@@ -28,11 +28,11 @@ function withFloor(spectrum: Spectrum, floor_pct: number): HarmonicTruth[] {
 export const COMPRESSOR_CURRENT = withFloor(
 	[
 		[3, 0.9, 40],
-		[5, 12.1, 172],
-		[7, 6.9, 12],
+		[5, 10.4, 172],
+		[7, 6.0, 12],
 		[9, 0.25, 80],
-		[11, 4.3, 168],
-		[13, 2.7, 20],
+		[11, 3.85, 168],
+		[13, 2.4, 20],
 		[15, 0.12, 60],
 		[17, 1.75, 160],
 		[19, 1.3, 30],
@@ -115,9 +115,9 @@ export const PRESS_VOLTAGE = withFloor(
 export const PRESS_CURRENT_BEFORE = withFloor(
 	[
 		[3, 0.5, 20],
-		[5, 7.4, 175],
-		[7, 4.1, 10],
-		[11, 2.2, 170],
+		[5, 11.9, 175],
+		[7, 6.2, 10],
+		[11, 3.6, 170],
 		[13, 1.5, 15],
 		[17, 1.1, 160],
 		[19, 0.8, 30],
@@ -158,7 +158,7 @@ export const HOSPITAL_CURRENT = withFloor(
 export const DATA_HALL_VOLTAGE = withFloor(
 	[
 		[3, 1.9, 0],
-		[5, 4.2, 0],
+		[5, 5.86, 0],
 		[7, 2.6, 0],
 		[9, 0.62, 0],
 		[11, 1.1, 0],
