@@ -57,7 +57,7 @@ export function buildTrendOption(
 	return {
 		...chartBase(mode),
 		useUTC: true,
-		legend: { ...legendStyle(mode), itemWidth: 26 },
+		legend: { ...legendStyle(mode), itemWidth: 26, data: data.series.map(({ label }) => label) },
 		grid: {
 			left: 8,
 			right: 16,
@@ -86,34 +86,52 @@ export function buildTrendOption(
 		},
 		yAxis: { ...valueAxisStyle(mode), type: 'value', name: room.axisName, min: 0 },
 		dataZoom: mode === 'print' ? undefined : [{ type: 'inside', filterMode: 'none' }, zoomSlider(mode)],
-		series: data.series.map((series, i) => ({
-			type: 'line' as const,
-			name: series.label,
-			data: maskFlagged(series, data.flagged).map(([at, value]) => [at + shift_ms, value]),
-			showSymbol: false,
-			symbol: phaseStyle(series.phase, mode).symbol,
-			connectNulls: false,
-			color: phaseStyle(series.phase, mode).color,
-			lineStyle: {
-				width: 1.25,
+		series: [
+			...data.series.map((series, i) => ({
+				type: 'line' as const,
+				name: series.label,
+				data: maskFlagged(series, data.flagged).map(([at, value]) => [at + shift_ms, value]),
+				showSymbol: false,
+				symbol: phaseStyle(series.phase, mode).symbol,
+				connectNulls: false,
 				color: phaseStyle(series.phase, mode).color,
-				type: phaseStyle(series.phase, mode).dash
-			},
-			emphasis: { disabled: true },
-			...(i === 0
-				? {
-						markLine: { silent: true, symbol: 'none', animation: false, data: rules },
-						markArea: {
-							silent: true,
-							itemStyle: { color: palette.slate, opacity: 0.22 },
-							data: data.flagged.map((f): [{ xAxis: number }, { xAxis: number }] => [
-								{ xAxis: f.from_ms + shift_ms },
-								{ xAxis: f.to_ms + shift_ms }
-							])
+				lineStyle: {
+					width: 1.25,
+					color: phaseStyle(series.phase, mode).color,
+					type: phaseStyle(series.phase, mode).dash
+				},
+				emphasis: { disabled: true },
+				...(i === 0
+					? {
+							markLine: { silent: true, symbol: 'none', animation: false, data: rules },
+							markArea: {
+								silent: true,
+								itemStyle: { color: palette.slate, opacity: 0.22 },
+								data: data.flagged.map((f): [{ xAxis: number }, { xAxis: number }] => [
+									{ xAxis: f.from_ms + shift_ms },
+									{ xAxis: f.to_ms + shift_ms }
+								])
+							}
 						}
-					}
-				: {})
-		}))
+					: {})
+			})),
+			reachOf(data, shift_ms)
+		]
+	};
+}
+
+/** Draws nothing, but lets the axis reach the limit and the percentile when every value lies below them. */
+function reachOf(data: TrendData, shift_ms: number) {
+	const levels = [data.limit?.value, data.percentile?.value].filter((level) => level !== undefined);
+	const at = data.series.find((series) => series.times_ms.length > 0)?.times_ms[0];
+	return {
+		type: 'line' as const,
+		name: 'reach',
+		silent: true,
+		showSymbol: false,
+		tooltip: { show: false },
+		lineStyle: { opacity: 0 },
+		data: at === undefined || levels.length === 0 ? [] : [[at + shift_ms, Math.max(...levels)]]
 	};
 }
 

@@ -166,7 +166,14 @@ function waveformSeries(
 				? {
 						silent: true,
 						itemStyle: { color: palette.copper, opacity: 0.1 },
-						label: { color: palette.copper, fontSize: 12, position: 'insideTop' as const },
+						label: {
+							show: panel === 0,
+							color: palette.copper,
+							backgroundColor: palette.ground,
+							padding: [1, 4],
+							fontSize: 12,
+							position: 'insideTop' as const
+						},
 						data: data.windows.map((w): [{ name: string; xAxis: number }, { xAxis: number }] => [
 							{ name: w.label, xAxis: w.from_s },
 							{ xAxis: w.to_s }
