@@ -60,7 +60,9 @@ const SHORT_CIRCUIT_ORIGIN: Record<PointFacts['shortCircuit']['method'], string>
 
 /** One line of working; symbols stay marked (I_{sc}) for typesetting. */
 function workingLine({ what, formula, figures, result }: WorkingStep): string {
-	const symbols = formula.map((part) => (typeof part === 'string' ? part : `${part.symbol}_{${part.subscript}}`)).join('');
+	const symbols = formula
+		.map((part) => (typeof part === 'string' ? part : `${part.symbol}_{${part.subscript}}`))
+		.join('');
 	return [`${what}: ${symbols}`, figures, result].filter((part) => part !== '').join(' = ');
 }
 
