@@ -8,6 +8,7 @@ import { createOutbox, type MailTransport } from './mail/outbox';
 import { createMailTransport } from './mail/transport';
 import { createAccountService } from './services/account.service';
 import { createInvitationsService } from './services/invitations.service';
+import { createLimitLibraryService } from './services/limit-library.service';
 import { createMailboxService } from './services/mailbox.service';
 import { createPeopleService } from './services/people.service';
 import { createPracticeService } from './services/practice.service';
@@ -41,6 +42,7 @@ function buildServices(deps: ServiceDeps) {
 		register: createRegisterService(deps),
 		surveys: createSurveysService(deps),
 		instruments: createInstrumentsService(deps),
+		limitLibrary: createLimitLibraryService(deps),
 		account: createAccountService(deps),
 		invitations: createInvitationsService(deps),
 		people: createPeopleService(deps),

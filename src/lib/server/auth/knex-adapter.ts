@@ -2,6 +2,7 @@ import type { Adapter, AdapterUser } from '@auth/core/adapters';
 import type { Db } from '../db/database';
 import type { UserRow } from '../db/rows';
 import { sessionsRepository } from '../repositories/sessions.repository';
+import { signInTokensRepository } from '../repositories/sign-in-tokens.repository';
 import { normaliseEmail } from './email-address';
 import { hashToken } from './tokens';
 
@@ -30,6 +31,7 @@ function toAdapterUser(row: UserRow): AdapterUser {
  */
 export function knexAdapter({ db, clock, userAgent }: AdapterContext): Adapter {
 	const sessions = sessionsRepository(db);
+	const tokens = signInTokensRepository(db);
 	const enabledUser = (where: Partial<UserRow>) => db('users').where(where).whereNull('disabled_at').first();
 	const refuse = () => {
 		throw new Error('people come by invitation only');
@@ -97,21 +99,21 @@ export function knexAdapter({ db, clock, userAgent }: AdapterContext): Adapter {
 		},
 
 		async createVerificationToken(verification) {
-			await db('verification_tokens').insert({
-				identifier: normaliseEmail(verification.identifier),
-				token_hash: hashToken(verification.token),
-				expires_at: verification.expires.toISOString()
-			});
+			await tokens.addLink(
+				{
+					identifier: normaliseEmail(verification.identifier),
+					token_hash: hashToken(verification.token),
+					expires_at: verification.expires.toISOString()
+				},
+				clock().toISOString()
+			);
 			return verification;
 		},
 
-		/** Deletes and returns in one statement: of two simultaneous uses one finds nothing. */
 		async useVerificationToken({ identifier, token }) {
-			const [row] = await db('verification_tokens')
-				.where({ identifier: normaliseEmail(identifier), token_hash: hashToken(token) })
-				.delete()
-				.returning('*');
-			return row ? { identifier: row.identifier, token, expires: new Date(row.expires_at) } : null;
+			const row = await tokens.takeLink(hashToken(token));
+			if (!row || row.identifier !== normaliseEmail(identifier)) return null;
+			return { identifier: row.identifier, token, expires: new Date(row.expires_at) };
 		}
 	};
 }

@@ -9,10 +9,11 @@ export function signInTokensRepository(db: Db) {
 			await db('verification_tokens').insert(row);
 		},
 
-		/** Deletes and returns in one statement: of two simultaneous uses one finds nothing. */
+		/** The row, for the one who deletes it: of two simultaneous uses the second deletes nothing and gets nothing. */
 		async takeLink(tokenHash: string): Promise<VerificationTokenRow | undefined> {
-			const rows = await db('verification_tokens').where({ token_hash: tokenHash }).delete().returning('*');
-			return rows[0];
+			const row = await db('verification_tokens').where({ token_hash: tokenHash }).first();
+			const deleted = await db('verification_tokens').where({ token_hash: tokenHash }).delete();
+			return deleted === 1 ? row : undefined;
 		},
 
 		async removeLinksOf(identifier: string): Promise<void> {
