@@ -1,4 +1,9 @@
-import { calibrationState, DUE_SOON_DAYS, type CalibrationState } from '../../register/instrument-facts';
+import {
+	calibrationState,
+	DUE_SOON_DAYS,
+	type CalibrationState,
+	type InstrumentFacts
+} from '../../register/instrument-facts';
 import type { Db } from '../db/database';
 import type { CalibrationRow, InstrumentRow } from '../db/rows';
 import type { Scope } from '../repositories/scope';
@@ -10,6 +15,13 @@ export type InstrumentSort = (typeof INSTRUMENT_SORTS)[number];
 export interface InstrumentListQuery extends ListQuery<InstrumentSort> {
 	archived: boolean;
 	calibration: CalibrationState | null;
+}
+
+const STATES: readonly CalibrationState[] = ['valid', 'soon', 'overdue', 'none'];
+
+/** The state asked for in an address; null for none or one that is not known. */
+export function parseCalibrationFilter(value: string | null): CalibrationState | null {
+	return STATES.find((state) => state === value) ?? null;
 }
 
 export interface InstrumentListRow {
@@ -24,7 +36,9 @@ export interface InstrumentListRow {
 }
 
 export interface InstrumentPage {
-	instrument: InstrumentRow;
+	id: string;
+	facts: InstrumentFacts;
+	archivedAt: string | null;
 	calibrations: CalibrationRow[];
 	dueOn: string | null;
 	calibration: CalibrationState;
@@ -97,6 +111,20 @@ export async function listInstruments(
 	};
 }
 
+export function toInstrumentFacts(row: InstrumentRow): InstrumentFacts {
+	return {
+		name: row.name,
+		model: row.model,
+		serialNumber: row.serial_number,
+		harmonicClass: row.harmonic_class,
+		channels: row.channels,
+		sensors: row.sensors,
+		currentSensorError_pct: row.current_sensor_error_pct,
+		voltageSensorError_pct: row.voltage_sensor_error_pct,
+		notes: row.notes
+	};
+}
+
 export async function loadInstrumentPage(
 	db: Db,
 	scope: Pick<Scope, 'practiceId'>,
@@ -116,7 +144,9 @@ export async function loadInstrumentPage(
 			.sort()
 			.at(-1) ?? null;
 	return {
-		instrument,
+		id: instrument.id,
+		facts: toInstrumentFacts(instrument),
+		archivedAt: instrument.archived_at,
 		calibrations,
 		dueOn,
 		calibration: calibrationState(dueOn, today),

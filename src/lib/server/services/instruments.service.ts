@@ -7,6 +7,7 @@ import { withTransaction } from '../db/database';
 import {
 	listInstruments,
 	loadInstrumentPage,
+	toInstrumentFacts,
 	type InstrumentListQuery
 } from '../read-models/instrument-list';
 import { instrumentsRepository } from '../repositories/instruments.repository';
@@ -62,7 +63,7 @@ export function createInstrumentsService({ db, clock }: ServiceDeps) {
 						action: 'instrument.changed',
 						subjectKind: 'instrument',
 						subjectId: instrumentId,
-						detail: { before, after: facts }
+						detail: { before: toInstrumentFacts(before), after: facts }
 					},
 					clock()
 				);
