@@ -35,17 +35,22 @@ export async function listClients(
 		return clients;
 	};
 	const counted = await matching().count<{ n: number }[]>({ n: '*' }).first();
+	const counts = [
+		db('sites as s').whereRaw('s.client_id = c.id').whereNull('s.archived_at').count('*').as('sites'),
+		db('surveys as v').whereRaw('v.client_id = c.id').count('*').as('surveys'),
+		db('surveys as v').whereRaw('v.client_id = c.id').max('v.updated_at').as('latest')
+	];
 	const rows = await matching()
-		.select<ClientListRow[]>({
-			id: 'c.id',
-			name: 'c.name',
-			contactName: 'c.contact_name',
-			contactEmail: 'c.contact_email',
-			archivedAt: 'c.archived_at',
-			sites: db('sites as s').whereRaw('s.client_id = c.id').whereNull('s.archived_at').count('*'),
-			surveys: db('surveys as v').whereRaw('v.client_id = c.id').count('*'),
-			latest: db('surveys as v').whereRaw('v.client_id = c.id').max('v.updated_at')
-		})
+		.select<ClientListRow[]>(
+			{
+				id: 'c.id',
+				name: 'c.name',
+				contactName: 'c.contact_name',
+				contactEmail: 'c.contact_email',
+				archivedAt: 'c.archived_at'
+			},
+			...counts
+		)
 		.orderByRaw(
 			query.sort === 'name'
 				? `c.name collate nocase ${query.descending ? 'desc' : 'asc'}`

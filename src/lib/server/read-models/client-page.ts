@@ -138,15 +138,17 @@ export async function loadClientPage(db: Db, scope: Scope, clientId: string): Pr
 	const sites = await db('sites as s')
 		.where({ 's.practice_id': scope.practiceId, 's.client_id': clientId })
 		.orderByRaw('s.archived_at is not null, s.name collate nocase')
-		.select<ClientSiteLine[]>({
-			id: 's.id',
-			name: 's.name',
-			address: 's.address',
-			utility: 's.utility',
-			timeZone: 's.time_zone',
-			archivedAt: 's.archived_at',
-			points: db('points as p').whereRaw('p.site_id = s.id').whereNull('p.archived_at').count('*')
-		});
+		.select<ClientSiteLine[]>(
+			{
+				id: 's.id',
+				name: 's.name',
+				address: 's.address',
+				utility: 's.utility',
+				timeZone: 's.time_zone',
+				archivedAt: 's.archived_at'
+			},
+			db('points as p').whereRaw('p.site_id = s.id').whereNull('p.archived_at').count('*').as('points')
+		);
 	return {
 		client,
 		sites,
