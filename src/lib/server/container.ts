@@ -21,7 +21,9 @@ import { createSignInService } from './services/sign-in.service';
 import { createSurveysService } from './services/surveys.service';
 import type { ServiceDeps } from './service-deps';
 import type { BlobStore } from './storage/blob-store';
+import { createActionsService } from './services/actions.service';
 import { createAssessmentsService } from './services/assessments.service';
+import { createReportsService } from './services/reports.service';
 import { createCapturesService } from './services/captures.service';
 import { createReadingsService } from './services/readings.service';
 import { createUploadsService } from './services/uploads.service';
@@ -54,7 +56,9 @@ function buildServices(deps: ServiceDeps) {
 		uploads: createUploadsService(deps),
 		captures: createCapturesService(deps),
 		readings: createReadingsService(deps),
-		assessments: createAssessmentsService(deps)
+		assessments: createAssessmentsService(deps),
+		actions: createActionsService(deps),
+		reports: createReportsService(deps)
 	};
 }
 

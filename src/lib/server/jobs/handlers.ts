@@ -7,5 +7,7 @@ export type JobHandler = (container: Container, payload: unknown, context: JobCo
 export const JOB_HANDLERS: Record<string, () => Promise<JobHandler>> = {
 	'recognise-capture': async () => (await import('./recognise-capture.handler')).handle,
 	'analyse-capture': async () => (await import('./analyse-capture.handler')).handle,
-	'assess-survey': async () => (await import('./assess-survey.handler')).handle
+	'assess-survey': async () => (await import('./assess-survey.handler')).handle,
+	'render-report': async () => (await import('./render-report.handler')).handle,
+	'issue-report': async () => (await import('./issue-report.handler')).handle
 };
