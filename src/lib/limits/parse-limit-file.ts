@@ -68,6 +68,11 @@ function inWords(text: string): string {
 		.replaceAll('Isc/IL', 'short-circuit ratio');
 }
 
+/** Class labels in print: "V ≤ 1.0 kV" and not the keyboard's "<=". */
+function inPrint(label: string): string {
+	return label.replaceAll('<=', '≤').replaceAll('>=', '≥');
+}
+
 /** What 100 % means, read from the file's words; null when it is none of the three bases that are judged. */
 function basisOf(table: FileTable): LimitBasis | null {
 	const words = table.basis ?? '';
@@ -93,13 +98,14 @@ function classesOf(row: FileRow | FileTotal): Pick<LimitRow, 'shortCircuitRatio'
 	const voltage = row.nominalVoltage_kV;
 	return {
 		shortCircuitRatio:
-			row.isc_il === undefined ? null : { ...rangeOf(row.isc_il), label: row.isc_il_label ?? '' },
+			row.isc_il === undefined ? null : { ...rangeOf(row.isc_il), label: inPrint(row.isc_il_label ?? '') },
 		nominalVoltage_kV:
 			voltage === undefined
 				? null
 				: {
 						...rangeOf(voltage),
-						label: row.label ?? (typeof voltage.equals === 'number' ? `${voltage.equals} kV` : '')
+						label:
+							inPrint(row.label ?? '') || (typeof voltage.equals === 'number' ? `${voltage.equals} kV` : '')
 					}
 	};
 }
