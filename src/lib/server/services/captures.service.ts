@@ -5,6 +5,7 @@ import type { CaptureSettings } from '../analysis/capture-settings';
 import { appendAudit } from '../audit/audit-log';
 import { requirePermission } from '../auth/require-permission';
 import { withTransaction, type Db } from '../db/database';
+import type { CaptureRow } from '../db/rows';
 import { analyseCapture } from '../jobs/analyse-capture.job';
 import { assessSurvey } from '../jobs/assess-survey.job';
 import type { JobState } from '../jobs/job-queue';
@@ -34,6 +35,24 @@ export interface OriginalFile {
 	content: Readable;
 }
 
+/**
+ * A capture whose work was given up by the queue still says that it is being analysed: nobody was left to correct it.
+ * Without unfinished work it has failed.
+ */
+function withoutFalseHope<C extends Pick<CaptureRow, 'id' | 'status' | 'problem'>>(
+	capture: C,
+	work: readonly SurveyJob[]
+): C {
+	const waits = capture.status === 'queued' || capture.status === 'analysing';
+	const isWorkedOn = work.some((job) => job.captureId === capture.id && job.status !== 'failed');
+	if (!waits || isWorkedOn) return capture;
+	return {
+		...capture,
+		status: 'failed',
+		problem: 'The analysis stopped before its end. Confirm and analyse again.'
+	};
+}
+
 /** Captures of a survey: what was recognised, how the channels are mapped, their analysis and their originals. */
 export function createCapturesService(deps: ServiceDeps) {
 	const { db, blobs, jobs, clock } = deps;
@@ -46,10 +65,12 @@ export function createCapturesService(deps: ServiceDeps) {
 		requirePermission(actor, 'capture.read');
 		const scope = scopeOf(actor);
 		const survey = requireFound(await captureSurvey(db, scope, surveyId), 'survey');
+		const work = await surveyJobs(db, scope, survey.id, clock());
+		const captures = await captureList(db, scope, survey.id, query);
 		return {
 			survey,
-			captures: await captureList(db, scope, survey.id, query),
-			jobs: await surveyJobs(db, scope, survey.id, clock())
+			captures: { ...captures, rows: captures.rows.map((row) => withoutFalseHope(row, work)) },
+			jobs: work
 		};
 	}
 
@@ -63,7 +84,11 @@ export function createCapturesService(deps: ServiceDeps) {
 		const survey = requireFound(await captureSurvey(db, scope, surveyId), 'survey');
 		const capture = requireFound(await captureDetail(db, scope, survey.id, captureId), 'capture');
 		const work = await surveyJobs(db, scope, survey.id, clock());
-		return { survey, capture, jobs: work.filter((job) => job.captureId === capture.id) };
+		return {
+			survey,
+			capture: withoutFalseHope(capture, work),
+			jobs: work.filter((job) => job.captureId === capture.id)
+		};
 	}
 
 	/** Keeps what the engineer confirmed and queues the analysis that rests on it. */

@@ -100,11 +100,12 @@ export function createUploadsService(deps: ServiceDeps) {
 		const survey = requireFound(await captureSurvey(db, scopeOf(actor), surveyId), 'survey');
 		const name = cleanFileName(rawName);
 		if (!body) throw new AppError('invalid', `${name} arrived without content. Choose the file again.`);
-		const blob = await blobs
-			.putStream(Readable.fromWeb(body), config.uploadLimit_bytes)
-			.catch((cause: unknown) => {
-				throw storageFailure(cause, name);
-			});
+		const content = Readable.fromWeb(body);
+		// A connection cut before storage has begun to read would end the process: nobody listens yet.
+		content.on('error', () => undefined);
+		const blob = await blobs.putStream(content, config.uploadLimit_bytes).catch((cause: unknown) => {
+			throw storageFailure(cause, name);
+		});
 		if (blob.size_bytes === 0)
 			throw new AppError('invalid', `${name} is empty. Copy it from the recorder again.`);
 		const now = clock();
