@@ -26,5 +26,7 @@ function valueText(value: unknown): string {
 export function eventDetails(json: string): { term: string; value: string }[] {
 	const detail: unknown = JSON.parse(json);
 	if (typeof detail !== 'object' || detail === null) return [];
-	return Object.entries(detail).map(([name, value]) => ({ term: spaced(name), value: valueText(value) }));
+	return Object.entries(detail)
+		.filter(([, value]) => value !== null)
+		.map(([name, value]) => ({ term: spaced(name), value: valueText(value) }));
 }
