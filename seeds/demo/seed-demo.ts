@@ -2,6 +2,7 @@ import { writeFileSync } from 'node:fs';
 import type { Container, Overrides } from '../../src/lib/server/container';
 import { storyClock } from './clock';
 import { registerDemo } from './register';
+import { reportDemo } from './reports';
 import { measureDemo } from './surveys';
 
 /**
@@ -21,8 +22,10 @@ export async function seedDemo(
 	try {
 		const register = await registerDemo(container, story, today);
 		say('  practice, people, clients, sites and points');
-		await measureDemo(container, story, register, today);
+		const surveys = await measureDemo(container, story, register, today);
 		say('  surveys and captures, analysed and assessed');
+		await reportDemo(container, story, register, surveys, today);
+		say('  reports, acknowledgements, questions and actions');
 		await container.mail.deliverDue();
 	} finally {
 		await container.db.destroy();
