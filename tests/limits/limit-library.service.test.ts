@@ -34,8 +34,11 @@ describe('the limit library', () => {
 	});
 
 	it('searches, sorts and pages on the server', async () => {
-		const found = await library().list(actor, { ...ASK, q: '519', sort: 'edition', descending: true });
+		const found = await library().list(actor, { ...ASK, q: '519' });
 		expect(found.rows.map((row) => row.edition)).toEqual(['2022', '2014', '1992']);
+		const byTables = await library().list(actor, { ...ASK, sort: 'tables', descending: true });
+		const counts = byTables.rows.map((row) => row.tables);
+		expect(counts).toEqual([...counts].sort((a, b) => b - a));
 		const second = await library().list(actor, { ...ASK, page: 2, pageSize: 10 });
 		expect(second.rows).toHaveLength(LIMIT_FILE_KEYS.length - 10);
 		expect((await library().list(actor, { ...ASK, q: '100%' })).total).toBe(0);

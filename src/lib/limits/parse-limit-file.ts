@@ -61,7 +61,7 @@ function boundOf(value: number | null | undefined, inclusive: boolean): Bound | 
 
 /** Quantity symbols are typeset on screen; in running text the trade's words stand instead. */
 function inWords(text: string): string {
-	return text
+	return inPrint(text)
 		.replaceAll('I_L, the maximum demand load current', 'the maximum demand load current')
 		.replaceAll('I_L', 'the maximum demand load current')
 		.replace(/^Isc\/IL/, 'Short-circuit ratio')

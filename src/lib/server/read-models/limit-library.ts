@@ -3,7 +3,7 @@ import type { Db } from '../db/database';
 import type { Scope } from '../repositories/scope';
 import { likePattern, type ListPage, type ListQuery } from './list-query';
 
-export const LIMIT_SET_SORTS = ['standard', 'edition', 'jurisdiction', 'tables'] as const;
+export const LIMIT_SET_SORTS = ['standard', 'jurisdiction', 'tables'] as const;
 export type LimitSetSort = (typeof LIMIT_SET_SORTS)[number];
 
 export interface LimitSetListRow {
@@ -34,7 +34,6 @@ interface Row {
 
 const ORDER: Record<LimitSetSort, string> = {
 	standard: 'l.standard collate nocase',
-	edition: 'l.edition collate nocase',
 	jurisdiction: 'l.jurisdiction collate nocase',
 	tables: 'tables'
 };
