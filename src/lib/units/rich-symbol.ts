@@ -6,7 +6,7 @@
 export type RichPart = { kind: 'text'; text: string } | { kind: 'symbol'; name: string; sub: string };
 
 const SYMBOL =
-	/(?<![\p{L}\p{N}_.-])([A-Za-zΔΩθφτ]{1,3})_(?:\{([^{}]+)\}|([\p{L}\p{N}]{1,4}(?:,\p{N}{1,3})?))(?![\p{L}\p{N}_.-])/gu;
+	/(?<![\p{L}\p{N}_.-])([A-Za-zΔΩθφτ]{1,3})_(?:\{([^{}]+)\}|([\p{L}\p{N}]{1,4}(?:,\p{N}{1,3})?))(?![\p{L}\p{N}_-]|\.[\p{L}\p{N}])/gu;
 
 export function parseRichSymbols(text: string): RichPart[] {
 	const parts: RichPart[] = [];
