@@ -3,6 +3,7 @@ import { clientSchema } from '$lib/register/client-facts';
 import { computeDemandCurrent } from '$lib/register/demand-facts';
 import { isCalendarDay } from '$lib/register/form-text';
 import { calibrationSchema, calibrationState } from '$lib/register/instrument-facts';
+import { formatShortCircuitRatio } from '$lib/register/ratio-class';
 import { pointGaps } from '$lib/register/point-gaps';
 import { computeShortCircuit } from '$lib/register/short-circuit-facts';
 import { siteSchema } from '$lib/register/site-facts';
@@ -63,6 +64,17 @@ describe('short-circuit current from what was entered', () => {
 
 	it('is null while nothing is known', () => {
 		expect(computeShortCircuit({ ...LV, shortCircuit: { method: 'unknown' } }).current_A).toBeNull();
+	});
+});
+
+describe('the short-circuit ratio', () => {
+	it.each([
+		[31.2, '31.2'],
+		[20, '20.0'],
+		[19.98, '19.98'],
+		[1000.0004, '1,000.0004']
+	])('%f reads %s', (ratio, shown) => {
+		expect(formatShortCircuitRatio(ratio)).toBe(shown);
 	});
 });
 

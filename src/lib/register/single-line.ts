@@ -1,6 +1,7 @@
-import { formatApparentPower, formatCurrent, formatPct, formatVoltage } from '../units/format';
+import { formatCurrent, formatVoltage } from '../units/format';
 import type { PointFacts } from './point-facts';
 import type { PointWorking } from './point-working';
+import { tidyQuantity } from './tidy-quantity';
 
 /** One element of a single-line sketch, from the supply down. */
 export interface SingleLinePart {
@@ -18,18 +19,18 @@ function supply({ shortCircuit }: PointFacts): SingleLinePart {
 	const level_VA = shortCircuit.upstreamFaultLevel_VA;
 	return {
 		...part,
-		notes: [level_VA === null ? 'taken as infinite' : `fault level ${formatApparentPower(level_VA)}`]
+		notes: [level_VA === null ? 'taken as infinite' : `fault level ${tidyQuantity('fault-level', level_VA)}`]
 	};
 }
 
 function transformer({ shortCircuit }: PointFacts): SingleLinePart[] {
 	if (shortCircuit.method !== 'transformer') return [];
-	const rating = formatApparentPower(shortCircuit.rating_VA);
+	const rating = tidyQuantity('apparent-power', shortCircuit.rating_VA);
 	return [
 		{
 			sign: 'transformer',
 			title: 'Transformer',
-			notes: [`${rating}, Z ${formatPct(shortCircuit.impedance_pct)}`],
+			notes: [`${rating}, Z ${tidyQuantity('percent', shortCircuit.impedance_pct)}`],
 			measured: false
 		}
 	];

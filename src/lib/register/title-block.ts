@@ -1,5 +1,6 @@
 import type { AssessedPoint } from '../assessment/assessment';
-import { formatNumber, formatVoltage } from '../units/format';
+import { formatVoltage } from '../units/format';
+import { formatShortCircuitRatio } from './ratio-class';
 import { reportText, type SurveyProgress, type SurveyStages } from './survey-stages';
 
 /** What the head of a survey's pages shows. */
@@ -27,7 +28,7 @@ export function titleBlockCells(head: SurveyHeadFacts): TitleBlockCell[] {
 	const clientHref = `/clients/${head.client.id}`;
 	const siteHref = `${clientHref}/sites/${head.site.id}`;
 	const kind = assessed.kind === 'pcc' ? 'PCC' : 'in-plant';
-	const ratio = shortCircuitRatio === null ? null : formatNumber(shortCircuitRatio, { decimals: 1 });
+	const ratio = shortCircuitRatio === null ? null : formatShortCircuitRatio(shortCircuitRatio);
 	return [
 		{ label: 'Client', value: head.client.name, href: clientHref },
 		{ label: 'Site', value: head.site.name, href: siteHref },

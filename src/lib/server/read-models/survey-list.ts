@@ -32,7 +32,6 @@ export interface SurveyListRow {
 	evidence: Evidence | null;
 	advisory: 0 | 1 | null;
 	updatedAt: string;
-	timeZone: string;
 }
 
 export interface SurveyList extends ListPage<SurveyListRow> {
@@ -111,8 +110,7 @@ export async function listSurveys(db: Db, scope: Scope, query: SurveyListQuery):
 			verdict: 'a.verdict',
 			evidence: 'a.evidence',
 			advisory: 'a.advisory',
-			updatedAt: 'v.updated_at',
-			timeZone: 's.time_zone'
+			updatedAt: 'v.updated_at'
 		})
 		.orderByRaw(`${ORDER[query.sort]} ${query.descending ? 'desc' : 'asc'}, v.number desc`)
 		.limit(query.pageSize)
