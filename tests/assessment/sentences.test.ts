@@ -86,7 +86,7 @@ describe('for the engineer', () => {
 
 describe('for the reader who is not an engineer', () => {
 	it.each([
-		[9.63, EXACT, 'is above the limit'],
+		[9.63, EXACT, 'more harmonic current on the supply than is allowed'],
 		[5, EXACT, 'is within the limits'],
 		[6.9, FIVE_PERCENT, 'cannot tell for certain'],
 		[7.1, FIVE_PERCENT, 'may or may not be too high']
@@ -98,7 +98,18 @@ describe('for the reader who is not an engineer', () => {
 
 	it('never lets a share of the limit round to the other side', () => {
 		expect(plain(portalSentence(snapshot(6.9999), NAMES))).toContain('99.9 %');
-		expect(plain(portalSentence(snapshot(7.0001), NAMES))).toContain('100.1 %');
+		expect(plain(portalSentence(snapshot(7.0001, {}, FIVE_PERCENT), NAMES))).toContain('100.1 %');
+	});
+
+	it('does not call an exceedance an indication when its own rule was answered in full', () => {
+		const short = snapshot(9.63);
+		const worst = { ...short.worst!, evidence: 'weekly' as const };
+		const answered = { ...short, evidence: 'partial' as const, worst };
+		expect(portalSentence(answered, NAMES)).not.toContain('indication');
+		expect(engineerSentence(answered, { phaseNames: NAMES.phaseNames })).toContain(
+			'Other rules of the standard'
+		);
+		expect(portalSentence(short, NAMES)).toContain('indication');
 	});
 
 	it('admits when nothing could be assessed', () => {

@@ -34,17 +34,32 @@ export function rowSentence(row: VerdictRow, options: SentenceOptions): string {
 	return `${phase.charAt(0).toUpperCase()}${phase.slice(1)} ${verb} ${value} ${BASIS_WORDS[row.basis]} ${at(row)}, where ${allowed} is allowed.`;
 }
 
-const RESERVE = {
-	weekly: '',
-	partial: ' The survey is shorter than the standard’s period, so this is not yet a full assessment.',
-	snapshot: ' Indicative only: the capture is too short for the standard’s percentiles.'
-} as const;
+/**
+ * Why an engineer must not take the verdict for a full assessment. A governing rule that was answered in full stays a
+ * finding, also when other rules of the standard could not be answered beside it.
+ */
+function evidenceReserve(assessment: Assessment, worst: VerdictRow): string {
+	if (assessment.evidence === 'weekly') return '';
+	if (assessment.evidence === 'snapshot')
+		return ' Indicative only: the capture is too short for the standard’s percentiles.';
+	return worst.evidence === 'weekly'
+		? ' Other rules of the standard could not be answered from what was measured.'
+		: ' The survey is shorter than the standard’s period, so this is not yet a full assessment.';
+}
+
+/** The same for a reader who is no engineer. */
+function plainReserve(assessment: Assessment, worst: VerdictRow): string {
+	if (assessment.evidence === 'weekly') return '';
+	if (assessment.evidence === 'partial' && worst.evidence === 'weekly')
+		return assessment.verdict === 'exceeds' ? '' : ' Not all that the rules ask for was measured.';
+	return ' The measurement was shorter than the rules ask for, so take this as an indication.';
+}
 
 const ADVISORY =
 	' The point lies inside the plant, where these limits do not bind: the comparison is advisory.';
 
 function reserves(assessment: Assessment): string {
-	const evidence = assessment.worst === null ? '' : RESERVE[assessment.evidence];
+	const evidence = assessment.worst === null ? '' : evidenceReserve(assessment, assessment.worst);
 	return evidence + (assessment.advisory ? ADVISORY : '');
 }
 
@@ -97,6 +112,11 @@ const PLAIN_QUANTITY = {
 	voltage: 'The voltage distortion at your supply point'
 } as const;
 
+const PLAIN_EXCESS = {
+	current: 'Your installation puts more harmonic current on the supply than is allowed.',
+	voltage: 'The voltage at your supply point is more distorted than is allowed.'
+} as const;
+
 /** Utilisation for a layman, cut and not rounded, so that 99.96 % never reads as all of the limit. */
 function shareOfLimit(row: VerdictRow, options: SentenceOptions): string {
 	if (row.utilisation === null) return NO_DATA;
@@ -114,13 +134,11 @@ export function portalSentence(assessment: Assessment, options: SentenceOptions)
 	const what = PLAIN_QUANTITY[worst.quantity];
 	const share = shareOfLimit(worst, options);
 	const tail =
-		(assessment.evidence === 'weekly'
-			? ''
-			: ' The measurement was shorter than the rules ask for, so take this as an indication.') +
+		plainReserve(assessment, worst) +
 		(assessment.advisory ? ' The limits themselves apply at your supply point, not here.' : '');
 	switch (verdict) {
 		case 'exceeds':
-			return `${what} is above the limit: ${share} of what is allowed at its worst.${tail}`;
+			return `${PLAIN_EXCESS[worst.quantity]}${tail}`;
 		case 'exceeds-inside-uncertainty':
 			return `${what} is measured just above the limit (${share} of what is allowed), closer than the instrument can tell: it may or may not be too high.${tail}`;
 		case 'compliant-inside-uncertainty':

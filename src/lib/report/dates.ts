@@ -35,6 +35,11 @@ export function formatCalendarDate(date: string): string {
 	return formatDay(`${date.slice(0, 10)}T12:00:00Z`, 'UTC');
 }
 
+/** The same, short: "30 Apr 2026". */
+export function formatShortCalendarDate(date: string): string {
+	return formatShortDay(`${date.slice(0, 10)}T12:00:00Z`, 'UTC');
+}
+
 /** "3 to 10 March 2026", "10 March 2026", "28 February to 6 March 2026". */
 export function formatPeriod(from: string, to: string, timeZone: string): string {
 	const first = formatDay(from, timeZone);

@@ -23,7 +23,9 @@ export function evidenceText(assessment: Assessment): string {
 	const { word, meaning } = EVIDENCE_WORDS[assessment.evidence];
 	if (counts === null) return `${word}; nothing could be assessed.`;
 	const share =
-		assessment.evidence === 'partial' ? `, ${formatShare(counts.coverage)} of the period covered` : '';
+		assessment.evidence === 'partial' && assessment.worst?.evidence === 'partial'
+			? `, ${formatShare(counts.coverage)} of the period covered`
+			: '';
 	const count = (n: number) => formatNumber(n, { decimals: 0 });
 	return `${word}, ${meaning}${share}. ${count(counts.intervalCount)} intervals behind the governing figure, ${count(counts.flaggedCount)} flagged.`;
 }

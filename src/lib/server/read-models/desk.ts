@@ -1,4 +1,5 @@
 import type { Verdict } from '../../assessment/assessment';
+import { formatShortCalendarDate } from '../../report/dates';
 import type { Db } from '../db/database';
 
 export interface DeskItem {
@@ -166,7 +167,9 @@ async function actionItems(db: Db, practiceId: string, today: string): Promise<D
 		title: a.status === 'done' ? `Confirm as done: ${a.title}` : a.title,
 		detail:
 			a.client +
-			(a.status === 'open' && a.due_on ? `, due ${a.due_on}${a.due_on < today ? ' (late)' : ''}` : ''),
+			(a.status === 'open' && a.due_on
+				? `, due ${formatShortCalendarDate(a.due_on)}${a.due_on < today ? ' (late)' : ''}`
+				: ''),
 		href: `/surveys/${a.survey_id}/remedies`,
 		since: a.done_at ?? a.due_on ?? a.created_at
 	}));
@@ -179,11 +182,15 @@ async function calibrationItems(db: Db, practiceId: string, dueBefore: string): 
 		.whereNull('i.archived_at')
 		.groupBy('i.id', 'i.name')
 		.havingRaw('max(k.due_on) < ?', [dueBefore])
-		.select<{ id: string; name: string; due_on: string }[]>('i.id', 'i.name', db.raw('max(k.due_on) as due_on'));
+		.select<{ id: string; name: string; due_on: string }[]>(
+			'i.id',
+			'i.name',
+			db.raw('max(k.due_on) as due_on')
+		);
 	return rows.map((i) => ({
 		kind: 'calibration',
 		title: `Calibration due: ${i.name}`,
-		detail: `due ${i.due_on}`,
+		detail: `due ${formatShortCalendarDate(i.due_on)}`,
 		href: `/instruments/${i.id}`,
 		since: i.due_on
 	}));
