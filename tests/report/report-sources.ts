@@ -37,7 +37,17 @@ export const POINT_FACTS: PointFacts = {
 	notes: ''
 };
 
-const SIX_PULSE: Record<number, number> = { 3: 0.6, 5: 9.4, 7: 5.3, 11: 3.45, 13: 2.2, 17: 1.4, 19: 1.05, 23: 0.83, 25: 0.65 };
+const SIX_PULSE: Record<number, number> = {
+	3: 0.6,
+	5: 9.4,
+	7: 5.3,
+	11: 3.45,
+	13: 2.2,
+	17: 1.4,
+	19: 1.05,
+	23: 0.83,
+	25: 0.65
+};
 const SCALE: Record<string, number> = { L1: 0.98, L2: 0.95, L3: 1.02 };
 
 export interface SourcesChange {
@@ -180,7 +190,12 @@ export function reportSources(change: SourcesChange = {}): ReportSources {
 			harmonicClass: 'I',
 			sensors: 'Flexible clamps 3000 A, class 0.5',
 			calibrations: [
-				{ certificate: 'C-2025-881', laboratory: 'Millbrook Metrology', calibratedOn: '2025-09-01', dueOn: '2026-09-01' }
+				{
+					certificate: 'C-2025-881',
+					laboratory: 'Millbrook Metrology',
+					calibratedOn: '2025-09-01',
+					dueOn: '2026-09-01'
+				}
 			],
 			calibratedDuringSurvey: true
 		},
@@ -211,7 +226,13 @@ export function reportSources(change: SourcesChange = {}): ReportSources {
 				}
 			],
 			flagged: [
-				{ interval: '10min', startsAt: '2026-03-03T08:10:00.000Z', length_s: 600, quantity: 'voltage', phase: 'L1' }
+				{
+					interval: '10min',
+					startsAt: '2026-03-03T08:10:00.000Z',
+					length_s: 600,
+					quantity: 'voltage',
+					phase: 'L1'
+				}
 			],
 			flaggedTotal: 1,
 			intervalTotal: 1008
@@ -238,7 +259,12 @@ export function reportSources(change: SourcesChange = {}): ReportSources {
 				samplingRate_Hz: null,
 				windowCount: 0,
 				files: [{ name: 'week-10.csv', sha256: '9f3c51aa07e2b6d4'.repeat(4), size_bytes: 1_482_113 }],
-				channels: phases.map((phase) => ({ channel: `I ${phase}`, quantity: 'current', phase, toPrimary: 320 }))
+				channels: phases.map((phase) => ({
+					channel: `I ${phase}`,
+					quantity: 'current',
+					phase,
+					toPrimary: 320
+				}))
 			}
 		]
 	};
@@ -260,7 +286,9 @@ function waveform(): ReportSources['waveform'] {
 					const t = 1.2 + (0.2 * i) / 599;
 					const angle = 2 * Math.PI * 60 * t + ((shift[phase] ?? 0) * Math.PI) / 180;
 					const value =
-						quantity === 'voltage' ? 391.9 * Math.sin(angle) : 1414 * Math.sin(angle) + 133 * Math.sin(5 * angle);
+						quantity === 'voltage'
+							? 391.9 * Math.sin(angle)
+							: 1414 * Math.sin(angle) + 133 * Math.sin(5 * angle);
 					return [t, value];
 				}).flat()
 			}))

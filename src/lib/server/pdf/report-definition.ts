@@ -26,7 +26,7 @@ function chapters(context: SheetContext): Chapter[] {
 	const { model } = context;
 	const recordings = recordingsSection(context);
 	const tables = model.tables.map((table, i): Chapter => ({
-		title: `6.${i + 2} ${table.quantity === 'voltage' ? 'Voltage' : 'Current'}: ${table.title}`,
+		title: `6.${i + 2} ${table.title}`,
 		content: tableSection(context, table),
 		under: 'results'
 	}));

@@ -36,7 +36,7 @@ export function singleLineSvg(point: ReportPoint, utility: string, width: number
 			? 'demand current not known'
 			: `demand current ${formatCurrent(point.demandCurrent_A)}`;
 	return [
-		`<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 ${width} 128" width="${width}" height="128">`,
+		`<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 8 ${width} 110" width="${width}" height="110">`,
 		`<circle cx="42" cy="${mid}" r="17" fill="none" stroke="${INK}" stroke-width="1.2"/>`,
 		`<path d="M32 ${mid}c3.5 -10 7 -10 10 0s6.5 10 10 0" fill="none" stroke="${INK}" stroke-width="1.2"/>`,
 		label(42, 22, utility === '' ? 'Supply network' : utility, { bold: true }),

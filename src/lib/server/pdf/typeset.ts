@@ -189,9 +189,9 @@ export function facts(items: readonly (readonly [string, string | Content])[], t
 	};
 }
 
-export function bullets(items: readonly string[]): Content {
+export function bullets(items: readonly string[], fontSize = 9.5): Content {
 	return {
-		ul: items.map((item) => ({ text: rich(item), margin: [0, 0, 0, 3] })),
+		ul: items.map((item) => ({ text: rich(item), fontSize, margin: [0, 0, 0, fontSize < 9 ? 1 : 3] })),
 		margin: [0, 0, 0, 8],
 		markerColor: INK_SOFT
 	};

@@ -2,8 +2,7 @@ import { can, type Actor } from '../../access/access';
 import { formatPhase } from '../../recording/phase';
 import { nextRevision, isVisibleToClient } from '../../report/revision-status';
 import { suggestFindings } from '../../report/suggest-findings';
-import { plainExplanation } from '../../report/plain-words';
-import { portalSentence } from '../../assessment/verdict-sentence';
+import { suggestSummary } from '../../report/suggest-summary';
 import { AppError, requireFound } from '../app-error';
 import { appendAudit } from '../audit/audit-log';
 import { requireClientId, requirePermission } from '../auth/require-permission';
@@ -82,8 +81,7 @@ export function createReportsService(deps: ServiceDeps) {
 		const { phaseNames } = toPointFacts(point);
 		const { assessment } = stored;
 		return {
-			summary:
-				`${portalSentence(assessment, { phaseNames })}\n\n${plainExplanation(assessment, phaseNames)}`.trim(),
+			summary: suggestSummary(assessment),
 			findings: suggestFindings(assessment, (phase) => formatPhase(phase, phaseNames))
 		};
 	}

@@ -21,7 +21,7 @@ function captureBlock({ model, phase }: SheetContext, capture: ReportCapture): C
 	return [
 		...heading(
 			capture.name,
-			`${capture.format} ${capture.variant}, ${started}, ${formatDuration(capture.duration_s)}${rate}, ${formatNumber(capture.windowCount, { decimals: 0 })} windows.`
+			`${capture.format} ${capture.variant}, ${started}, ${formatDuration(capture.duration_s)}${rate}, ${formatNumber(capture.windowCount, { decimals: 0 })} ${capture.samplingRate_Hz === null ? 'intervals' : 'windows'}.`
 		),
 		ruledTable(
 			[
@@ -85,13 +85,14 @@ export function lineageSection(context: SheetContext): Content[] {
 			])
 		),
 		soft(
-			'The data hash is taken over the hashes of the captures, their mapping, the engine version, the limit rows and every figure of appendix B.'
+			'The data hash is taken over the hashes of the captures, their mapping, the engine version, the limit rows and every figure of appendix B. Limits and clause numbers are taken from the limit library of the product; the purchased standard prevails.'
 		)
 	];
 }
 
 function everyValue({ phase }: SheetContext, table: ReportTable): Content[] {
-	return table.rules.flatMap((rule) => [
+	const assessed = table.rules.filter((rule) => rule.rows.some((row) => row.verdict !== 'not-assessed'));
+	return assessed.flatMap((rule) => [
 		{
 			text: rich(`${table.title}: ${rule.text}`),
 			bold: true,
@@ -100,19 +101,19 @@ function everyValue({ phase }: SheetContext, table: ReportTable): Content[] {
 		},
 		ruledTable(
 			[
-				{ head: 'Order', width: 36 },
+				{ head: 'Order', width: 28 },
 				...table.phases.map((p) => ({
 					head: `${phase(p)} %`,
 					width: '*',
 					align: 'right' as const,
 					mono: true
 				})),
-				{ head: 'Limit %', width: 46, align: 'right', mono: true },
-				{ head: 'U %', width: 46, align: 'right', mono: true },
-				{ head: 'Intervals', width: 48, align: 'right', mono: true },
-				{ head: 'Flagged', width: 42, align: 'right', mono: true },
-				{ head: 'Row', width: 34, align: 'right', mono: true },
-				{ head: 'Verdict of the worst phase', width: 112 }
+				{ head: 'Limit %', width: 40, align: 'right', mono: true },
+				{ head: 'U %', width: 36, align: 'right', mono: true },
+				{ head: 'Intervals', width: 38, align: 'right', mono: true },
+				{ head: 'Flagged', width: 34, align: 'right', mono: true },
+				{ head: 'Row', width: 24, align: 'right', mono: true },
+				{ head: 'Verdict of the worst phase', width: 92 }
 			],
 			rule.rows.map((row) => [
 				row.label,

@@ -49,9 +49,6 @@ export function methodSection(context: SheetContext): Content[] {
 			'weekly: everything the rule asks for was measured;',
 			'partial: part of the period was measured, and its share is stated with each figure;',
 			'snapshot: the capture is too short for any percentile, and its comparison with the limits is indicative only.'
-		]),
-		soft(
-			'Figures and clause numbers are taken from the limit library of the product, whose provenance is stated in the appendix. The purchased standard prevails.'
-		)
+		])
 	];
 }

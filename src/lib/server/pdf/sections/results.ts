@@ -171,10 +171,7 @@ function ruleTable({ model, phase }: SheetContext, table: ReportTable, rule: Rep
 		verdictTag(row.verdict, { advisory: model.verdict.advisory })
 	];
 	return [
-		...heading(
-			`${rule.text[0]?.toUpperCase() ?? ''}${rule.text.slice(1)}`,
-			`Percent ${table.ofWhat}. Utilisation is that of the worst phase.`
-		),
+		...heading(sentenceCase(rule.text), `Percent ${table.ofWhat}. Utilisation is that of the worst phase.`),
 		ruledTable(
 			[
 				{ head: 'Order', width: 36 },
@@ -220,7 +217,8 @@ export function tableSection(context: SheetContext, table: ReportTable): Content
 	const at = model.spectra.findIndex((spectrum) => spectrum.tableKey === table.key);
 	const spectrum = model.spectra[at];
 	const drawing = drawings.spectra[at];
-	const coverage = Math.min(...table.rules.flatMap((rule) => rule.rows.map((row) => row.coverage)), 1);
+	const assessed = table.rules.flatMap((rule) => rule.rows.filter((row) => row.verdict !== 'not-assessed'));
+	const coverage = Math.min(...assessed.map((row) => row.coverage), 1);
 	return [
 		paragraph(`${table.title}, ${clauseWords(table.clause)}. ${table.selection}`),
 		soft(
@@ -233,8 +231,16 @@ export function tableSection(context: SheetContext, table: ReportTable): Content
 					soft(spectrum.note)
 				]
 			: []),
-		...table.rules.flatMap((rule) => [...ruleTable(context, table, rule), ...notAssessed(context, rule)])
+		...table.rules.flatMap((rule) =>
+			rule.rows.every((row) => row.verdict === 'not-assessed')
+				? [...heading(sentenceCase(rule.text)), ...notAssessed(context, rule)]
+				: [...ruleTable(context, table, rule), ...notAssessed(context, rule)]
+		)
 	];
+}
+
+function sentenceCase(text: string): string {
+	return text.charAt(0).toUpperCase() + text.slice(1);
 }
 
 function clauseWords(clause: string): string {
@@ -250,11 +256,11 @@ export function recordingsSection(context: SheetContext): Content[] {
 			? []
 			: [
 					...heading(model.waveform.title, `From ${model.waveform.captureName}. Primary values.`),
-					...drawings.waveform.map((svg): Content => ({ svg, width, margin: [0, 0, 0, 8] }))
+					...drawings.waveform.map((svg): Content => ({ svg, width }))
 				]),
 		...model.trends.flatMap((trend, i) => [
 			...heading(trend.title, `Percent ${trend.ofWhat}.`),
-			{ svg: drawings.trends[i] ?? '', width, margin: [0, 0, 0, 8] } as Content
+			{ svg: drawings.trends[i] ?? '', width } as Content
 		])
 	];
 }

@@ -22,7 +22,7 @@ function ratioWords({ model }: SheetContext): string {
 }
 
 function working(title: string, lines: readonly string[], absent: string): Content[] {
-	return [...heading(title), lines.length === 0 ? soft(absent) : bullets(lines)];
+	return [...heading(title), lines.length === 0 ? soft(absent) : bullets(lines, lines.length > 5 ? 7.5 : 9)];
 }
 
 export function scopeSection(context: SheetContext): Content[] {
