@@ -34,6 +34,9 @@ export async function openPdf(src: string): Promise<OpenPdf> {
 				container: text,
 				viewport: page.getViewport({ scale })
 			}).render();
+			// The library measures text on a canvas that it leaves in the page; nobody is meant to find it.
+			for (const left of document.querySelectorAll('.hiddenCanvasElement'))
+				left.setAttribute('aria-hidden', 'true');
 		},
 		close: () => void task.destroy()
 	};
