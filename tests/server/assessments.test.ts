@@ -67,6 +67,28 @@ describe('an assessment', () => {
 		expect(assessment?.sentence).toMatch(/advisory/);
 	});
 
+	it('keeps its identity when it is made again with the same outcome, so that drafts stay up to date', async () => {
+		const before = (await page()).assessment?.id;
+		await services().assessments.refresh(world.engineer, world.surveyId);
+		expect((await page()).assessment?.id).toBe(before);
+		expect(await world.db('assessments').where({ survey_id: world.surveyId })).toHaveLength(1);
+	});
+
+	it('is made again by itself when the point changes', async () => {
+		const { surveys, register } = services();
+		const survey = (await world.db('surveys').where({ id: world.surveyId }).first())!;
+		const { facts } = await surveys.point(world.engineer, world.surveyId);
+		const before = (await page()).assessment?.headline.tdd[0]?.value_pct ?? NaN;
+		await register.updatePoint(world.engineer, survey.client_id, survey.site_id, world.pointId, {
+			...facts,
+			demand: { method: 'entered', demandCurrent_A: 400, source: 'meter' }
+		});
+		expect((await page()).working).not.toBeNull();
+		await workOff(world.container);
+		expect((await page()).assessment?.headline.tdd[0]?.value_pct).toBeCloseTo(2 * before, 9);
+		expect((await page()).working).toBeNull();
+	});
+
 	it('stands no longer when its capture is removed', async () => {
 		const capture = await world.db('captures').where({ survey_id: world.surveyId }).first('id');
 		await services().captures.remove(world.engineer, world.surveyId, capture!.id);

@@ -110,6 +110,11 @@ export function assessmentsRepository(db: Db, scope: Scope) {
 		currentIdOf: async (surveyId: string): Promise<string | null> =>
 			(await own().andWhere({ survey_id: surveyId, is_current: 1 }).first('id'))?.id ?? null,
 
+		/** The current assessment was made again with the same outcome: it stands as of now. */
+		async confirmCurrent(id: string, at: string): Promise<void> {
+			await own().andWhere({ id }).update({ created_at: at });
+		},
+
 		/** Nothing is current any more: the captures that the verdict rested on are gone. */
 		async retireCurrent(surveyId: string): Promise<void> {
 			await own().andWhere({ survey_id: surveyId, is_current: 1 }).update({ is_current: 0 });

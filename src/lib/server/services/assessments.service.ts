@@ -84,13 +84,11 @@ export function createAssessmentsService({ db, clock, jobs }: ServiceDeps) {
 					.where({ practice_id: scope.practiceId, id: survey.point_id })
 					.first();
 				if (point?.limit_set_id !== limitSet.id)
-					await trx('points')
-						.where({ practice_id: scope.practiceId, id: survey.point_id })
-						.update({
-							limit_set_id: limitSet.id,
-							limit_set_reason: 'Chosen at the assessment.',
-							updated_at: at
-						});
+					await trx('points').where({ practice_id: scope.practiceId, id: survey.point_id }).update({
+						limit_set_id: limitSet.id,
+						limit_set_reason: 'Chosen at the assessment.',
+						updated_at: at
+					});
 				await trx('surveys')
 					.where({ practice_id: scope.practiceId, id: surveyId })
 					.update({ decision_rule: by.decisionRule, updated_at: at });
@@ -107,17 +105,6 @@ export function createAssessmentsService({ db, clock, jobs }: ServiceDeps) {
 				);
 			});
 			return refresh(actor, surveyId);
-		},
-
-		/** Queues a new assessment of every open survey at a point; call it in the transaction that changes the point. */
-		async queueForPoint(trx: Db, practiceId: string, pointId: string): Promise<void> {
-			const surveys = await trx('surveys').where({
-				practice_id: practiceId,
-				point_id: pointId,
-				status: 'open'
-			});
-			for (const survey of surveys)
-				await jobs.enqueue(trx, assessSurvey, { surveyId: survey.id }, { practiceId });
 		}
 	};
 }

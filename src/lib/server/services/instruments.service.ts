@@ -13,9 +13,10 @@ import {
 import { instrumentsRepository } from '../repositories/instruments.repository';
 import { scopeOf } from '../repositories/scope';
 import type { ServiceDeps } from '../service-deps';
+import { queueReassessment } from './assessments/queue-reassessment';
 
 /** Instruments of the practice and the calibrations that make their readings count. */
-export function createInstrumentsService({ db, clock }: ServiceDeps) {
+export function createInstrumentsService({ db, clock, jobs }: ServiceDeps) {
 	const today = () => clock().toISOString().slice(0, 10);
 
 	return {
@@ -56,6 +57,7 @@ export function createInstrumentsService({ db, clock }: ServiceDeps) {
 				const instruments = instrumentsRepository(trx, scopeOf(actor));
 				const before = requireFound(await instruments.byId(instrumentId), 'instrument');
 				await instruments.update(instrumentId, facts);
+				await queueReassessment(trx, jobs, actor.practiceId, { instrumentId });
 				await appendAudit(
 					trx,
 					actor,

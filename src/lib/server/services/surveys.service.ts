@@ -14,6 +14,7 @@ import { pointsRepository } from '../repositories/points.repository';
 import { scopeOf } from '../repositories/scope';
 import { surveysRepository } from '../repositories/surveys.repository';
 import type { ServiceDeps } from '../service-deps';
+import { queueReassessment } from './assessments/queue-reassessment';
 
 async function requireInstrument(trx: Db, actor: Actor, instrumentId: string): Promise<void> {
 	if (instrumentId === '') return;
@@ -21,7 +22,7 @@ async function requireInstrument(trx: Db, actor: Actor, instrumentId: string): P
 }
 
 /** Surveys: opened at a point, worked along their stages, closed and opened again. */
-export function createSurveysService({ db, clock }: ServiceDeps) {
+export function createSurveysService({ db, clock, jobs }: ServiceDeps) {
 	async function setStatus(actor: Actor, surveyId: string, status: 'open' | 'closed'): Promise<void> {
 		requirePermission(actor, 'register.write');
 		const now = clock();
@@ -110,6 +111,7 @@ export function createSurveysService({ db, clock }: ServiceDeps) {
 				const before = requireFound(await surveys.byId(surveyId), 'survey');
 				await requireInstrument(trx, actor, facts.instrumentId);
 				await surveys.update(surveyId, facts, now.toISOString());
+				await queueReassessment(trx, jobs, actor.practiceId, { surveyId });
 				await appendAudit(
 					trx,
 					actor,

@@ -89,8 +89,7 @@ export function coverSection(context: SheetContext): Content[] {
 						fontSize: 9,
 						margin: [0, 0, 0, 2] as [number, number, number, number]
 					},
-					{ svg: spectrum, width: contentWidth(model.practice.paper) } as Content,
-					soft(chart.note, { margin: [0, 2, 0, 10] })
+					{ svg: spectrum, width: contentWidth(model.practice.paper), margin: [0, 0, 0, 14] } as Content
 				]
 			: []),
 		revisionTable(context),

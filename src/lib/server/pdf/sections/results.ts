@@ -11,7 +11,9 @@ import { bullets, figures, heading, paragraph, rich, ruledTable, soft, verdictTa
 function worstOf(
 	values: readonly { phase: Phase; value_pct: number }[]
 ): { phase: Phase; value_pct: number } | null {
-	return values.reduce<{ phase: Phase; value_pct: number } | null>(
+	// The neutral is reported with the findings and judged nowhere.
+	const lines = values.filter(({ phase }) => phase !== 'N');
+	return lines.reduce<{ phase: Phase; value_pct: number } | null>(
 		(worst, value) => (worst === null || value.value_pct > worst.value_pct ? value : worst),
 		null
 	);
@@ -227,8 +229,7 @@ export function tableSection(context: SheetContext, table: ReportTable): Content
 		...(spectrum && drawing
 			? [
 					...heading(spectrum.title),
-					{ svg: drawing, width: contentWidth(model.practice.paper) } as Content,
-					soft(spectrum.note)
+					{ svg: drawing, width: contentWidth(model.practice.paper), margin: [0, 0, 0, 4] } as Content
 				]
 			: []),
 		...table.rules.flatMap((rule) =>

@@ -7,7 +7,12 @@ import type { PointFacts } from '../../../register/point-facts';
 import { seriesForSurvey } from '../../analysis/survey-series';
 import { appendAudit } from '../../audit/audit-log';
 import { withTransaction, type Db } from '../../db/database';
-import { assessmentsRepository, type AssessmentInputRecord } from '../../repositories/assessments.repository';
+import { canonicalJson } from '../../../report/measured-data';
+import {
+	assessmentsRepository,
+	type AssessmentInputRecord,
+	type StoredAssessment
+} from '../../repositories/assessments.repository';
 import { instrumentsRepository } from '../../repositories/instruments.repository';
 import { limitSetsRepository } from '../../repositories/limit-sets.repository';
 import { toPointFacts } from '../../repositories/point-mapping';
@@ -106,6 +111,44 @@ export async function prepareAssessment(
 	};
 }
 
+/** Same input, same outcome: a second assessment would only put drafts out of date. */
+function isSame(prepared: PreparedAssessment, current: StoredAssessment | null): boolean {
+	if (current === null || current.row.engine_version !== prepared.engineVersion) return false;
+	const text = (input: AssessmentInputRecord, assessment: Assessment) => canonicalJson({ input, assessment });
+	return text(prepared.input, prepared.assessment) === text(current.input, current.assessment);
+}
+
+async function makeCurrent(
+	trx: Db,
+	scope: Scope,
+	surveyId: string,
+	prepared: PreparedAssessment,
+	assessor: Assessor,
+	now: Date
+): Promise<string> {
+	const assessments = assessmentsRepository(trx, scope);
+	const at = now.toISOString();
+	const current = await assessments.currentOf(surveyId);
+	if (current !== null && isSame(prepared, current)) {
+		await assessments.confirmCurrent(current.row.id, at);
+		return current.row.id;
+	}
+	const id = await assessments.addCurrent({ ...prepared, surveyId, createdBy: assessor.userId, at });
+	const actor = { name: assessor.name, practiceId: scope.practiceId };
+	await appendAudit(
+		trx,
+		assessor.userId === null ? { ...actor, userId: null } : { ...actor, userId: assessor.userId },
+		{
+			action: 'assessment.made',
+			subjectKind: 'assessment',
+			subjectId: id,
+			detail: { surveyId, verdict: prepared.assessment.verdict, limitSet: prepared.input.limitSet.key }
+		},
+		now
+	);
+	return id;
+}
+
 /**
  * Judges a survey anew and makes the result current; without anything to judge, no verdict stands any more.
  * `finish` runs inside the saving transaction.
@@ -120,32 +163,8 @@ export async function assessAndSave(
 ): Promise<string | null> {
 	const prepared = await prepareAssessment(db, scope, surveyId);
 	return withTransaction(db, async (trx) => {
-		const assessments = assessmentsRepository(trx, scope);
-		let id: string | null = null;
-		if (prepared === null) await assessments.retireCurrent(surveyId);
-		else {
-			id = await assessments.addCurrent({
-				...prepared,
-				surveyId,
-				createdBy: assessor.userId,
-				at: now.toISOString()
-			});
-			const actor =
-				assessor.userId === null
-					? { userId: null, name: assessor.name, practiceId: scope.practiceId }
-					: { userId: assessor.userId, name: assessor.name, practiceId: scope.practiceId };
-			await appendAudit(
-				trx,
-				actor,
-				{
-					action: 'assessment.made',
-					subjectKind: 'assessment',
-					subjectId: id,
-					detail: { surveyId, verdict: prepared.assessment.verdict, limitSet: prepared.input.limitSet.key }
-				},
-				now
-			);
-		}
+		if (prepared === null) await assessmentsRepository(trx, scope).retireCurrent(surveyId);
+		const id = prepared && (await makeCurrent(trx, scope, surveyId, prepared, assessor, now));
 		await finish(trx);
 		return id;
 	});

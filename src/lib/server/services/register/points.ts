@@ -11,6 +11,7 @@ import { limitSetsRepository } from '../../repositories/limit-sets.repository';
 import { pointsRepository } from '../../repositories/points.repository';
 import { scopeOf } from '../../repositories/scope';
 import type { ServiceDeps } from '../../service-deps';
+import { queueReassessment } from '../assessments/queue-reassessment';
 
 /** A limit set of another practice is no limit set. */
 async function requireLimitSet(trx: Db, actor: Actor, limitSetId: number | null): Promise<void> {
@@ -18,7 +19,7 @@ async function requireLimitSet(trx: Db, actor: Actor, limitSetId: number | null)
 	requireFound(await limitSetsRepository(trx, actor.practiceId).byId(limitSetId), 'limit set');
 }
 
-export function pointUseCases({ db, clock }: ServiceDeps) {
+export function pointUseCases({ db, clock, jobs }: ServiceDeps) {
 	return {
 		async pointPage(actor: Actor, clientId: string, siteId: string, pointId: string) {
 			requirePermission(actor, 'register.read');
@@ -77,6 +78,7 @@ export function pointUseCases({ db, clock }: ServiceDeps) {
 				const before = requireFound(page, 'point').facts;
 				await requireLimitSet(trx, actor, facts.limitSetId);
 				await pointsRepository(trx, scope).update(pointId, facts, now.toISOString());
+				await queueReassessment(trx, jobs, actor.practiceId, { pointId });
 				await appendAudit(
 					trx,
 					actor,

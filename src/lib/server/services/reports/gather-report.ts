@@ -6,7 +6,8 @@ import type {
 	ReportInstrument,
 	ReportModel
 } from '../../../report/report-model';
-import { parseSummary, type AnalysisParameters } from '../../analysis/analysis-summary';
+import { parseSummary, type AnalysisParameters, type WaveformSummary } from '../../analysis/analysis-summary';
+import { parseSettings } from '../../analysis/capture-settings';
 import { decodeSeries } from '../../analysis/series-codec';
 import { createHash } from 'node:crypto';
 import type { Db } from '../../db/database';
@@ -114,6 +115,29 @@ async function capturesOfAnalyses(db: Db, scope: Scope, input: AssessmentInputRe
 
 type CaptureOfAnalysis = Awaited<ReturnType<typeof capturesOfAnalyses>>[number];
 
+function waveformChannels(summary: WaveformSummary): ReportCapture['channels'] {
+	return summary.channels.map(({ name, quantity, phase, toPrimary }) => ({
+		channel: name,
+		quantity,
+		phase,
+		toPrimary
+	}));
+}
+
+/** Columns of a log by quantity and phase: it has many of each, one for every order. */
+function trendChannels(capture: CaptureRow): ReportCapture['channels'] {
+	const settings = capture.mappings_json === null ? null : parseSettings(capture.mappings_json);
+	if (settings?.kind !== 'trend') return [];
+	const found = new Map<string, { count: number; channel: ReportCapture['channels'][number] }>();
+	for (const { quantity, phase, toPrimary } of settings.columns) {
+		const key = `${quantity}/${phase}/${toPrimary}`;
+		const count = (found.get(key)?.count ?? 0) + 1;
+		const channel = count === 1 ? '1 column' : `${count} columns`;
+		found.set(key, { count, channel: { channel, quantity, phase, toPrimary } });
+	}
+	return [...found.values()].map(({ channel }) => channel);
+}
+
 function reportCapture({ analysis, capture, files }: CaptureOfAnalysis): ReportCapture {
 	const summary = parseSummary(analysis.summary_json);
 	return {
@@ -130,15 +154,7 @@ function reportCapture({ analysis, capture, files }: CaptureOfAnalysis): ReportC
 			sha256: file.sha256,
 			size_bytes: Number(file.size_bytes)
 		})),
-		channels:
-			summary.kind === 'waveform'
-				? summary.channels.map((c) => ({
-						channel: c.name,
-						quantity: c.quantity,
-						phase: c.phase,
-						toPrimary: c.toPrimary
-					}))
-				: []
+		channels: summary.kind === 'waveform' ? waveformChannels(summary) : trendChannels(capture)
 	};
 }
 
