@@ -29,9 +29,7 @@ export async function up(knex: Knex): Promise<void> {
 		t.text('source_sha256').notNullable();
 		t.text('created_at').notNullable();
 	});
-	await knex.raw(
-		"create unique index limit_sets_key_unique on limit_sets (key, coalesce(practice_id, ''))"
-	);
+	await knex.raw("create unique index limit_sets_key_unique on limit_sets (key, coalesce(practice_id, ''))");
 
 	await knex.schema.createTable('limit_tables', (t) => {
 		t.increments('id');

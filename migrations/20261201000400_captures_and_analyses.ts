@@ -18,9 +18,7 @@ export async function up(knex: Knex): Promise<void> {
 		t.text('kind').notNullable().checkIn(['waveform', 'trend']);
 		t.text('format').notNullable();
 		t.text('variant').notNullable();
-		t.text('status')
-			.notNullable()
-			.checkIn(['recognised', 'queued', 'analysing', 'analysed', 'failed']);
+		t.text('status').notNullable().checkIn(['recognised', 'queued', 'analysing', 'analysed', 'failed']);
 		// CaptureFacts of recording/capture-facts.ts, made once at intake.
 		t.text('facts_json').notNullable();
 		// Mappings as confirmed by the engineer; null until confirmed.
@@ -127,7 +125,15 @@ export async function up(knex: Knex): Promise<void> {
 }
 
 export async function down(knex: Knex): Promise<void> {
-	for (const table of ['jobs', 'analysis_series', 'analyses', 'capture_files', 'uploads', 'captures', 'stored_files']) {
+	for (const table of [
+		'jobs',
+		'analysis_series',
+		'analyses',
+		'capture_files',
+		'uploads',
+		'captures',
+		'stored_files'
+	]) {
 		await knex.schema.dropTable(table);
 	}
 }

@@ -205,7 +205,7 @@ const product = spawn(process.execPath, ['--import', 'tsx', 'scripts/demo.ts'], 
 	env: { ...process.env, DATA_DIR: dataDir, PORT: String(PORT), LOG_LEVEL: 'error' },
 	stdio: ['ignore', 'ignore', 'inherit']
 });
-let faults = 1;
+let faults: number;
 try {
 	await waitUntilUp();
 	const browser = await chromium.launch({
@@ -234,4 +234,4 @@ try {
 	await new Promise((resolve) => product.once('exit', resolve));
 	rmSync(dataDir, { recursive: true, force: true });
 }
-process.exit(faults ? 1 : 0);
+process.exit(faults === 0 ? 0 : 1);

@@ -1,6 +1,6 @@
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import type { Actor } from '$lib/access/access';
-import { AppError } from '$lib/server/app-error';
+import type { AppError } from '$lib/server/app-error';
 import { newId } from '$lib/server/db/ids';
 import { issuedReport, openWorld, personOf, practiceWithOwner, type World } from '../support/practice-world';
 

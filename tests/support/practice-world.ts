@@ -64,7 +64,13 @@ export async function personOf(
 }
 
 /** One client with one site and one issued report, written straight into the tables. */
-export async function issuedReport(db: Db, owner: Actor, clientName: string) {
+export async function issuedReport(
+	db: Db,
+	owner: Actor,
+	clientName: string,
+	/** The PDF in the store, where a test reads it; else a hash without content. */
+	pdf?: { sha256: string; size_bytes: number }
+) {
 	const ids = {
 		clientId: newId(),
 		siteId: newId(),
@@ -148,8 +154,13 @@ export async function issuedReport(db: Db, owner: Actor, clientName: string) {
 		created_by: owner.userId,
 		...stamp
 	});
-	const sha256 = ids.revisionId.replaceAll('-', '').padEnd(64, '0');
-	await db('stored_files').insert({ sha256, size_bytes: 120_000, media_type: 'application/pdf', ...stamp });
+	const sha256 = pdf?.sha256 ?? ids.revisionId.replaceAll('-', '').padEnd(64, '0');
+	await db('stored_files').insert({
+		sha256,
+		size_bytes: pdf?.size_bytes ?? 120_000,
+		media_type: 'application/pdf',
+		...stamp
+	});
 	await db('report_revisions').insert({
 		id: ids.revisionId,
 		...own,
@@ -160,7 +171,8 @@ export async function issuedReport(db: Db, owner: Actor, clientName: string) {
 		findings_json: '[]',
 		prepared_by: owner.userId,
 		issued_at: NOW,
-		model_json: '{}',
+		// No frozen model: pages then show the report without its verdict's picture.
+		model_json: 'null',
 		pdf_sha256: sha256,
 		pdf_pages: 12,
 		updated_at: NOW,

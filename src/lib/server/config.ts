@@ -9,7 +9,10 @@ const environment = z
 		PORT: z.coerce.number().int().min(1).max(65535).default(3000),
 		ORIGIN: z.url().optional(),
 		AUTH_SECRET: z.string().min(32, 'must have at least 32 characters').optional(),
-		SMTP_URL: z.string().regex(/^smtps?:\/\//, 'must start with smtp:// or smtps://').optional(),
+		SMTP_URL: z
+			.string()
+			.regex(/^smtps?:\/\//, 'must start with smtp:// or smtps://')
+			.optional(),
 		MAIL_FROM: z.string().min(3).default('Sinewright <no-reply@localhost>'),
 		LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'trace', 'silent']).default('info'),
 		UPLOAD_LIMIT_MB: z.coerce.number().positive().default(2048),

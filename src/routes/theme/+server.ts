@@ -8,7 +8,8 @@ const themeChoice = z.enum(['auto', 'light', 'dark']).catch('auto');
 
 /** Sets the colours for a browser without script; with script the switch writes the same cookie itself. */
 export const POST: RequestHandler = async ({ request, cookies }) => {
-	const form = await request.formData();
+	// Without a form, or with something else in its place: back to the system's colours.
+	const form = await request.formData().catch(() => new FormData());
 	// Read by script too, so not httpOnly: it is a wish for colours and nothing else.
 	cookies.set('theme', themeChoice.parse(form.get('theme')), {
 		path: '/',

@@ -10,7 +10,14 @@ export function levelFigure(value: number | null): string {
 	if (value === null) return NO_DATA;
 	const magnitude = Math.abs(value);
 	const decimals = magnitude >= 1000 ? 1 : magnitude >= 10 ? 2 : 3;
-	return formatNumber(value, { decimals });
+	// A trace below zero must not read as "-0.000".
+	const rounded = Number(value.toFixed(decimals));
+	return formatNumber(rounded === 0 ? 0 : rounded, { decimals });
+}
+
+/** A limit as tables print it. */
+export function limitFigure(value: number | null): string {
+	return value === null ? NO_DATA : formatNumber(value, { decimals: 2 });
 }
 
 export function angleFigure(value_deg: number | null): string {

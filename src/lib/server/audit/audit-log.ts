@@ -12,7 +12,8 @@ export interface AuditEntry {
 /** Appends to the history inside the caller's transaction: the deed and its record stand or fall together. */
 export async function appendAudit(
 	trx: Db,
-	actor: Pick<Actor, 'userId' | 'name' | 'practiceId'> | { userId: null; name: string; practiceId: string | null },
+	actor:
+		Pick<Actor, 'userId' | 'name' | 'practiceId'> | { userId: null; name: string; practiceId: string | null },
 	entry: AuditEntry,
 	now: Date,
 	requestId: string | null = null

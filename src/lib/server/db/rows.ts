@@ -603,4 +603,3 @@ declare module 'knex/types/tables' {
 		audit_events: AuditEventRow;
 	}
 }
-

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import type { z } from 'zod';
 import type { Db } from '../db/database';
 
 /** Name, payload schema and version of one kind of long work; the handler is elsewhere and loaded late. */
@@ -8,7 +8,11 @@ export interface JobDefinition<Payload> {
 	payload: z.ZodType<Payload>;
 }
 
-export function defineJob<Payload>(kind: string, version: number, payload: z.ZodType<Payload>): JobDefinition<Payload> {
+export function defineJob<Payload>(
+	kind: string,
+	version: number,
+	payload: z.ZodType<Payload>
+): JobDefinition<Payload> {
 	return { kind, version, payload };
 }
 

@@ -57,26 +57,35 @@ export function createJobQueue(db: Db, clock: () => Date) {
 				.first();
 			if (!job) return null;
 			if (job.attempts >= MAX_ATTEMPTS) {
-				await trx('jobs').where({ id: job.id }).update({
-					status: 'failed',
-					finished_at: now,
-					problem: `The work stopped unfinished ${MAX_ATTEMPTS} times. Start it again; if it stops again, quote job ${job.id}.`
-				});
+				await trx('jobs')
+					.where({ id: job.id })
+					.update({
+						status: 'failed',
+						finished_at: now,
+						problem: `The work stopped unfinished ${MAX_ATTEMPTS} times. Start it again; if it stops again, quote job ${job.id}.`
+					});
 				return null;
 			}
-			await trx('jobs').where({ id: job.id }).update({
-				status: 'running',
-				worker_id: workerId,
-				lease_until: leaseUntil(),
-				attempts: job.attempts + 1,
-				started_at: now
-			});
+			await trx('jobs')
+				.where({ id: job.id })
+				.update({
+					status: 'running',
+					worker_id: workerId,
+					lease_until: leaseUntil(),
+					attempts: job.attempts + 1,
+					started_at: now
+				});
 			return { ...job, status: 'running' as const };
 		});
 	}
 
 	/** Records progress and renews the lease; answers whether somebody asked to cancel. */
-	async function report(id: string, done: number, total: number, text: string): Promise<{ cancelRequested: boolean }> {
+	async function report(
+		id: string,
+		done: number,
+		total: number,
+		text: string
+	): Promise<{ cancelRequested: boolean }> {
 		await db('jobs').where({ id }).update({
 			progress_done: done,
 			progress_total: total,
@@ -106,19 +115,28 @@ export function createJobQueue(db: Db, clock: () => Date) {
 	async function release(id: string): Promise<void> {
 		await db('jobs')
 			.where({ id })
-			.update({ status: 'queued', lease_until: null, worker_id: null, attempts: db.raw('max(attempts - 1, 0)') });
+			.update({
+				status: 'queued',
+				lease_until: null,
+				worker_id: null,
+				attempts: db.raw('max(attempts - 1, 0)')
+			});
 	}
 
 	/** At worker start: jobs held by earlier workers of this installation wait again. One worker runs at a time. */
 	async function releaseAllRunning(): Promise<number> {
-		return db('jobs').where({ status: 'running' }).update({ status: 'queued', lease_until: null, worker_id: null });
+		return db('jobs')
+			.where({ status: 'running' })
+			.update({ status: 'queued', lease_until: null, worker_id: null });
 	}
 
 	async function requestCancel(practiceId: string, id: string): Promise<void> {
 		await db('jobs')
 			.where({ id, practice_id: practiceId, status: 'queued' })
 			.update({ status: 'cancelled', finished_at: clock().toISOString() });
-		await db('jobs').where({ id, practice_id: practiceId, status: 'running' }).update({ cancel_requested: 1 });
+		await db('jobs')
+			.where({ id, practice_id: practiceId, status: 'running' })
+			.update({ cancel_requested: 1 });
 	}
 
 	async function state(practiceId: string, id: string): Promise<JobState | null> {

@@ -40,17 +40,15 @@ export async function listClients(
 		db('surveys as v').whereRaw('v.client_id = c.id').count('*').as('surveys'),
 		db('surveys as v').whereRaw('v.client_id = c.id').max('v.updated_at').as('latest')
 	];
-	const rows = await matching()
-		.select<ClientListRow[]>(
-			{
-				id: 'c.id',
-				name: 'c.name',
-				contactName: 'c.contact_name',
-				contactEmail: 'c.contact_email',
-				archivedAt: 'c.archived_at'
-			},
-			...counts
-		)
+	const rows: ClientListRow[] = await matching()
+		.select({
+			id: 'c.id',
+			name: 'c.name',
+			contactName: 'c.contact_name',
+			contactEmail: 'c.contact_email',
+			archivedAt: 'c.archived_at'
+		})
+		.select<ClientListRow[]>(...counts)
 		.orderByRaw(
 			query.sort === 'name'
 				? `c.name collate nocase ${query.descending ? 'desc' : 'asc'}`

@@ -135,18 +135,18 @@ export async function loadClientPage(db: Db, scope: Scope, clientId: string): Pr
 	if (scope.clientId !== undefined && scope.clientId !== clientId) return null;
 	const client = await db('clients').where({ practice_id: scope.practiceId, id: clientId }).first();
 	if (!client) return null;
-	const sites = await db('sites as s')
+	const sites: ClientSiteLine[] = await db('sites as s')
 		.where({ 's.practice_id': scope.practiceId, 's.client_id': clientId })
 		.orderByRaw('s.archived_at is not null, s.name collate nocase')
+		.select({
+			id: 's.id',
+			name: 's.name',
+			address: 's.address',
+			utility: 's.utility',
+			timeZone: 's.time_zone',
+			archivedAt: 's.archived_at'
+		})
 		.select<ClientSiteLine[]>(
-			{
-				id: 's.id',
-				name: 's.name',
-				address: 's.address',
-				utility: 's.utility',
-				timeZone: 's.time_zone',
-				archivedAt: 's.archived_at'
-			},
 			db('points as p').whereRaw('p.site_id = s.id').whereNull('p.archived_at').count('*').as('points')
 		);
 	return {

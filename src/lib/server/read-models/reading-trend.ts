@@ -40,6 +40,9 @@ export interface PercentileTable {
 	}[];
 }
 
+/** Intervals from which on a line shows a course. */
+const FEWEST_FOR_A_COURSE = 12;
+
 const RANK: Record<IntervalKind, number> = { window: 0, '3s': 1, '10min': 2 };
 const printable = (value: number): number | null =>
 	Number.isFinite(value) ? Number(value.toPrecision(7)) : null;
@@ -95,7 +98,10 @@ export function intervalTrend(
 	const usable = kinds
 		.filter((kind) => rows.some((row) => row.interval === kind && row.interval_count >= 2))
 		.sort((a, b) => RANK[b] - RANK[a]);
-	const interval = usable.find((kind) => kind === asked.interval) ?? usable[0];
+	const countOf = (kind: IntervalKind) => rows.find((row) => row.interval === kind)?.interval_count ?? 0;
+	// The longest kind says most, but a handful of points is no course over time.
+	const usual = usable.find((kind) => countOf(kind) >= FEWEST_FOR_A_COURSE) ?? usable.at(-1);
+	const interval = usable.find((kind) => kind === asked.interval) ?? usual;
 	const chosen = rows.filter((row) => row.interval === interval);
 	const first = chosen[0];
 	if (interval === undefined || !first) return null;

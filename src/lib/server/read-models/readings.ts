@@ -100,6 +100,11 @@ const figure = (value: number | undefined): Figure =>
 
 const UNIT = { voltage: 'V', current: 'A' } as const;
 const PHASE_ORDER: readonly Phase[] = ['L1', 'L2', 'L3', 'L1L2', 'L2L3', 'L3L1', 'N'];
+/** Voltages before currents, each in the order of its conductors. */
+const byQuantityAndPhase = (
+	a: { quantity: Quantity; phase: Phase },
+	b: { quantity: Quantity; phase: Phase }
+) => (a.quantity === b.quantity ? byPhase(a, b) : a.quantity === 'voltage' ? -1 : 1);
 const byPhase = (a: { phase: Phase }, b: { phase: Phase }) =>
 	PHASE_ORDER.indexOf(a.phase) - PHASE_ORDER.indexOf(b.phase);
 
@@ -173,7 +178,9 @@ async function waveformReadings(
 	summary: WaveformSummary,
 	context: WaveformContext
 ): Promise<WaveformReadings> {
-	const rows = (await analysesRepository(db, scope).wholeSeriesOf(analysis.id, 'window')).sort(byPhase);
+	const rows = (await analysesRepository(db, scope).wholeSeriesOf(analysis.id, 'window')).sort(
+		byQuantityAndPhase
+	);
 	const first = rows[0];
 	if (!first) throw new Error(`analysis ${analysis.id} has no windows`);
 	const { asked } = context;

@@ -52,12 +52,12 @@ export function instrumentChoices(
 		.where('i.practice_id', scope.practiceId)
 		.whereNull('i.archived_at')
 		.orderByRaw('i.name collate nocase')
+		.select({
+			id: 'i.id',
+			name: 'i.name',
+			serialNumber: 'i.serial_number'
+		})
 		.select<SurveyChoices['instruments']>(
-			{
-				id: 'i.id',
-				name: 'i.name',
-				serialNumber: 'i.serial_number'
-			},
 			db('calibrations as k').whereRaw('k.instrument_id = i.id').max('k.due_on').as('dueOn')
 		);
 }

@@ -12,7 +12,11 @@ export interface StoredBlob {
  */
 export interface BlobStore {
 	/** Stores a stream whole or not at all. `limit_bytes` rejects with BlobTooLarge before the disk fills. */
-	putStream(content: Readable, limit_bytes: number, onProgress?: (bytes: number) => void): Promise<StoredBlob>;
+	putStream(
+		content: Readable,
+		limit_bytes: number,
+		onProgress?: (bytes: number) => void
+	): Promise<StoredBlob>;
 	put(content: Uint8Array): Promise<StoredBlob>;
 	/** The whole content. Throws when the blob is missing or its content no longer has its hash. */
 	read(sha256: string): Promise<Buffer>;

@@ -65,7 +65,11 @@ export const actions = {
 			);
 		} catch (cause) {
 			if (cause instanceof AppError && cause.code === 'conflict')
-				return fail(409, { form: 'acknowledge', values, errors: { typedName: [cause.message] } as Record<string, string[] | undefined> });
+				return fail(409, {
+					form: 'acknowledge',
+					values,
+					errors: { typedName: [cause.message] } as Record<string, string[] | undefined>
+				});
 			throw cause;
 		}
 		return { form: 'acknowledge', done: true };
