@@ -72,6 +72,19 @@ export async function reportDemo(
 	story.at(230, 16);
 	await portal.acknowledge(register.clientPeople.ostler, before, 'Walter Dunmore', 'demo');
 
+	const [rebuild] = await portal.actions(register.clientPeople.ostler, { status: 'open' });
+	story.at(26, 9);
+	if (rebuild) {
+		await portal.completeAction(
+			register.clientPeople.ostler,
+			rebuild.id,
+			'Both presses run on twelve-pulse drives since last week.',
+			'demo'
+		);
+		story.at(21, 9);
+		await actions.confirm(adeyemi, surveys.ostlerBefore, rebuild.id);
+	}
+
 	// Harrow Dock: exceeds, issued, waits for its acknowledgement; a question has been asked.
 	story.at(23, 10);
 	await actions.add(

@@ -180,6 +180,21 @@ describe('portal: actions', () => {
 		await expect(portal.completeAction(neighbour, id, '', 'r')).rejects.toMatchObject(notFound);
 	});
 
+	it('are confirmed by the consultant, or opened again', async () => {
+		const { portal, actions } = world.container.services;
+		const id = await addAction('client', true);
+		await portal.completeAction(sam, id, 'Done.', 'r');
+		await actions.confirm(owner, mine.surveyId, id);
+		expect(await world.db('actions').where({ id }).first()).toMatchObject({
+			status: 'confirmed',
+			confirmed_by: owner.userId
+		});
+		await actions.reopen(owner, mine.surveyId, id);
+		expect((await portal.actions(sam, { status: 'open' })).map((action) => action.id)).toEqual([id]);
+		await expect(actions.confirm(stranger, mine.surveyId, id)).rejects.toMatchObject(notFound);
+		await expect(actions.confirm(sam, mine.surveyId, id)).rejects.toMatchObject({ code: 'forbidden' });
+	});
+
 	it("the practice's own action is not the client's to complete", async () => {
 		const id = await addAction('practice', true);
 		await expect(world.container.services.portal.completeAction(sam, id, '', 'r')).rejects.toMatchObject({

@@ -66,6 +66,18 @@ function workingLine({ what, formula, figures, result }: WorkingStep): string {
 	return [`${what}: ${symbols}`, figures, result].filter((part) => part !== '').join(' = ');
 }
 
+/** Where a figure came from that was entered and not computed; nothing for one that is not known. */
+function originLine(fact: PointFacts['demand'] | PointFacts['shortCircuit']): string[] {
+	if (fact.method === 'unknown') return [];
+	const computed = fact.method !== 'entered' && fact.method !== 'current';
+	const what = computed ? 'Data from' : 'Given as a current by';
+	return fact.source === ''
+		? computed
+			? []
+			: ['Given as a current; the source is not recorded.']
+		: [`${what}: ${fact.source}`];
+}
+
 function pointOf({ pointFacts: facts, assessment, limitSetReason }: ReportSources): ReportPoint {
 	const demand = computeDemandCurrent(facts);
 	const shortCircuit = computeShortCircuit(facts);
@@ -82,8 +94,12 @@ function pointOf({ pointFacts: facts, assessment, limitSetReason }: ReportSource
 		demandCurrent_A: demand.current_A,
 		shortCircuitCurrent_A: shortCircuit.current_A,
 		shortCircuitRatio: assessment.headline.shortCircuitRatio,
-		demandWorking: [...demand.working.map(workingLine), ...demand.remarks],
-		shortCircuitWorking: [...shortCircuit.working.map(workingLine), ...shortCircuit.remarks],
+		demandWorking: [...originLine(facts.demand), ...demand.working.map(workingLine), ...demand.remarks],
+		shortCircuitWorking: [
+			...originLine(facts.shortCircuit),
+			...shortCircuit.working.map(workingLine),
+			...shortCircuit.remarks
+		],
 		shortCircuitOrigin: source === '' ? origin : `${origin} (${source})`,
 		ctRatio: ct && { primary_A: ct.primary, secondary_A: ct.secondary },
 		vtRatio: vt && { primary_V: vt.primary, secondary_V: vt.secondary },

@@ -19,7 +19,9 @@ function formatter(locale: string, decimals: number): Intl.NumberFormat {
 	if (known !== undefined) return known;
 	const made = new Intl.NumberFormat(locale, {
 		minimumFractionDigits: decimals,
-		maximumFractionDigits: decimals
+		maximumFractionDigits: decimals,
+		// A figure that rounds to nothing has no sign.
+		signDisplay: 'negative'
 	});
 	formatters.set(key, made);
 	return made;

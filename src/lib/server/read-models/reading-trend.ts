@@ -62,6 +62,11 @@ function levels_pct(row: AssessedColumns, order: number | 'total', context: Tren
 	return intervalLevels(decodeSeries(row), itemOf(order, context.highestOrder), base, true).levels_pct;
 }
 
+/** The same with flagged intervals left out: they are shown as flagged, and no figure is taken from them. */
+function validLevels_pct(row: AssessedColumns, order: number | 'total', context: TrendContext): Float64Array {
+	return levels_pct(row, order, context).map((level, i) => (row.flagged[i] === 1 ? NaN : level));
+}
+
 /** Greatest valid value of each stretch of `step` intervals: thinning must not lose a peak. */
 function thinned(values: Float64Array, step: number): (number | null)[] {
 	const out: (number | null)[] = [];
@@ -115,7 +120,7 @@ export function intervalTrend(
 			phase: row.phase,
 			label: context.label(row.phase),
 			times_ms: Array.from(decodeSeries(row).starts_ms).filter((_, i) => i % intervalsPerPoint === 0),
-			values: thinned(levels_pct(row, asked.order, context), intervalsPerPoint)
+			values: thinned(validLevels_pct(row, asked.order, context), intervalsPerPoint)
 		})),
 		flagged: flaggedStretches(first)
 	};

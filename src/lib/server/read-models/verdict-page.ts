@@ -45,7 +45,7 @@ export interface VerdictPage {
 				sentence: string;
 				evidenceText: string;
 				flaggedCount: number;
-				coverage: number;
+				coverage: number | null;
 				limitSetReason: string;
 				overLimit: string[];
 				totalLimits: { index: 'THD' | 'TDD'; quantity: 'voltage' | 'current'; limit_pct: number }[];
@@ -167,7 +167,8 @@ function assessmentView(
 		sentence: engineerSentence(whole, { phaseNames }),
 		evidenceText: evidenceText(whole),
 		flaggedCount: counts?.flaggedCount ?? 0,
-		coverage: counts?.coverage ?? 0,
+		// A governing rule that was answered in full has no share to show, also when other rules lack data.
+		coverage: whole.worst?.evidence === 'partial' ? (counts?.coverage ?? null) : null,
 		limitSetReason: input.limitSet.reason,
 		overLimit: overLimit(rows),
 		totalLimits: totalLimits(rows)

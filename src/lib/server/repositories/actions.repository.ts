@@ -62,6 +62,13 @@ export function actionsRepository(db: Db, scope: Scope) {
 					.update({ position: i + 1 });
 		},
 
+		async settle(
+			id: string,
+			to: { status: 'confirmed' | 'open'; by: string | null; at: string | null }
+		): Promise<void> {
+			await own().andWhere({ id }).update({ status: to.status, confirmed_by: to.by, confirmed_at: to.at });
+		},
+
 		async publish(surveyId: string, at: string): Promise<void> {
 			await own().andWhere({ survey_id: surveyId }).whereNull('published_at').update({ published_at: at });
 		}

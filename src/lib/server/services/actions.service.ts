@@ -17,6 +17,8 @@ export interface ActionItem extends ActionFacts {
 	status: ActionRow['status'];
 	/** Seen by the client: it may be added to, not taken back. */
 	published: boolean;
+	/** What the client wrote when reporting it done. */
+	doneNote: string;
 }
 
 function toItem(row: ActionRow): ActionItem {
@@ -29,7 +31,8 @@ function toItem(row: ActionRow): ActionItem {
 		responsible: row.responsible,
 		dueOn: row.due_on ?? '',
 		status: row.status,
-		published: row.published_at !== null
+		published: row.published_at !== null,
+		doneNote: row.done_note
 	};
 }
 
@@ -61,6 +64,20 @@ export function createActionsService({ db, clock }: ServiceDeps) {
 			throw new AppError(
 				'conflict',
 				'The client has this action already. Add a further one, and issue a new revision of the report.'
+			);
+		return row;
+	}
+
+	async function published(
+		actions: ReturnType<typeof actionsRepository>,
+		surveyId: string,
+		id: string
+	): Promise<ActionRow> {
+		const row = requireFound(await actions.byId(surveyId, id), 'action');
+		if (row.published_at === null)
+			throw new AppError(
+				'conflict',
+				'The client does not have this action yet: it goes out with the report.'
 			);
 		return row;
 	}
@@ -134,6 +151,28 @@ export function createActionsService({ db, clock }: ServiceDeps) {
 				if (to >= 0 && to < ids.length) ids.splice(to, 0, ...ids.splice(at, 1));
 				await actions.order(surveyId, ids);
 				return { id, detail: { by }, value: undefined };
+			});
+		},
+
+		/** Closes an action that the client has: reported done by them, or done by the practice itself. */
+		async confirm(actor: Actor, surveyId: string, id: string): Promise<void> {
+			requirePermission(actor, 'assessment.write');
+			await change(actor, surveyId, 'action.confirmed', async (trx) => {
+				const actions = actionsRepository(trx, scopeOf(actor));
+				const row = await published(actions, surveyId, id);
+				await actions.settle(id, { status: 'confirmed', by: actor.userId, at: clock().toISOString() });
+				return { id, detail: { title: row.title, was: row.status }, value: undefined };
+			});
+		},
+
+		/** Puts an action back to open: what was reported done was not, or not all of it. */
+		async reopen(actor: Actor, surveyId: string, id: string): Promise<void> {
+			requirePermission(actor, 'assessment.write');
+			await change(actor, surveyId, 'action.reopened', async (trx) => {
+				const actions = actionsRepository(trx, scopeOf(actor));
+				const row = await published(actions, surveyId, id);
+				await actions.settle(id, { status: 'open', by: null, at: null });
+				return { id, detail: { title: row.title, was: row.status }, value: undefined };
 			});
 		}
 	};

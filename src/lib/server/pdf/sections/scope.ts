@@ -72,11 +72,7 @@ export function scopeSection(context: SheetContext): Content[] {
 			width: contentWidth(model.practice.paper),
 			margin: [0, 0, 0, 6]
 		},
-		...working('How the demand current was obtained', point.demandWorking, 'No working is recorded.'),
-		...working(
-			'How the short-circuit current was obtained',
-			point.shortCircuitWorking,
-			'No working is recorded.'
-		)
+		...working('How the demand current was obtained', point.demandWorking, 'Not known.'),
+		...working('How the short-circuit current was obtained', point.shortCircuitWorking, 'Not known.')
 	];
 }

@@ -78,5 +78,17 @@ export const actions = {
 				values['by'] === 'up' ? 'up' : 'down'
 			)
 		);
+	}),
+	confirm: guard('assessment.write', async (event: RequestEvent, actor) => {
+		const values = await fields(event);
+		return attempt(event, values, () =>
+			container().services.actions.confirm(actor, event.params.survey, values['id'] ?? '')
+		);
+	}),
+	reopen: guard('assessment.write', async (event: RequestEvent, actor) => {
+		const values = await fields(event);
+		return attempt(event, values, () =>
+			container().services.actions.reopen(actor, event.params.survey, values['id'] ?? '')
+		);
 	})
 };

@@ -36,7 +36,11 @@ const SIDE = { primary: 'primary', secondary: 'secondary', unknown: 'side not st
 >;
 
 function describe(channel: Described): string {
-	const ratio = channel.ratio ? `, ratio ${channel.ratio.primary}:${channel.ratio.secondary}` : '';
+	// Six figures: some recorders write the ratio's terms with the noise of their own arithmetic.
+	const term = (value: number) => String(Number(value.toPrecision(6)));
+	const ratio = channel.ratio
+		? `, ratio ${term(channel.ratio.primary)}:${term(channel.ratio.secondary)}`
+		: '';
 	return `${channel.unitAsWritten || 'no unit'}, ${SIDE[channel.valuesAre] ?? ''}${ratio}`;
 }
 
