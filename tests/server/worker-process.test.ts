@@ -68,7 +68,7 @@ describe('the worker process', () => {
 		async (signal) => {
 			const owner = await practiceWithOwner(container.db, 'Tarn');
 			const { surveyId } = await surveyAtPoint(container.db, owner);
-			await upload(container, owner, surveyId, comtradeCapture(30));
+			await upload(container, owner, surveyId, comtradeCapture(15));
 			const first = startWorker();
 			const captures = () => container.db('captures').where({ survey_id: surveyId });
 			await until(captures, (rows) => rows.length === 1, 40_000);
