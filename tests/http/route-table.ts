@@ -81,7 +81,15 @@ export const ROUTE_TABLE: Readonly<Record<string, RouteRule>> = {
 	'/(app)/surveys/[survey]/captures/[capture]': consultants(['confirm', 'remove']),
 	'/(app)/surveys/[survey]/point': consultants(['save', 'close', 'reopen']),
 	'/(app)/surveys/[survey]/readings': consultants(),
-	'/(app)/surveys/[survey]/remedies': consultants(['add', 'suggest', 'update', 'remove', 'move', 'confirm', 'reopen']),
+	'/(app)/surveys/[survey]/remedies': consultants([
+		'add',
+		'suggest',
+		'update',
+		'remove',
+		'move',
+		'confirm',
+		'reopen'
+	]),
 	'/(app)/surveys/[survey]/report': {
 		for: CONSULTANTS,
 		actions: {
