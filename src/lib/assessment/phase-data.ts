@@ -57,9 +57,24 @@ export function seriesForInterval(data: PhaseData, interval_s: number): Interval
 	return kind === null ? null : (data.byKind.get(kind) ?? null);
 }
 
-/** The series that a snapshot reads: 3-second values when there are any, else single windows; null for neither. */
+function hasUnflagged(series: IntervalSeries): boolean {
+	return series.flagged.some((flag) => flag === 0);
+}
+
+/** Whether a dip, swell or interruption lies in every interval of the recording. */
+export function everythingFlagged(data: PhaseData): boolean {
+	const all = [...data.byKind.values()].filter((one) => one.flagged.length > 0);
+	return all.length > 0 && !all.some(hasUnflagged);
+}
+
+/**
+ * The series that a snapshot reads: 3-second values, or single windows where there are none without a flag (an event
+ * of a second flags three seconds, and the windows beside it still tell something); null for neither.
+ */
 export function snapshotSeries(data: PhaseData): IntervalSeries | null {
 	const threeSecond = data.byKind.get('3s');
-	if (threeSecond !== undefined && threeSecond.starts_ms.length > 0) return threeSecond;
-	return data.byKind.get('window') ?? null;
+	const windows = data.byKind.get('window') ?? null;
+	if (threeSecond !== undefined && hasUnflagged(threeSecond)) return threeSecond;
+	if (windows !== null && windows.starts_ms.length > 0) return windows;
+	return threeSecond ?? null;
 }

@@ -2,7 +2,7 @@ import type { LimitTable, StatisticRule } from '../limits/limit-set';
 import { formatPctPair } from '../units/format-beside';
 import { formatOrdinal } from '../units/format';
 import type { Verdict, VerdictRow } from './assessment';
-import type { PhaseData } from './phase-data';
+import { everythingFlagged, type PhaseData } from './phase-data';
 import type { RuleOutcome } from './rule-outcome';
 import { BASIS_WORDS, clauseWords, intervalWords, itemWords, ruleWords } from './wording';
 
@@ -65,6 +65,8 @@ export function notAssessedReason(
 		return `Not assessed: no ${intervalWords(rule.interval_s)} values were recorded, and the rule asks for the ${ruleWords(rule)}.`;
 	}
 	if (data.highestOrder === 0) return 'Not assessed: no harmonic values were recorded on this phase.';
+	if (everythingFlagged(data))
+		return 'Not assessed: a dip, swell or interruption lies in every interval, and flagged intervals are left out.';
 	const reach = `the recording reaches the ${formatOrdinal(data.highestOrder)} order only`;
 	if (item.kind === 'order' && item.order > data.highestOrder) {
 		return `Not assessed: the ${formatOrdinal(item.order)} order lies beyond what was sampled or logged; ${reach}.`;
