@@ -27,5 +27,9 @@ export function evidenceText(assessment: Assessment): string {
 			? `, ${formatShare(counts.coverage)} of the period covered`
 			: '';
 	const count = (n: number) => formatNumber(n, { decimals: 0 });
-	return `${word}, ${meaning}${share}. ${count(counts.intervalCount)} intervals behind the governing figure, ${count(counts.flaggedCount)} flagged.`;
+	const answered = assessment.evidence === 'partial' && assessment.worst?.evidence === 'weekly';
+	const what = answered
+		? 'the governing rule was answered in full, other rules of the standard were not'
+		: meaning;
+	return `${word}, ${what}${share}. ${count(counts.intervalCount)} intervals behind the governing figure, ${count(counts.flaggedCount)} flagged.`;
 }

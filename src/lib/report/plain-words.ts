@@ -15,11 +15,11 @@ const SPAN: Record<Assessment['evidence'], string> = {
 	snapshot: 'In the short capture taken'
 };
 
-function figureSentence(assessment: Assessment, row: VerdictRow, names: PhaseNames): string {
+function figureSentence(row: VerdictRow, names: PhaseNames): string {
 	const { value, reference } = formatPctPair(row.value_pct, row.limit_pct, { decimals: 1 });
 	return (
 		`For the ${itemLong(row.item)}, ${reference} ${OF_WHAT[row.basis]} is allowed. ` +
-		`${SPAN[assessment.evidence]}, phase ${formatPhase(row.phase, names)} reached ${value}.`
+		`${SPAN[row.evidence]}, phase ${formatPhase(row.phase, names)} reached ${value}.`
 	);
 }
 
@@ -47,7 +47,7 @@ export function plainExplanation(assessment: Assessment, names: PhaseNames): str
 		assessment.verdict === 'not-assessed' || assessment.missing.length > 0
 			? 'Some of what the limits cover could not be judged; the report says what is missing.'
 			: '';
-	return [figureSentence(assessment, worst, names), otherQuantity(assessment, worst), incomplete]
+	return [figureSentence(worst, names), otherQuantity(assessment, worst), incomplete]
 		.filter((part) => part !== '')
 		.join(' ');
 }
