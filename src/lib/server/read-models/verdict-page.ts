@@ -2,6 +2,7 @@ import type { Assessment, VerdictRow } from '../../assessment/assessment';
 import { engineerSentence } from '../../assessment/verdict-sentence';
 import { applicableSets } from '../../limits/applicable-sets';
 import type { LimitSet, LimitTable } from '../../limits/limit-set';
+import { countryOfTimeZone } from '../../register/time-zones';
 import { evidenceText, governingCounts } from '../../report/evidence-words';
 import { limitRowWords, type LimitRowWords } from '../../report/limit-row-words';
 import type { ReportSpectrum } from '../../report/report-model';
@@ -106,14 +107,21 @@ function totalLimits(rows: readonly VerdictRow[]): NonNullable<VerdictPage['asse
 	return [...found.values()];
 }
 
-async function limitSetChoices(db: Db, scope: Scope, facts: ReturnType<typeof toPointFacts>) {
+async function limitSetChoices(
+	db: Db,
+	scope: Scope,
+	facts: ReturnType<typeof toPointFacts>,
+	siteTimeZone: string
+) {
 	const sets = await limitSetsRepository(db, scope.practiceId).list();
-	return applicableSets({ ...facts, country: null }, sets).map(({ limitSet, suitability, reason }) => ({
-		id: limitSet.id,
-		title: `${limitSet.standard} (${limitSet.edition})`,
-		suitability,
-		reason
-	}));
+	return applicableSets({ ...facts, country: countryOfTimeZone(siteTimeZone) }, sets).map(
+		({ limitSet, suitability, reason }) => ({
+			id: limitSet.id,
+			title: `${limitSet.standard} (${limitSet.edition})`,
+			suitability,
+			reason
+		})
+	);
 }
 
 async function workingJob(db: Db, scope: Scope, surveyId: string): Promise<string | null> {
@@ -188,7 +196,10 @@ export async function loadVerdictPage(
 	if (!point) return null;
 	const facts = toPointFacts(point);
 	const stored = await assessmentsRepository(db, scope).currentOf(surveyId);
-	const choices = await limitSetChoices(db, scope, facts);
+	const site = await db('sites')
+		.where({ practice_id: scope.practiceId, id: point.site_id })
+		.first('time_zone');
+	const choices = await limitSetChoices(db, scope, facts, site?.time_zone ?? 'UTC');
 	const limitSet = stored && (await limitSetsRepository(db, scope.practiceId).byId(stored.row.limit_set_id));
 	return {
 		assessment: stored && assessmentView(stored, facts.phaseNames),

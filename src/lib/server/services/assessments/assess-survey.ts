@@ -3,6 +3,7 @@ import type { Assessment } from '../../../assessment/assessment';
 import { applicableSets } from '../../../limits/applicable-sets';
 import type { LimitSet } from '../../../limits/limit-set';
 import { toAssessedPoint } from '../../../register/assessed-point';
+import { countryOfTimeZone } from '../../../register/time-zones';
 import type { PointFacts } from '../../../register/point-facts';
 import { seriesForSurvey } from '../../analysis/survey-series';
 import { appendAudit } from '../../audit/audit-log';
@@ -39,14 +40,15 @@ export interface PreparedAssessment {
 export async function limitSetOfPoint(
 	db: Db,
 	scope: Scope,
-	facts: PointFacts
+	facts: PointFacts,
+	siteTimeZone: string
 ): Promise<{ limitSet: LimitSet; reason: string } | null> {
 	const sets = limitSetsRepository(db, scope.practiceId);
 	if (facts.limitSetId !== null) {
 		const chosen = await sets.byId(facts.limitSetId);
 		return chosen === null ? null : { limitSet: chosen, reason: facts.limitSetReason };
 	}
-	const best = applicableSets({ ...facts, country: null }, await sets.list())[0];
+	const best = applicableSets({ ...facts, country: countryOfTimeZone(siteTimeZone) }, await sets.list())[0];
 	return best === undefined ? null : { limitSet: best.limitSet, reason: best.reason };
 }
 
@@ -68,7 +70,7 @@ export async function prepareAssessment(
 	const site = survey && (await sitesRepository(db, scope).byId(survey.site_id));
 	if (!survey || !pointRow || !site) return null;
 	const facts = toPointFacts(pointRow);
-	const chosen = await limitSetOfPoint(db, scope, facts);
+	const chosen = await limitSetOfPoint(db, scope, facts, site.time_zone);
 	const gathered = await seriesForSurvey(db, scope, surveyId);
 	if (chosen === null || gathered.series.length === 0) return null;
 	const instrument =
