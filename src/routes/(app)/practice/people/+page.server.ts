@@ -8,10 +8,14 @@ import { INVITATION_VALID_DAYS } from '$lib/server/services/people.service';
 import { inviteForm, roleForm } from './schema';
 import type { PageServerLoadEvent } from './$types';
 
-export const load = guard('practice.manage', async (_event: PageServerLoadEvent, actor) => ({
-	...(await container().services.people.list(actor)),
-	form: await superValidate(zod4(inviteForm))
-}));
+export const load = guard('practice.manage', async (event: PageServerLoadEvent, actor) => {
+	const people = await container().services.people.list(actor);
+	// A client's page leads here with its organisation chosen already.
+	const clientId = event.url.searchParams.get('client') ?? '';
+	const known = people.clients.some((client) => client.id === clientId);
+	const start = known ? { role: 'client' as const, clientId } : undefined;
+	return { ...people, form: await superValidate(start, zod4(inviteForm), { errors: false }) };
+});
 
 /** A refusal that the person can mend is shown on the page; anything else goes on to the guard. */
 async function orProblem(work: Promise<void>) {
