@@ -168,3 +168,13 @@ describe('password reset', () => {
 		expect(await signIn().resetPassword(token, 'an entirely new one')).toBeNull();
 	});
 });
+
+describe('list of demo sign-ins', () => {
+	it('is told in the demo and in no other mode', async () => {
+		expect(await signIn().demoPeople()).toEqual([]);
+		world.container.config.mode = 'production';
+		expect(await signIn().demoPeople()).toEqual([]);
+		world.container.config.mode = 'demo';
+		expect(await signIn().demoPeople()).toMatchObject([{ email: owner.email, role: 'owner' }]);
+	});
+});

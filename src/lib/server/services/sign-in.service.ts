@@ -5,6 +5,7 @@ import { hashToken, newToken } from '../auth/tokens';
 import { withTransaction } from '../db/database';
 import type { UserRow } from '../db/rows';
 import { passwordChangedMail, passwordResetMail, signInLinkMail } from '../mail/templates/account-mails';
+import { listDemoPeople, type DemoPerson } from '../read-models/demo-people';
 import { placesOfUser } from '../read-models/session-actor';
 import { sessionsRepository } from '../repositories/sessions.repository';
 import { signInTokensRepository } from '../repositories/sign-in-tokens.repository';
@@ -148,7 +149,13 @@ export function createSignInService({ db, clock, config, mail, log }: ServiceDep
 		});
 	}
 
+	/** Whom one can be in the demo; in every other mode nobody is told who is here. */
+	async function demoPeople(): Promise<DemoPerson[]> {
+		return config.mode === 'demo' ? listDemoPeople(db) : [];
+	}
+
 	return {
+		demoPeople,
 		withPassword,
 		withLink,
 		requestLink: (email: string, next: string) => paced(sendLink(email, next)),

@@ -5,6 +5,7 @@ import { homePath } from '$lib/access/home-path';
 import { openSession } from '$lib/server/auth/auth';
 import { ownPath } from '$lib/server/auth/own-path';
 import { takeAllowance, tooManyAttempts } from '$lib/server/auth/rate-limit';
+import { container } from '$lib/server/container';
 import { signInForm } from '../schema';
 import type { Actions, PageServerLoad } from './$types';
 
@@ -14,7 +15,11 @@ const NO_MATCH = 'Address and password do not match. Check both, or ask for a si
 export const load: PageServerLoad = async ({ locals, url }) => {
 	const next = ownPath(url.searchParams.get('next'), '/');
 	if (locals.actor) redirect(303, next === '/' ? homePath(locals.actor) : next);
-	return { form: await superValidate(zod4(signInForm)), next };
+	return {
+		form: await superValidate(zod4(signInForm)),
+		next,
+		demoPeople: await container().services.signIn.demoPeople()
+	};
 };
 
 export const actions: Actions = {
