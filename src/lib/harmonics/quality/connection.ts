@@ -1,6 +1,6 @@
 import { formatPhase, LINE_PHASES, type PhaseNames } from '../../recording/phase';
 import { wrapDegrees, type Phasor } from '../phasor';
-import { sequenceComponents } from '../sequence-components';
+import { sequenceComponents } from '../sequence/sequence-components';
 import type { ChannelAnalysis, QualityRemark } from '../waveform-analysis';
 import { channelOf, phaseCurrents, phaseVoltages } from './fundamental-phasors';
 

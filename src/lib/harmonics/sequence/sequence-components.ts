@@ -1,4 +1,4 @@
-import { combinePhasors, type Phasor } from './phasor';
+import { combinePhasors, type Phasor } from '../phasor';
 
 export interface SequenceComponents {
 	zero: Phasor;
