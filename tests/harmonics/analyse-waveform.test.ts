@@ -111,7 +111,7 @@ describe('a four-wire point with known truth', () => {
 			seen.push(step.value.done);
 			step = steps.next();
 		}
-		expect(seen).toEqual([5]);
+		expect(seen).toEqual([9]);
 		expect(step.value).toEqual({ ok: true, value: analysis });
 	});
 
@@ -206,7 +206,7 @@ describe('time bases', () => {
 		expect(Math.abs(analysis.frequency_Hz[3]! / 50.03 - 1)).toBeLessThan(1e-5);
 	});
 
-	it('analyses the longest of several rates and remarks on the rest', () => {
+	it('analyses the stretches of several rates one by one, in order of time', () => {
 		const fast = synthesiseRecording(point({ duration_s: 0.5 }));
 		const slow = synthesiseRecording(point({ duration_s: 2, samplingRate_Hz: 6400 }));
 		const joined: Recording = {
@@ -222,11 +222,28 @@ describe('time bases', () => {
 			}))
 		};
 		const analysis = analyse(joined);
-		expect(analysis.windowCount).toBe(9);
-		expect(analysis.windowStarts_s[0]!).toBeGreaterThan(0.5);
-		expect(analysis.windowStarts_s[0]!).toBeLessThan(0.51);
-		expect(codes(analysis)).toContain('other-rates-left-out');
-		expect(Math.abs(analysis.channels[3]!.subgroups[5]! - 20)).toBeLessThan(2e-3);
+		expect(analysis.windowCount).toBe(2 + 9);
+		const starts = [...analysis.windowStarts_s];
+		expect(starts[1]! + analysis.windowLengths_s[1]!).toBeLessThan(0.5);
+		expect(starts[2]!).toBeGreaterThan(0.5);
+		expect(starts[2]!).toBeLessThan(0.51);
+		expect(codes(analysis)).toContain('several-stretches');
+		for (let w = 0; w < 11; w++)
+			expect(Math.abs(analysis.channels[3]!.subgroups[w * ORDER_STRIDE + 5]! - 20)).toBeLessThan(2e-3);
+	});
+
+	it('starts the train of windows anew at a ten-minute tick and completes the window that straddles it', () => {
+		const recording = synthesiseRecording(point());
+		// Sample 0 lies 0.93 s before ten past.
+		const analysis = analyse(recording, mapAll(recording), { ...OPTIONS, start_ms: 600_000 - 930 });
+		const first = [...analysis.resync].indexOf(1);
+		expect([...analysis.resync].filter((r) => r === 1)).toHaveLength(1);
+		expect(Math.abs(analysis.windowStarts_s[first]! - 0.93)).toBeLessThan(1e-9);
+		const end_s = analysis.windowStarts_s[first - 1]! + analysis.windowLengths_s[first - 1]!;
+		expect(end_s).toBeGreaterThan(0.93);
+		expect(end_s).toBeLessThan(0.93 + analysis.windowLengths_s[first]!);
+		for (let w = 0; w < analysis.windowCount; w++)
+			expect(Math.abs(analysis.channels[3]!.subgroups[w * ORDER_STRIDE + 5]! - 20)).toBeLessThan(2e-3);
 	});
 });
 

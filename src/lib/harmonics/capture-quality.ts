@@ -1,74 +1,89 @@
 import { formatPhase, type Phase, type PhaseNames } from '../recording/phase';
-import type { Recording } from '../recording/recording';
+import type { CaptureSource } from '../recording/sample-source';
+import type { FlatTops } from './engine/flat-tops';
+import { stretchDuration_s, type Stretch } from './engine/stretches';
 import type { ChannelEvent } from './flag-windows';
 import { findClipping } from './quality/clipping';
 import { findConnectionFaults, findNegativeRotation } from './quality/connection';
 import { findDeadChannels } from './quality/dead-channel';
 import { findDcOffsets, findImplausibleVoltages } from './quality/levels';
 import { findFrequencyFaults, findMissingSamples, findRateLimits } from './quality/sampling';
-import type { TimeBase } from './time-base';
-import type { QualityRemark, QualitySeverity, WaveformAnalysis } from './waveform-analysis';
+import type { ChannelAnalysis, QualityRemark, QualitySeverity } from './waveform-analysis';
 
+/** What an analysis gathered about a capture, beside its windows. Lists by position of the mapping. */
 export interface InspectionContext {
 	pointNominal_Hz: 50 | 60 | null;
-	/** First estimate of the fundamental, used where no window has one. */
-	measured_Hz: number;
+	usedNominal_Hz: 50 | 60;
+	/** Mean over the windows; the first estimate where no window has one. */
+	frequency_Hz: number;
+	referenceChannelIndex: number;
+	cyclesPerWindow: 10 | 12;
+	highestOrder: number;
+	/** Those that were analysed, in order of time. */
+	stretches: readonly Stretch[];
+	/** One row each, over the whole capture. */
+	channels: readonly ChannelAnalysis[];
+	flatTops: readonly FlatTops[];
+	missingSamples: readonly number[];
+	windowsWithoutData: readonly number[];
+	windowCount: number;
+	/** Windows in which the fundamental could not be followed. */
+	lostWindows: number;
+	/** Sum of the windows' lengths. */
+	used_s: number;
 	nominalVoltages_V: Partial<Record<Phase, number>>;
 	names: PhaseNames;
-	events: ChannelEvent[] | null;
+	/** null when no nominal voltage was given and nothing could be looked for. */
+	events: readonly ChannelEvent[] | null;
 }
 
 const RANK: Record<QualitySeverity, number> = { blocks: 0, warns: 1, notes: 2 };
+/** Events that get a sentence of their own; what is beyond is counted. */
+const MOST_EVENTS_TOLD = 12;
 
 /** Every check on the capture itself, gravest first. */
-export function inspectCapture(
-	recording: Recording,
-	analysis: WaveformAnalysis,
-	base: TimeBase,
-	context: InspectionContext
-): QualityRemark[] {
-	const frequency_Hz = meanFrequency(analysis) ?? context.measured_Hz;
-	const { names } = context;
-	const mappings = analysis.channels.map((c) => c.mapping);
-	const perCycle = base.samplingRate_Hz / frequency_Hz;
-	const withoutData = (index: number) =>
-		analysis.channels
-			.find((c) => c.mapping.channelIndex === index)!
-			.rms.reduce((count, rms) => count + (Number.isNaN(rms) ? 1 : 0), 0);
+export function inspectCapture(source: CaptureSource, context: InspectionContext): QualityRemark[] {
+	const { names, channels, frequency_Hz } = context;
+	const mappings = channels.map((c) => c.mapping);
+	const longest = context.stretches.reduce((a, b) => (stretchDuration_s(b) > stretchDuration_s(a) ? b : a));
+	const { samplingRate_Hz } = longest;
 	const remarks = [
-		...findFrequencyFaults(recording, context.pointNominal_Hz, analysis.nominalFrequency_Hz, frequency_Hz),
-		...mappings.flatMap((m) =>
-			findClipping(recording.channels[m.channelIndex]!, base.fromSample, base.toSample, perCycle)
+		...findFrequencyFaults(
+			source.nominalFrequency_Hz,
+			context.pointNominal_Hz,
+			context.usedNominal_Hz,
+			frequency_Hz
 		),
-		...findImplausibleVoltages(recording, analysis.channels, context.nominalVoltages_V, names),
-		...findDeadChannels(analysis.channels, names),
-		...findConnectionFaults(analysis.channels, names),
-		...findNegativeRotation(analysis.channels, names),
-		...findRateLimits(base.samplingRate_Hz, frequency_Hz, analysis.highestOrder),
-		...findMissingSamples(recording, mappings, base.fromSample, base.toSample, (m) =>
-			withoutData(m.channelIndex)
+		...mappings.flatMap((mapping, m) =>
+			findClipping(
+				source.channels[mapping.channelIndex]!,
+				context.flatTops[m]!,
+				samplingRate_Hz / frequency_Hz
+			)
 		),
-		...describeEvents(context.events, analysis, base, names),
-		...describeLostFundamental(analysis),
-		...findDcOffsets(analysis.channels),
-		...describeTail(analysis, base)
+		...findImplausibleVoltages(source.channels, channels, context.nominalVoltages_V, names),
+		...findDeadChannels(channels, names),
+		...findConnectionFaults(channels, names),
+		...findNegativeRotation(channels, names),
+		...findRateLimits(samplingRate_Hz, frequency_Hz, context.highestOrder),
+		...findMissingSamples(
+			source.channels,
+			mappings,
+			context.missingSamples,
+			context.stretches.reduce((sum, stretch) => sum + stretch.toSample - stretch.fromSample, 0),
+			context.windowsWithoutData
+		),
+		...describeEvents(context),
+		...describeLostFundamental(context),
+		...findDcOffsets(channels),
+		...describeTail(context)
 	];
 	return remarks.sort((a, b) => RANK[a.severity] - RANK[b.severity]);
 }
 
-function meanFrequency(analysis: WaveformAnalysis): number | null {
-	const measured = analysis.frequency_Hz.filter((f) => !Number.isNaN(f));
-	return measured.length > 0 ? measured.reduce((sum, f) => sum + f, 0) / measured.length : null;
-}
-
-function describeEvents(
-	events: ChannelEvent[] | null,
-	analysis: WaveformAnalysis,
-	base: TimeBase,
-	names: PhaseNames
-): QualityRemark[] {
+function describeEvents({ events, channels, names }: InspectionContext): QualityRemark[] {
 	if (events === null) {
-		if (!analysis.channels.some((c) => c.mapping.quantity === 'voltage')) return [];
+		if (!channels.some((c) => c.mapping.quantity === 'voltage')) return [];
 		return [
 			note(
 				'events-not-checked',
@@ -76,44 +91,46 @@ function describeEvents(
 			)
 		];
 	}
-	return events.map((event) => ({
+	const told = events.slice(0, MOST_EVENTS_TOLD).map((event) => ({
 		...note(
 			event.kind,
 			`${formatPhase(event.phase, names)}: ${event.kind} to ${event.extreme_pct.toFixed(1)} % of nominal, ` +
-				`${((event.from - base.fromSample) / base.samplingRate_Hz + base.offset_s).toFixed(3)} s after the start, ` +
-				`for ${(((event.to - event.from) / base.samplingRate_Hz) * 1000).toFixed(0)} ms. The windows it touches are flagged.`
+				`${event.from.toFixed(3)} s after the start, ` +
+				`for ${((event.to - event.from) * 1000).toFixed(0)} ms. The windows it touches are flagged.`
 		),
 		channelIndex: event.channelIndex
 	}));
+	if (events.length <= MOST_EVENTS_TOLD) return told;
+	return [
+		...told,
+		note('more-events', `${events.length - MOST_EVENTS_TOLD} further dips, swells or interruptions follow.`)
+	];
 }
 
-function describeLostFundamental(analysis: WaveformAnalysis): QualityRemark[] {
-	const lost = analysis.frequency_Hz.reduce((count, f) => count + (Number.isNaN(f) ? 1 : 0), 0);
-	if (lost === 0) return [];
+function describeLostFundamental(context: InspectionContext): QualityRemark[] {
+	if (context.lostWindows === 0) return [];
 	return [
 		{
 			severity: 'warns',
 			code: 'fundamental-lost',
-			channelIndex: analysis.referenceChannelIndex,
+			channelIndex: context.referenceChannelIndex,
 			sentence:
-				`In ${lost} of ${analysis.windowCount} windows the fundamental of the reference channel could not be followed ` +
+				`In ${context.lostWindows} of ${context.windowCount} windows the fundamental of the reference channel could not be followed ` +
 				`(missing samples, an interruption or a jump of phase); the last frequency was held. Their figures are not ` +
 				`synchronised: read them with care.`
 		}
 	];
 }
 
-function describeTail(analysis: WaveformAnalysis, base: TimeBase): QualityRemark[] {
-	const last = analysis.windowCount - 1;
-	const used_s =
-		analysis.windowStarts_s[last]! + analysis.windowLengths_s[last]! - analysis.windowStarts_s[0]!;
-	const whole_s = (base.toSample - base.fromSample) / base.samplingRate_Hz;
-	const unused_s = whole_s - used_s;
-	if (unused_s < 0.01 * whole_s && unused_s < analysis.windowLengths_s[last]! / 4) return [];
+function describeTail(context: InspectionContext): QualityRemark[] {
+	const whole_s = context.stretches.reduce((sum, stretch) => sum + stretchDuration_s(stretch), 0);
+	const unused_s = whole_s - context.used_s;
+	const window_s = context.cyclesPerWindow / context.frequency_Hz;
+	if (unused_s < 0.01 * whole_s && unused_s < window_s / 4) return [];
 	return [
 		note(
 			'tail-not-used',
-			`${unused_s.toFixed(3)} s of ${whole_s.toFixed(3)} s do not fill a window of ${analysis.cyclesPerWindow} cycles ` +
+			`${unused_s.toFixed(3)} s of ${whole_s.toFixed(3)} s do not fill a window of ${context.cyclesPerWindow} cycles ` +
 				`and are not used.`
 		)
 	];

@@ -1,57 +1,59 @@
 import type { Phase } from '../recording/phase';
-import type { Recording } from '../recording/recording';
-import { halfCycleRms } from './half-cycle-rms';
-import { ORDER_STRIDE } from './intervals';
-import { findVoltageEvents, type VoltageEvent } from './voltage-events';
-import type { ChannelAnalysis } from './waveform-analysis';
-import type { TrackedWindow } from './window-tracker';
+import type { WindowBlock } from './engine/window-analyst';
+import type { Stretch } from './engine/stretches';
+import { findVoltageEvents, type VoltageEvent } from './events/single-voltage-events';
+import type { ChannelMapping } from './waveform-analysis';
 
-export interface ChannelEvent extends VoltageEvent {
+export interface ChannelEvent extends SingleVoltageEvent {
 	channelIndex: number;
 	phase: Phase;
 }
 
-export interface Flagging {
-	/** [windowCount] 1 where a dip, swell or interruption on any voltage lies in the window. */
-	flagged: Uint8Array;
-	/** null when no nominal voltage was given and therefore nothing could be looked for. */
-	events: ChannelEvent[] | null;
-}
-
 /**
- * Flags windows with a dip, swell or interruption on any voltage of the point.
+ * Flags windows with a dip, swell or interruption on any voltage of the point, block by block.
  * source  IEC 61000-4-30:2015, 4.7 (from memory): an event on one conductor flags the interval for all quantities
  */
-export function flagWindows(
-	recording: Recording,
-	channels: readonly ChannelAnalysis[],
-	nominalVoltages_V: Partial<Record<Phase, number>>,
-	setup: { cyclesPerWindow: number },
-	gathered: { windows: readonly TrackedWindow[]; referencePhases_deg: readonly number[] }
-): Flagging {
-	const flagged = new Uint8Array(gathered.windows.length);
-	const voltages = channels.filter(
-		(c) => c.mapping.quantity === 'voltage' && nominalVoltages_V[c.mapping.phase]
-	);
-	if (voltages.length === 0) return { flagged, events: null };
-	const events: ChannelEvent[] = [];
-	for (const channel of voltages) {
-		const { channelIndex, phase, toPrimary } = channel.mapping;
-		const spans = gathered.windows.map((window, w) => ({
-			start: window.start,
-			length: window.length,
-			// Absolute phase of the recorded signal; a reversed channel crosses zero at the same instants.
-			phase_deg: channel.phases_deg[w * ORDER_STRIDE + 1]! + gathered.referencePhases_deg[w]!
-		}));
-		const values = halfCycleRms(recording.channels[channelIndex]!.samples, spans, setup.cyclesPerWindow);
-		const nominal_recorded = nominalVoltages_V[phase]! / Math.abs(toPrimary);
-		for (const event of findVoltageEvents(values, nominal_recorded)) {
-			events.push({ ...event, channelIndex, phase });
-		}
+export class EventFlagging {
+	private readonly events: ChannelEvent[] = [];
+	private readonly watched: number[];
+
+	constructor(
+		private readonly mappings: readonly ChannelMapping[],
+		private readonly nominalVoltages_V: Partial<Record<Phase, number>>
+	) {
+		this.watched = mappings.flatMap((m, i) =>
+			m.quantity === 'voltage' && nominalVoltages_V[m.phase] ? [i] : []
+		);
 	}
-	gathered.windows.forEach((window, w) => {
-		const end = window.start + window.length;
-		if (events.some((e) => e.from < end && e.to > window.start)) flagged[w] = 1;
-	});
-	return { flagged, events };
+
+	/** returns  [windows of the block] 1 where an event lies in the window */
+	accept(block: WindowBlock, stretch: Stretch): Uint8Array {
+		const flagged = new Uint8Array(block.windows.length);
+		const found: VoltageEvent[] = [];
+		for (const m of this.watched) {
+			const { channelIndex, phase } = this.mappings[m]!;
+			for (const event of findVoltageEvents(block.halfCycles[m]!, this.nominalVoltages_V[phase]!)) {
+				found.push(event);
+				const time_s = (sample: number) =>
+					stretch.offset_s + (sample - stretch.fromSample) / stretch.samplingRate_Hz;
+				this.events.push({
+					...event,
+					from: time_s(event.from),
+					to: time_s(event.to),
+					channelIndex,
+					phase
+				});
+			}
+		}
+		block.windows.forEach((window, w) => {
+			const end = window.start + window.length;
+			if (found.some((e) => e.from < end && e.to > window.start)) flagged[w] = 1;
+		});
+		return flagged;
+	}
+
+	/** Events with their times in seconds after sample 0; null when no nominal voltage was given. */
+	finish(): ChannelEvent[] | null {
+		return this.watched.length > 0 ? this.events : null;
+	}
 }

@@ -1,8 +1,9 @@
 import { strongestPeak, taperedSpectrum, type SpectralPeak } from '../numerics/frequency/spectral-peak';
-import type { Recording } from '../recording/recording';
+import type { CaptureSource } from '../recording/sample-source';
 import { err, ok, type Result } from '../result';
 import type { AnalysisProblem } from './analysis-problem';
-import type { TimeBase } from './time-base';
+import { readStretch } from './engine/read-stretch';
+import type { Stretch } from './engine/stretches';
 import type { ChannelMapping } from './waveform-analysis';
 
 /** Where a power-frequency fundamental is looked for first; wider than 42.5 … 69 Hz so that an outlier shows as one. */
@@ -14,8 +15,9 @@ const LEAST_SHARE = 0.2;
 const LEAST_SHARE_WIDE = 0.5;
 /** A voltage weaker than this share of the strongest one does not set the pace. */
 const LEAST_OF_STRONGEST = 0.2;
-/** Length of the stretch that is looked at. */
-const STRETCH_S = 1;
+/** Length of one place that is looked at, and how many are looked at along the capture. */
+const PLACE_S = 1;
+const MOST_PLACES = 24;
 
 export interface ReferenceChannel {
 	channelIndex: number;
@@ -32,17 +34,23 @@ interface Candidate {
 /**
  * The channel that sets window length and phase: the first mapped voltage with a fundamental, neutral last; without one,
  * the strongest current.
+ * stretch  the stretch of the capture to look at
  */
 export function chooseReferenceChannel(
-	recording: Recording,
+	source: CaptureSource,
 	mappings: readonly ChannelMapping[],
-	base: TimeBase
+	stretch: Stretch
 ): Result<ReferenceChannel, AnalysisProblem> {
+	const loudest = loudestPlaces(
+		source,
+		mappings.map((m) => m.channelIndex),
+		stretch
+	);
 	const candidates: Candidate[] = [];
-	for (const mapping of mappings) {
-		const peak = fundamentalPeak(recording.channels[mapping.channelIndex]!.samples, base);
+	mappings.forEach((mapping, m) => {
+		const peak = fundamentalPeak(loudest[m] ?? null, stretch.samplingRate_Hz);
 		if (peak) candidates.push({ mapping, peak, strength: peak.rms * Math.abs(mapping.toPrimary) });
-	}
+	});
 	const chosen = chooseVoltage(candidates) ?? strongest(candidates);
 	if (!chosen) {
 		return err({
@@ -72,10 +80,9 @@ function strongest(candidates: readonly Candidate[]): Candidate | null {
 	return best;
 }
 
-function fundamentalPeak(samples: Float64Array, base: TimeBase): SpectralPeak | null {
-	const stretch = loudestStretch(samples, base);
-	if (!stretch) return null;
-	const spectrum = taperedSpectrum(samples, stretch.from, stretch.to, base.samplingRate_Hz, 8000);
+function fundamentalPeak(samples: Float64Array | null, samplingRate_Hz: number): SpectralPeak | null {
+	if (!samples) return null;
+	const spectrum = taperedSpectrum(samples, 0, samples.length, samplingRate_Hz, 8000);
 	if (!(spectrum.acRms > 0)) return null;
 	const inBand = strongestPeak(spectrum, POWER_BAND_HZ.from, POWER_BAND_HZ.to);
 	if (inBand && inBand.rms >= LEAST_SHARE * spectrum.acRms) return inBand;
@@ -83,35 +90,44 @@ function fundamentalPeak(samples: Float64Array, base: TimeBase): SpectralPeak | 
 	return anywhere && anywhere.rms >= LEAST_SHARE_WIDE * spectrum.acRms ? anywhere : null;
 }
 
-/** The second (or all there is) with the greatest mean square among those without missing samples. */
-function loudestStretch(samples: Float64Array, base: TimeBase): { from: number; to: number } | null {
-	const { fromSample, toSample } = base;
-	const length = Math.min(toSample - fromSample, Math.ceil(STRETCH_S * base.samplingRate_Hz));
-	const hop = Math.max(1, Math.floor(length / 2));
-	let best: { from: number; to: number } | null = null;
-	let most = 0;
-	for (let from = fromSample; from + length <= toSample; from += hop) {
-		let sum = 0;
-		for (let i = from; i < from + length; i++) sum += samples[i]! * samples[i]!;
-		if (sum > most) {
-			most = sum;
-			best = { from, to: from + length };
-		}
+/** Per channel the place with the greatest mean square among those looked at; where all have gaps, a run between gaps. */
+function loudestPlaces(
+	source: CaptureSource,
+	channelIndexes: readonly number[],
+	{ fromSample, toSample, samplingRate_Hz }: Stretch
+): (Float64Array | null)[] {
+	const length = Math.min(toSample - fromSample, Math.ceil(PLACE_S * samplingRate_Hz));
+	const span = toSample - fromSample - length;
+	const places = Math.min(MOST_PLACES, 1 + Math.ceil((2 * span) / length));
+	const best: (Float64Array | null)[] = channelIndexes.map(() => null);
+	const most = channelIndexes.map(() => 0);
+	const run: (Float64Array | null)[] = channelIndexes.map(() => null);
+	for (let place = 0; place < places; place++) {
+		const from = fromSample + (places > 1 ? Math.floor((span * place) / (places - 1)) : 0);
+		readStretch(source, channelIndexes, from, from + length).forEach((samples, c) => {
+			let sum = 0;
+			for (let i = 0; i < samples.length; i++) sum += samples[i]! * samples[i]!;
+			if (sum > most[c]!) {
+				most[c] = sum;
+				best[c] = samples;
+			} else if (Number.isNaN(sum) && !best[c]) {
+				run[c] = longer(run[c] ?? null, longestCompleteRun(samples));
+			}
+		});
 	}
-	return best ?? longestCompleteRun(samples, fromSample, toSample, length);
+	return best.map((samples, c) => samples ?? run[c] ?? null);
 }
 
-function longestCompleteRun(
-	samples: Float64Array,
-	from: number,
-	to: number,
-	most: number
-): { from: number; to: number } | null {
-	let best: { from: number; to: number } | null = null;
-	let start = from;
-	for (let i = from; i <= to; i++) {
-		if (i < to && samples[i]! === samples[i]!) continue;
-		if (i - start > (best ? best.to - best.from : 2)) best = { from: start, to: Math.min(i, start + most) };
+function longer(a: Float64Array | null, b: Float64Array | null): Float64Array | null {
+	return a && (!b || a.length >= b.length) ? a : b;
+}
+
+function longestCompleteRun(samples: Float64Array): Float64Array | null {
+	let best: Float64Array | null = null;
+	let start = 0;
+	for (let i = 0; i <= samples.length; i++) {
+		if (i < samples.length && samples[i]! === samples[i]!) continue;
+		if (i - start > (best ? best.length : 2)) best = samples.subarray(start, i);
 		start = i + 1;
 	}
 	return best;

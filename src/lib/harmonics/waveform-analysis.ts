@@ -25,8 +25,12 @@ export interface ChannelAnalysis {
 	components: Float64Array;
 	/** rms of the harmonic subgroup (line ±1) at each order, IEC 61000-4-7:2002+A1:2008, 3.2/5.6. Index 0: |dc|. */
 	subgroups: Float64Array;
+	/** rms of the harmonic group at each order, IEC 61000-4-7:2002+A1:2008, 3.2.3; index 0 is not used. */
+	groups: Float64Array;
 	/** rms of the interharmonic centred subgroup between order h and h+1; index 0 lies below the fundamental. */
 	interharmonicSubgroups: Float64Array;
+	/** rms of the interharmonic group between order h and h+1; index 0 lies below the fundamental. */
+	interharmonicGroups: Float64Array;
 	/** degrees, cosine convention, each order referred to the fundamental of the reference channel: φ_h − h·φ_ref,1; (−180, 180]. */
 	phases_deg: Float64Array;
 	/** [windowCount] √Σ_{2..H}(subgroup²)/subgroup₁ in percent; NaN when there is no fundamental. */
@@ -62,8 +66,26 @@ export interface PhasePower {
 	powerFactor: Float64Array;
 }
 
-/** What the analyser makes of one waveform recording (IEC 61000-4-7 windows, synchronised to the measured fundamental). */
-export interface WaveformAnalysis {
+/** Consecutive windows of a capture with the figures of every mapped channel. Arrays are [windowCount]. */
+export interface WaveformWindows {
+	windowCount: number;
+	/** Offset of the window start from sample 0, seconds. */
+	windowStarts_s: Float64Array;
+	/** Window length, seconds (N cycles of the measured fundamental). */
+	windowLengths_s: Float64Array;
+	/** Measured fundamental, Hz; NaN where it could not be measured. */
+	frequency_Hz: Float64Array;
+	/** 1 = flagged. */
+	flagged: Uint8Array;
+	/** 1 = first window of a train that starts at a ten-minute tick; it overlaps the one before. */
+	resync: Uint8Array;
+	channels: ChannelAnalysis[];
+	/** One entry per phase with a voltage to neutral and a current; empty when there is none. */
+	powers: PhasePower[];
+}
+
+/** What holds for a capture as a whole. */
+export interface CaptureFindings {
 	engineVersion: string;
 	nominalFrequency_Hz: 50 | 60;
 	/** 10 at 50 Hz, 12 at 60 Hz. */
@@ -72,17 +94,8 @@ export interface WaveformAnalysis {
 	referenceChannelIndex: number;
 	/** Highest order that the sampling rate supports, at most MAX_ORDER; orders above it are NaN. */
 	highestOrder: number;
-	windowCount: number;
-	/** [windowCount] offset of the window start from sample 0, seconds. */
-	windowStarts_s: Float64Array;
-	/** [windowCount] window length, seconds (N cycles of the measured fundamental). */
-	windowLengths_s: Float64Array;
-	/** [windowCount] measured fundamental, Hz. */
-	frequency_Hz: Float64Array;
-	/** [windowCount] 1 = flagged. */
-	flagged: Uint8Array;
-	channels: ChannelAnalysis[];
-	/** One entry per phase with a voltage to neutral and a current; empty when there is none. */
-	powers?: PhasePower[];
 	quality: QualityRemark[];
 }
+
+/** What the analyser makes of one waveform recording (IEC 61000-4-7 windows, synchronised to the measured fundamental). */
+export type WaveformAnalysis = CaptureFindings & WaveformWindows;

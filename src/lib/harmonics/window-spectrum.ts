@@ -1,6 +1,4 @@
-import { planRealDft, type RealDftPlan } from '../numerics/dft/real-dft';
-import { designKaiserKernel } from '../numerics/resample/kaiser-kernel';
-import { planInterpolator, type Interpolator } from '../numerics/resample/interpolator';
+import { designKaiserKernel, type KaiserKernel } from '../numerics/resample/kaiser-kernel';
 import { MAX_ORDER } from './intervals';
 
 /** Ripple and rejection of the interpolation: a millionth, two tens below what class I asks for. */
@@ -13,8 +11,8 @@ const USABLE_SHARE_OF_RATE = 0.45;
 /** The fundamental may wander this much from its first estimate without leaving the kernel's passband. */
 const WANDER = 1.04;
 
-/** How the windows of one recording become spectra: points per window, interpolation and transform. */
-export interface WindowSpectrumPlan {
+/** How the windows of one stretch become spectra. */
+export interface WindowSpectrumDesign {
 	/** Points per window, a power of two. */
 	points: number;
 	/** Highest order with its subgroup inside the usable band. */
@@ -23,8 +21,8 @@ export interface WindowSpectrumPlan {
 	reachesBeyondHighest: boolean;
 	/** Lines 0 … lineCount−1 are read. */
 	lineCount: number;
-	interpolator: Interpolator;
-	transform: RealDftPlan;
+	/** Interpolation kernel. */
+	kernel: KaiserKernel;
 }
 
 /** Highest order whose subgroup lies within 45 % of the sampling rate; at most MAX_ORDER, may be below 1. */
@@ -42,11 +40,11 @@ export function highestUsableOrder(
  * or from (sampling rate − highest line) upwards is suppressed by 120 dB, the lines read pass within 1e-6.
  * Among the powers of two that do so the cheapest is taken.
  */
-export function planWindowSpectrum(
+export function designWindowSpectrum(
 	samplingRate_Hz: number,
 	fundamental_Hz: number,
 	cyclesPerWindow: 10 | 12
-): WindowSpectrumPlan {
+): WindowSpectrumDesign {
 	const highestOrder = highestUsableOrder(samplingRate_Hz, fundamental_Hz, cyclesPerWindow);
 	const frequency = fundamental_Hz / samplingRate_Hz;
 	const reachesBeyondHighest = (highestOrder + 1) * frequency * WANDER <= USABLE_SHARE_OF_RATE;
@@ -68,7 +66,6 @@ export function planWindowSpectrum(
 		highestOrder,
 		reachesBeyondHighest,
 		lineCount,
-		interpolator: planInterpolator(designKaiserKernel(passband, best.stopband, ATTENUATION_DB)),
-		transform: planRealDft(best.points)
+		kernel: designKaiserKernel(passband, best.stopband, ATTENUATION_DB)
 	};
 }

@@ -1,4 +1,5 @@
 import { taperedPhasor } from '../numerics/frequency/tapered-phasor';
+import type { ReferenceView } from './engine/reference-view';
 
 /** One window of whole cycles, in samples of the recording. */
 export interface TrackedWindow {
@@ -10,11 +11,12 @@ export interface TrackedWindow {
 	frequency: number;
 	/** False when the fundamental could not be measured here and the last frequency was held. */
 	measured: boolean;
+	/** True for the first window of a train that starts at a ten-minute tick: it overlaps the one before. */
+	resync: boolean;
 }
 
 export interface TrackerSetup {
-	/** Samples of the reference channel. */
-	reference: Float64Array;
+	reference: ReferenceView;
 	/** First and last sample that may be used. */
 	firstSample: number;
 	lastSample: number;
@@ -23,12 +25,21 @@ export interface TrackerSetup {
 	cyclesPerWindow: number;
 	/** First estimate, cycles per sample. */
 	frequency: number;
+	/** Sample numbers (fractions allowed) at which the train starts anew; ascending. */
+	ticks?: Iterator<number>;
+}
+
+/** Samples that the tracker may look at together, in cycles: a window, and as much again on either side of it. */
+export function trackerReach(cyclesPerWindow: number, frequency: number): number {
+	return Math.ceil((3.2 * cyclesPerWindow) / frequency) + 16;
 }
 
 /** Shortest taper, in cycles on either side of its middle. */
 const LEAST_HALF_CYCLES = 2;
 /** The frequency of one window may differ by this much from the one before; more is a jump of phase, not a frequency. */
 const MOST_CHANGE = 0.05;
+/** A window that ends within this many samples of the tick ends on it. */
+const ON_TICK = 0.01;
 /** Below this share of the usual amplitude there is no fundamental to follow. */
 const LEAST_AMPLITUDE = 0.05;
 
@@ -44,6 +55,8 @@ interface PhaseMark {
  * At each border the phase of the fundamental is taken through a Hann taper of up to N cycles; the frequency of a window
  * is the advance of phase between its borders over their distance, and the window's length follows from it. Near the
  * ends of the record (and beside missing samples) the taper is shortened and moved inwards, so nothing outside is used.
+ * At a tick the window that straddles it is completed, and the next starts at the tick itself (IEC 61000-4-30:2015,
+ * 4.5.3, from memory).
  *
  * error   steady signals: below 1e-6 of the length; the tolerance is 0.03 % (IEC 61000-4-7:2002+A1:2008, 4.4.1, from memory)
  */
@@ -51,12 +64,15 @@ export class WindowTracker {
 	private position: number;
 	private frequency: number;
 	private mark: PhaseMark | null = null;
+	private resync = false;
+	private tick: number;
 	private readonly usualAmplitude: number;
 
 	constructor(private readonly setup: TrackerSetup) {
 		this.position = setup.firstSample + setup.guard;
 		this.frequency = setup.frequency;
 		this.usualAmplitude = this.greatestAmplitude();
+		this.tick = this.tickAfter(this.position);
 	}
 
 	/** The next window, or null when no whole window is left. */
@@ -67,8 +83,22 @@ export class WindowTracker {
 		const length = this.setup.cyclesPerWindow / this.frequency;
 		if (start + length > this.setup.lastSample - this.setup.guard) return null;
 		if (refined === null) this.mark = null;
-		this.position = start + length;
-		return { start, length, frequency: this.frequency, measured: refined !== null };
+		const { resync } = this;
+		this.resync = start + length > this.tick - ON_TICK;
+		if (this.resync) {
+			this.position = this.tick;
+			this.mark = null;
+			this.tick = this.tickAfter(this.tick + 1);
+		} else this.position = start + length;
+		return { start, length, frequency: this.frequency, measured: refined !== null, resync };
+	}
+
+	private tickAfter(position: number): number {
+		for (;;) {
+			const next = this.setup.ticks?.next();
+			if (!next || next.done) return Infinity;
+			if (next.value > position) return next.value;
+		}
 	}
 
 	/** Samples from the start of the next window to the end of what may be used. */
@@ -79,6 +109,12 @@ export class WindowTracker {
 	private measureFrom(start: number): number | null {
 		const cycles = this.setup.cyclesPerWindow;
 		let frequency = this.frequency;
+		const reach = cycles / frequency;
+		const { firstSample, lastSample } = this.setup;
+		this.setup.reference.cover(
+			Math.max(firstSample, Math.floor(start - 1.05 * reach)),
+			Math.min(lastSample + 1, Math.ceil(start + 2.1 * reach) + 1)
+		);
 		const run = this.completeRun(start, Math.min(start + cycles / frequency, this.setup.lastSample));
 		if (!run) return null;
 		let begin = this.mark && this.mark.centre >= run.from ? this.mark : this.markAt(start, frequency, run);
@@ -106,23 +142,25 @@ export class WindowTracker {
 			LEAST_HALF_CYCLES,
 			Math.min(this.setup.cyclesPerWindow / 2, Math.floor(room + 1e-9))
 		);
-		const phasor = taperedPhasor(this.setup.reference, centre, frequency, halfCycles);
+		const { samples, base } = this.setup.reference;
+		const phasor = taperedPhasor(samples, centre - base, frequency, halfCycles);
 		return { centre, phase_rad: phasor.phase_rad, amplitude: phasor.amplitude };
 	}
 
 	/** The stretch without missing samples that holds [from, to]; null when a sample inside is missing. */
 	private completeRun(from: number, to: number): { from: number; to: number } | null {
-		const { reference, firstSample, lastSample, cyclesPerWindow } = this.setup;
+		const { firstSample, lastSample, cyclesPerWindow } = this.setup;
+		const { samples, base } = this.setup.reference;
 		const reach = Math.ceil(cyclesPerWindow / this.frequency);
 		const first = Math.floor(from);
 		const last = Math.ceil(to);
-		for (let i = first; i <= last; i++) if (Number.isNaN(reference[i])) return null;
+		for (let i = first; i <= last; i++) if (Number.isNaN(samples[i - base])) return null;
 		let low = first;
 		const lowest = Math.max(firstSample, first - reach);
-		while (low > lowest && !Number.isNaN(reference[low - 1])) low--;
+		while (low > lowest && !Number.isNaN(samples[low - 1 - base])) low--;
 		let high = last;
 		const highest = Math.min(lastSample, last + reach);
-		while (high < highest && !Number.isNaN(reference[high + 1])) high++;
+		while (high < highest && !Number.isNaN(samples[high + 1 - base])) high++;
 		return (high - low) * this.frequency > 2 * LEAST_HALF_CYCLES + 1 ? { from: low, to: high } : null;
 	}
 
@@ -134,9 +172,11 @@ export class WindowTracker {
 		const span = lastSample - reach - first;
 		let greatest = 0;
 		for (let i = 0; i < 16 && span >= 0; i++) {
+			const centre = first + (span * i) / 15;
+			reference.cover(Math.floor(centre - reach), Math.ceil(centre + reach) + 1);
 			const { amplitude } = taperedPhasor(
-				reference,
-				first + (span * i) / 15,
+				reference.samples,
+				centre - reference.base,
 				this.frequency,
 				LEAST_HALF_CYCLES
 			);

@@ -1,5 +1,5 @@
 import { formatPhase, type Phase, type PhaseNames } from '../../recording/phase';
-import type { Recording } from '../../recording/recording';
+import type { ChannelFacts } from '../../recording/sample-source';
 import type { ChannelAnalysis, QualityRemark } from '../waveform-analysis';
 import { meanFundamental } from './fundamental-phasors';
 
@@ -9,7 +9,7 @@ const DC_SHARE = { voltage: 0.01, current: 0.03 };
 
 /** Voltages whose fundamental is nowhere near the point's nominal voltage. */
 export function findImplausibleVoltages(
-	recording: Recording,
+	sources: readonly ChannelFacts[],
 	channels: readonly ChannelAnalysis[],
 	nominal_V: Partial<Record<Phase, number>>,
 	names: PhaseNames
@@ -28,14 +28,13 @@ export function findImplausibleVoltages(
 			sentence:
 				`${channel.name}: the fundamental is ${fundamental.rms.toPrecision(4)} V, ` +
 				`${(100 * share).toFixed(1)} % of the nominal ${expected_V.toPrecision(4)} V of ` +
-				`${formatPhase(channel.mapping.phase, names)}. ${likelyCause(recording, channel, share)}`
+				`${formatPhase(channel.mapping.phase, names)}. ${likelyCause(sources[channel.mapping.channelIndex]!, share)}`
 		});
 	}
 	return remarks;
 }
 
-function likelyCause(recording: Recording, channel: ChannelAnalysis, share: number): string {
-	const source = recording.channels[channel.mapping.channelIndex]!;
+function likelyCause(source: ChannelFacts, share: number): string {
 	const root3 = Math.sqrt(3);
 	if (near(share, root3) || near(share, 1 / root3)) {
 		return 'The factor is √3: a line-to-line voltage is mapped as line-to-neutral or the other way round. Correct the phase in the mapping.';

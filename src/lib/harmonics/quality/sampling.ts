@@ -1,4 +1,4 @@
-import type { Recording } from '../../recording/recording';
+import type { ChannelFacts } from '../../recording/sample-source';
 import { MAX_ORDER } from '../intervals';
 import type { ChannelMapping, QualityRemark } from '../waveform-analysis';
 
@@ -44,7 +44,7 @@ export function findRateLimits(
 }
 
 export function findFrequencyFaults(
-	recording: Recording,
+	stated_Hz: number | null,
 	pointNominal_Hz: 50 | 60 | null,
 	usedNominal_Hz: 50 | 60,
 	measured_Hz: number
@@ -75,7 +75,6 @@ export function findFrequencyFaults(
 				`analysed as ${usedNominal_Hz} Hz. Correct the point, or upload the capture that belongs to it.`
 		});
 	}
-	const stated_Hz = recording.nominalFrequency_Hz;
 	if (stated_Hz !== null && stated_Hz > 0 && Math.abs(measured_Hz / stated_Hz - 1) > 0.1) {
 		remarks.push({
 			severity: 'warns',
@@ -90,26 +89,23 @@ export function findFrequencyFaults(
 }
 
 export function findMissingSamples(
-	recording: Recording,
+	sources: readonly ChannelFacts[],
 	mappings: readonly ChannelMapping[],
-	from: number,
-	to: number,
-	windowsWithoutData: (mapping: ChannelMapping) => number
+	missing: readonly number[],
+	sampleCount: number,
+	windowsWithoutData: readonly number[]
 ): QualityRemark[] {
 	const remarks: QualityRemark[] = [];
-	for (const mapping of mappings) {
-		const channel = recording.channels[mapping.channelIndex]!;
-		let missing = 0;
-		for (let i = from; i < to; i++) if (Number.isNaN(channel.samples[i])) missing++;
-		if (missing === 0) continue;
+	mappings.forEach((mapping, m) => {
+		if (missing[m] === 0) return;
 		remarks.push({
 			severity: 'warns',
 			code: 'missing-samples',
 			channelIndex: mapping.channelIndex,
 			sentence:
-				`${channel.name}: ${missing} of ${to - from} samples are missing; ${windowsWithoutData(mapping)} windows ` +
+				`${sources[mapping.channelIndex]!.name}: ${missing[m]} of ${sampleCount} samples are missing; ${windowsWithoutData[m]} windows ` +
 				`that need them stand as “no data” and are not filled in.`
 		});
-	}
+	});
 	return remarks;
 }

@@ -1,0 +1,133 @@
+import type { ChannelFacts } from '../../recording/sample-source';
+import { thd_pctOfFundamental } from '../distortion';
+import { harmonicGroup } from '../harmonic-group';
+import { harmonicSubgroup } from '../harmonic-subgroup';
+import { interharmonicCentredSubgroup, interharmonicGroup } from '../interharmonics';
+import { ORDER_STRIDE } from '../intervals';
+import { wrapDegrees } from '../phasor';
+import type { ChannelAnalysis, ChannelMapping } from '../waveform-analysis';
+import type { WindowSpectrumDesign } from '../window-spectrum';
+
+/** Per-order matrices and per-window columns of a channel, by their names in ChannelAnalysis. */
+const MATRICES = [
+	'components',
+	'subgroups',
+	'groups',
+	'interharmonicSubgroups',
+	'interharmonicGroups',
+	'phases_deg'
+] as const;
+const COLUMNS = ['rms', 'dc', 'peak', 'thd_pctOfFundamental'] as const;
+
+/** Room for `count` windows of one channel, everything "no data". */
+export function emptyChannel(channel: ChannelFacts, mapping: ChannelMapping, count: number): ChannelAnalysis {
+	const rows = (length: number) => new Float64Array(length).fill(NaN);
+	return {
+		mapping,
+		name: channel.name,
+		unit: mapping.quantity === 'voltage' ? 'V' : 'A',
+		rms: rows(count),
+		dc: rows(count),
+		peak: rows(count),
+		components: rows(count * ORDER_STRIDE),
+		subgroups: rows(count * ORDER_STRIDE),
+		groups: rows(count * ORDER_STRIDE),
+		interharmonicSubgroups: rows(count * ORDER_STRIDE),
+		interharmonicGroups: rows(count * ORDER_STRIDE),
+		phases_deg: rows(count * ORDER_STRIDE),
+		thd_pctOfFundamental: rows(count)
+	};
+}
+
+/** The windows of several blocks of one channel, one after the other. */
+export function joinChannels(parts: readonly ChannelAnalysis[]): ChannelAnalysis {
+	const first = parts[0]!;
+	if (parts.length === 1) return first;
+	const joined = { ...first };
+	for (const name of [...MATRICES, ...COLUMNS]) joined[name] = joinArrays(parts.map((part) => part[name]));
+	return joined;
+}
+
+export function joinArrays(parts: readonly Float64Array[]): Float64Array {
+	const joined = new Float64Array(parts.reduce((sum, part) => sum + part.length, 0));
+	let at = 0;
+	for (const part of parts) {
+		joined.set(part, at);
+		at += part.length;
+	}
+	return joined;
+}
+
+/** What the time domain tells of one window of a channel, in recorded units. */
+export interface WindowLevels {
+	rms: number;
+	peak: number;
+}
+
+/**
+ * Turns the spectrum of one window into the figures of its row.
+ * spectrum  [≥ 2·lineCount] interleaved, convention of numerics/dft; of the recorded values
+ * lines     [lineCount] work space
+ * row       index of the window in the channel's arrays
+ * returns   nothing; phases stay those of the first point of the window until `referPhases`
+ */
+export function fillWindow(
+	channel: ChannelAnalysis,
+	row: number,
+	spectrum: Float64Array,
+	lines: Float64Array,
+	design: WindowSpectrumDesign,
+	cyclesPerWindow: 10 | 12,
+	levels: WindowLevels
+): void {
+	const { toPrimary } = channel.mapping;
+	const size = Math.abs(toPrimary);
+	const turned = toPrimary < 0 ? Math.PI : 0;
+	const { points, highestOrder, lineCount } = design;
+	const scale = (Math.SQRT2 / points) * size;
+	for (let k = 1; k < lineCount; k++) {
+		const re = spectrum[2 * k]!;
+		const im = spectrum[2 * k + 1]!;
+		lines[k] = Math.sqrt(re * re + im * im) * scale;
+	}
+	const mean = (spectrum[0]! / points) * toPrimary;
+	lines[0] = Math.abs(mean);
+	const at = row * ORDER_STRIDE;
+	channel.rms[row] = levels.rms * size;
+	channel.peak[row] = levels.peak * size;
+	channel.dc[row] = mean;
+	channel.components[at] = lines[0];
+	channel.subgroups[at] = lines[0];
+	channel.interharmonicSubgroups[at] = interharmonicCentredSubgroup(lines, 0, cyclesPerWindow);
+	channel.interharmonicGroups[at] = interharmonicGroup(lines, 0, cyclesPerWindow);
+	for (let order = 1; order <= highestOrder; order++) {
+		const line = order * cyclesPerWindow;
+		channel.components[at + order] = lines[line]!;
+		channel.subgroups[at + order] = harmonicSubgroup(lines, line);
+		const angle_rad = Math.atan2(spectrum[2 * line + 1]!, spectrum[2 * line]!) + turned;
+		channel.phases_deg[at + order] = (angle_rad * 180) / Math.PI;
+		// Lines half an order up, and all up to the next order, have to be inside the usable band as well.
+		if (order === highestOrder && !design.reachesBeyondHighest) break;
+		channel.groups[at + order] = harmonicGroup(lines, line, cyclesPerWindow);
+		channel.interharmonicSubgroups[at + order] = interharmonicCentredSubgroup(lines, line, cyclesPerWindow);
+		channel.interharmonicGroups[at + order] = interharmonicGroup(lines, line, cyclesPerWindow);
+	}
+	channel.thd_pctOfFundamental[row] = thd_pctOfFundamental(
+		channel.subgroups.subarray(at, at + ORDER_STRIDE),
+		channel.rms[row]!,
+		highestOrder
+	);
+}
+
+/** Refers the phases of one window to the fundamental of the reference channel: φ_h − h·φ_ref,1. */
+export function referPhases(
+	channel: ChannelAnalysis,
+	row: number,
+	reference_deg: number,
+	highestOrder: number
+): void {
+	const at = row * ORDER_STRIDE;
+	for (let order = 1; order <= highestOrder; order++) {
+		channel.phases_deg[at + order] = wrapDegrees(channel.phases_deg[at + order]! - order * reference_deg);
+	}
+}

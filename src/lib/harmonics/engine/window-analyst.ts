@@ -1,0 +1,177 @@
+import { createScriptKernels } from '../../numerics/kernels/script-kernels';
+import type { KernelShape, SignalKernels } from '../../numerics/kernels/signal-kernels';
+import { squaresAtEnds } from '../../numerics/stats/windowed-rms';
+import type { CaptureSource } from '../../recording/sample-source';
+import { halfCycleRms, type HalfCycleRms } from '../events/half-cycle-rms';
+import { ORDER_STRIDE } from '../intervals';
+import { meanProduct } from '../powers';
+import type { ChannelAnalysis, ChannelMapping } from '../waveform-analysis';
+import type { TrackedWindow } from '../window-tracker';
+import { emptyChannel, fillWindow, referPhases } from './channel-figures';
+import { addPiece, addResolution, noFlatTops, type FlatTops } from './flat-tops';
+import { SampleFeed } from './sample-feed';
+import { kernelShapeFor, type SegmentPlan } from './segment-plan';
+
+/** Figures of consecutive windows of one stretch. Plain data: it crosses to other threads. */
+export interface WindowBlock {
+	windows: TrackedWindow[];
+	/** One per mapping, in its order. */
+	channels: ChannelAnalysis[];
+	/** Per pair of voltage and current: mean of u·i of each window, W; NaN where either has no data. */
+	products_W: Float64Array[];
+	/** Per mapping: Urms(1/2) of voltages in primary volts; null for currents. */
+	halfCycles: (HalfCycleRms | null)[];
+	/** Per mapping. */
+	flatTops: FlatTops[];
+	missingSamples: number[];
+}
+
+export interface AnalystSetup {
+	plan: SegmentPlan;
+	mappings: readonly ChannelMapping[];
+	/** Position in `mappings` of the channel that phases refer to. */
+	reference: number;
+	/** Positions in `mappings` of the voltage and current of one conductor. */
+	pairs: readonly { voltage: number; current: number }[];
+}
+
+export type KernelFactory = (shape: KernelShape) => SignalKernels;
+
+/** Turns tracked windows of one stretch into figures. Keeps buffers between calls; not to be shared between threads. */
+export class WindowAnalyst {
+	private readonly kernels: SignalKernels;
+	private readonly feed: SampleFeed;
+	private readonly lines: Float64Array;
+
+	constructor(
+		private readonly source: CaptureSource,
+		private readonly setup: AnalystSetup,
+		createKernels: KernelFactory = createScriptKernels
+	) {
+		const { plan, mappings } = setup;
+		this.kernels = createKernels(kernelShapeFor(plan, mappings.length, source.samples));
+		const indexes = mappings.map((m) => m.channelIndex);
+		this.feed = new SampleFeed(source.samples, source.sampleCount, indexes, this.kernels);
+		this.lines = new Float64Array(plan.spectrum.lineCount);
+	}
+
+	/** windows  consecutive, in order of time; they may overlap at a tick */
+	analyse(windows: readonly TrackedWindow[]): WindowBlock {
+		const { mappings, pairs } = this.setup;
+		const block: WindowBlock = {
+			windows: [...windows],
+			channels: mappings.map((m) => emptyChannel(this.source.channels[m.channelIndex]!, m, windows.length)),
+			products_W: pairs.map(() => new Float64Array(windows.length).fill(NaN)),
+			halfCycles: mappings.map((m) => (m.quantity === 'voltage' ? emptyHalfCycles() : null)),
+			flatTops: mappings.map(noFlatTops),
+			missingSamples: mappings.map(() => 0)
+		};
+		const half = mappings.map((): HalfCycleRms[] => []);
+		windows.forEach((window, row) => this.addWindow(block, half, window, row));
+		block.halfCycles = block.halfCycles.map((none, m) => (none === null ? null : joinHalfCycles(half[m]!)));
+		return block;
+	}
+
+	private addWindow(block: WindowBlock, half: HalfCycleRms[][], window: TrackedWindow, row: number): void {
+		const { plan, mappings, reference, pairs } = this.setup;
+		const { spectrum, cyclesPerWindow, stretch } = plan;
+		const { kernels, feed } = this;
+		const cycle = window.length / cyclesPerWindow;
+		const end = window.start + window.length;
+		const from = Math.floor(window.start) - kernels.guard;
+		feed.cover(
+			Math.max(stretch.fromSample, from),
+			Math.min(stretch.toSample, Math.ceil(end + Math.max(kernels.guard, 1.1 * cycle)) + 3)
+		);
+		const start = window.start - feed.base;
+		kernels.transformWindow(start, window.length / spectrum.points);
+		const complete = mappings.map((_, m) => this.fill(block, window, row, m, start));
+		const phase_deg = complete[reference]
+			? block.channels[reference]!.phases_deg[row * ORDER_STRIDE + 1]!
+			: NaN;
+		mappings.forEach((mapping, m) => {
+			if (mapping.quantity === 'voltage') half[m]!.push(this.halfCyclesOf(block, window, row, m, start));
+			referPhases(block.channels[m]!, row, phase_deg, spectrum.highestOrder);
+		});
+		pairs.forEach(({ voltage, current }, p) => {
+			if (!complete[voltage] || !complete[current]) return;
+			const product = meanProduct(kernels.windows[voltage]!, kernels.windows[current]!, spectrum.points);
+			block.products_W[p]![row] = product * mappings[voltage]!.toPrimary * mappings[current]!.toPrimary;
+		});
+	}
+
+	/** returns  false when a sample that the window needs is missing; its row then stays "no data" */
+	private fill(block: WindowBlock, window: TrackedWindow, row: number, m: number, start: number): boolean {
+		const { kernels, setup } = this;
+		const { plan } = setup;
+		const samples = kernels.samples[m]!;
+		const first = Math.ceil(start);
+		const last = Math.floor(start + window.length);
+		const { squares, least, greatest } = kernels.stretch(m, first, last + 1);
+		if (Number.isNaN(squares)) {
+			block.missingSamples[m]! += countMissing(samples, first, Math.ceil(start + window.length));
+			return false;
+		}
+		// Samples just outside feed the interpolation only; one missing there spoils the spectrum as well.
+		if (Number.isNaN(kernels.spectra[m]![2])) return false;
+		addPiece(block.flatTops[m]!, samples, first, last, least, greatest);
+		if (row === 0) addResolution(block.flatTops[m]!, samples, first, last);
+		const mean = (squares + squaresAtEnds(samples, start, start + window.length)) / window.length;
+		fillWindow(
+			block.channels[m]!,
+			row,
+			kernels.spectra[m]!,
+			this.lines,
+			plan.spectrum,
+			plan.cyclesPerWindow,
+			{ rms: Math.sqrt(mean), peak: Math.max(Math.abs(least), Math.abs(greatest)) }
+		);
+		return true;
+	}
+
+	private halfCyclesOf(
+		block: WindowBlock,
+		window: TrackedWindow,
+		row: number,
+		m: number,
+		start: number
+	): HalfCycleRms {
+		const { kernels, setup, feed, source } = this;
+		const phase_deg = block.channels[m]!.phases_deg[row * ORDER_STRIDE + 1]!;
+		const held = Math.min(source.sampleCount, setup.plan.stretch.toSample) - feed.base;
+		const values = halfCycleRms(
+			kernels.samples[m]!.subarray(0, Math.min(held, kernels.shape.capacity)),
+			[{ start, length: window.length, phase_deg }],
+			setup.plan.cyclesPerWindow
+		);
+		const size = Math.abs(setup.mappings[m]!.toPrimary);
+		return {
+			starts: values.starts.map((s) => s + feed.base),
+			lengths: values.lengths,
+			rms: values.rms.map((v) => v * size)
+		};
+	}
+}
+
+function countMissing(samples: Float64Array, from: number, to: number): number {
+	let count = 0;
+	for (let i = from; i < to; i++) if (Number.isNaN(samples[i]!)) count++;
+	return count;
+}
+
+function emptyHalfCycles(): HalfCycleRms {
+	return { starts: new Float64Array(0), lengths: new Float64Array(0), rms: new Float64Array(0) };
+}
+
+function joinHalfCycles(parts: readonly HalfCycleRms[]): HalfCycleRms {
+	const join = (name: keyof HalfCycleRms) => {
+		const joined = new Float64Array(parts.reduce((sum, part) => sum + part[name].length, 0));
+		let at = 0;
+		for (const part of parts) {
+			joined.set(part[name], at);
+			at += part[name].length;
+		}
+		return joined;
+	};
+	return { starts: join('starts'), lengths: join('lengths'), rms: join('rms') };
+}

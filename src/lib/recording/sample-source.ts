@@ -1,0 +1,37 @@
+import type { RowLayout } from '../numerics/kernels/signal-kernels';
+import type { Recording, RecordingChannel } from './recording';
+
+/** Samples that lie in memory, one array per analogue channel. */
+export interface MemorySamples {
+	kind: 'memory';
+	/** [channels][sampleCount] base unit; NaN marks a missing sample. */
+	channels: readonly Float64Array[];
+}
+
+/** Samples that are still rows of bytes, most often in a file; decoded block by block while they are analysed. */
+export interface RowSamples {
+	kind: 'rows';
+	/** Place, factor and addition of every analogue channel; value in the base unit. */
+	layout: RowLayout;
+	/** Fills the start of `into` with rows [fromRow, fromRow + count); throws when the bytes cannot be had. */
+	read(fromRow: number, count: number, into: Uint8Array): void;
+}
+
+export type SampleSource = MemorySamples | RowSamples;
+
+/** What is known of a channel beside its samples. */
+export type ChannelFacts = Omit<RecordingChannel, 'samples'>;
+
+/** A recording whose samples are fetched when they are needed, so that its length does not matter. */
+export type CaptureSource = Omit<Recording, 'channels'> & {
+	channels: readonly ChannelFacts[];
+	samples: SampleSource;
+};
+
+/** A recording in memory as a source of samples; nothing is copied. */
+export function sourceOf(recording: Recording): CaptureSource {
+	return {
+		...recording,
+		samples: { kind: 'memory', channels: recording.channels.map((channel) => channel.samples) }
+	};
+}
