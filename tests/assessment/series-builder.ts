@@ -2,7 +2,7 @@ import { ORDER_STRIDE, type IntervalKind, type IntervalSeries } from '$lib/harmo
 import type { AssessedPoint, UncertaintyStatement } from '$lib/assessment/assessment';
 import type { Phase } from '$lib/recording/phase';
 
-const SECONDS: Record<IntervalKind, number> = { window: 0.2, '3s': 3, '10min': 600 };
+const SECONDS: Record<IntervalKind, number> = { window: 0.2, '3s': 3, '10min': 600, '2h': 7200 };
 
 export interface SeriesPlan {
 	quantity: 'voltage' | 'current';

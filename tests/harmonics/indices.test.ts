@@ -1,10 +1,10 @@
 import { describe, expect, it } from 'vitest';
 import { crestFactor } from '$lib/harmonics/crest-factor';
 import { tdd_pctOfDemandCurrent, thd_pctOfFundamental, thd_pctOfRms } from '$lib/harmonics/distortion';
-import { halfCycleRms } from '$lib/harmonics/half-cycle-rms';
+import { halfCycleRms } from '$lib/harmonics/events/half-cycle-rms';
 import { wrapDegrees } from '$lib/harmonics/phasor';
 import { lineToLineUnbalance_pct, sequenceComponents, unbalance } from '$lib/harmonics/sequence/sequence-components';
-import { findVoltageEvents } from '$lib/harmonics/voltage-events';
+import { findVoltageEvents } from '$lib/harmonics/events/single-voltage-events';
 import { rootMeanSquare } from '$lib/numerics/stats/root-mean-square';
 import {
 	samplePeriod,

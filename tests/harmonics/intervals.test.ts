@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { aggregateIntervals } from '$lib/harmonics/aggregate-intervals';
+import { aggregateIntervals } from '$lib/harmonics/aggregation/aggregate-intervals';
 import { analyseWaveform } from '$lib/harmonics/analyse-waveform';
 import { emptySeries, toWindowSeries } from '$lib/harmonics/interval-series';
 import { ORDER_STRIDE, type IntervalKind, type IntervalSeries } from '$lib/harmonics/intervals';

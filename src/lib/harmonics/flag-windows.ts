@@ -1,7 +1,7 @@
 import type { Phase } from '../recording/phase';
 import type { WindowBlock } from './engine/window-analyst';
 import type { Stretch } from './engine/stretches';
-import { findVoltageEvents, type VoltageEvent } from './events/single-voltage-events';
+import { findVoltageEvents, type SingleVoltageEvent } from './events/single-voltage-events';
 import type { ChannelMapping } from './waveform-analysis';
 
 export interface ChannelEvent extends SingleVoltageEvent {

@@ -6,8 +6,8 @@ export const MAX_ORDER = 50;
 /** Row length of every per-order matrix: index 0 is dc, 1 the fundamental, …, MAX_ORDER. */
 export const ORDER_STRIDE = MAX_ORDER + 1;
 
-/** Interval kinds of IEC 61000-4-30: one 10/12-cycle window, 150/180 cycles, and ten minutes of the clock. */
-export type IntervalKind = 'window' | '3s' | '10min';
+/** Interval kinds of IEC 61000-4-30: one 10/12-cycle window, 150/180 cycles, ten minutes and two hours of the clock. */
+export type IntervalKind = 'window' | '3s' | '10min' | '2h';
 
 /**
  * Harmonic values of one quantity on one phase over consecutive intervals of one kind.

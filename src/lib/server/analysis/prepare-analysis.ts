@@ -1,4 +1,4 @@
-import { aggregateIntervals } from '../../harmonics/aggregate-intervals';
+import { aggregateIntervals } from '../../harmonics/aggregation/aggregate-intervals';
 import { analyseWaveformSteps } from '../../harmonics/analyse-waveform';
 import { ENGINE_VERSION } from '../../harmonics/engine-version';
 import { toWindowSeries } from '../../harmonics/interval-series';
