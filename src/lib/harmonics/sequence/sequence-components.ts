@@ -1,4 +1,6 @@
-import { combinePhasors, type Phasor } from '../phasor';
+import type { OrderPhasors } from '../order-phasors';
+import type { Phasor } from '../phasor';
+import { sequenceOfOrder } from './order-sequences';
 
 export interface SequenceComponents {
 	zero: Phasor;
@@ -14,14 +16,17 @@ export interface SequenceComponents {
  * source   Fortescue's transformation, common practice
  */
 export function sequenceComponents(a: Phasor, b: Phasor, c: Phasor): SequenceComponents {
-	const third = 1 / 3;
-	const turned = (b_deg: number, c_deg: number) =>
-		combinePhasors([
-			{ phasor: a, factor: third },
-			{ phasor: b, factor: third, turn_deg: b_deg },
-			{ phasor: c, factor: third, turn_deg: c_deg }
-		]);
-	return { zero: turned(0, 0), positive: turned(120, 240), negative: turned(240, 120) };
+	const [x, y, z] = [a, b, c].map(rectangular) as [OrderPhasors, OrderPhasors, OrderPhasors];
+	const sequence = (sense: 0 | 1 | -1): Phasor => {
+		const { re, im } = sequenceOfOrder(x, y, z, 0, sense);
+		return { rms: Math.hypot(re, im), phase_deg: (Math.atan2(im, re) * 180) / Math.PI };
+	};
+	return { zero: sequence(0), positive: sequence(1), negative: sequence(-1) };
+}
+
+function rectangular({ rms, phase_deg }: Phasor): OrderPhasors {
+	const angle_rad = (phase_deg * Math.PI) / 180;
+	return { re: Float64Array.of(rms * Math.cos(angle_rad)), im: Float64Array.of(rms * Math.sin(angle_rad)) };
 }
 
 /** Negative- and zero-sequence unbalance in percent of the positive sequence (IEC 61000-4-30, 5.7). */
