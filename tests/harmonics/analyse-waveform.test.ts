@@ -270,7 +270,14 @@ describe('flagged windows', () => {
 		};
 		const analysis = analyse(synthesiseRecording(truth));
 		expect([...analysis.flagged]).toEqual([0, 0, 1, 0, 0, 0, 0, 1, 0]);
-		expect(codes(analysis)).toEqual(expect.arrayContaining(['swell', 'interruption']));
+		// One conductor without voltage is a dip of the system; an interruption takes all of them.
+		expect(codes(analysis)).toEqual(expect.arrayContaining(['swell', 'dip']));
+		expect(codes(analysis)).not.toContain('interruption');
+		for (const c of [0, 1, 2])
+			truth.channels[c] = { ...truth.channels[c]!, events: [{ from_s: 1.5, to_s: 1.55, factor: 0 }] };
+		const interrupted = analyse(synthesiseRecording(truth));
+		expect(codes(interrupted)).toContain('interruption');
+		expect([...interrupted.flagged]).toEqual([0, 0, 0, 0, 0, 0, 0, 1, 0]);
 	});
 
 	it('without a nominal voltage nothing is flagged, and that is said', () => {

@@ -2,7 +2,7 @@ import { formatPhase, type Phase, type PhaseNames } from '../recording/phase';
 import type { CaptureSource } from '../recording/sample-source';
 import type { FlatTops } from './engine/flat-tops';
 import { stretchDuration_s, type Stretch } from './engine/stretches';
-import type { ChannelEvent } from './flag-windows';
+import type { CaptureEvent } from './flag-windows';
 import { findClipping } from './quality/clipping';
 import { findConnectionFaults, findNegativeRotation } from './quality/connection';
 import { findDeadChannels } from './quality/dead-channel';
@@ -34,7 +34,7 @@ export interface InspectionContext {
 	nominalVoltages_V: Partial<Record<Phase, number>>;
 	names: PhaseNames;
 	/** null when no nominal voltage was given and nothing could be looked for. */
-	events: readonly ChannelEvent[] | null;
+	events: readonly CaptureEvent[] | null;
 }
 
 const RANK: Record<QualitySeverity, number> = { blocks: 0, warns: 1, notes: 2 };
@@ -94,11 +94,12 @@ function describeEvents({ events, channels, names }: InspectionContext): Quality
 	const told = events.slice(0, MOST_EVENTS_TOLD).map((event) => ({
 		...note(
 			event.kind,
-			`${formatPhase(event.phase, names)}: ${event.kind} to ${event.extreme_pct.toFixed(1)} % of nominal, ` +
-				`${event.from.toFixed(3)} s after the start, ` +
-				`for ${((event.to - event.from) * 1000).toFixed(0)} ms. The windows it touches are flagged.`
+			`${event.phases.map(({ phase }) => formatPhase(phase, names)).join(', ')}: ${event.kind} to ` +
+				`${event.extreme_pct.toFixed(1)} % of nominal, ${event.start_s.toFixed(3)} s after the start, ` +
+				`for ${(event.duration_s * 1000).toFixed(0)} ms${event.isOpen ? ' and on at the end of the record' : ''}. ` +
+				`The windows it touches are flagged.`
 		),
-		channelIndex: event.channelIndex
+		channelIndex: event.phases.length === 1 ? event.phases[0]!.channelIndex : null
 	}));
 	if (events.length <= MOST_EVENTS_TOLD) return told;
 	return [

@@ -2,7 +2,7 @@ import { createScriptKernels } from '../../numerics/kernels/script-kernels';
 import type { KernelShape, SignalKernels } from '../../numerics/kernels/signal-kernels';
 import { squaresAtEnds } from '../../numerics/stats/windowed-rms';
 import type { CaptureSource } from '../../recording/sample-source';
-import { halfCycleRms, type HalfCycleRms } from '../events/half-cycle-rms';
+import { createHalfCycles, measureHalfCycles, type HalfCycles } from '../events/half-cycle-rms';
 import { ORDER_STRIDE } from '../intervals';
 import { meanProduct } from '../powers';
 import type { ChannelAnalysis, ChannelMapping } from '../waveform-analysis';
@@ -20,10 +20,18 @@ export interface WindowBlock {
 	/** Per pair of voltage and current: mean of u·i of each window, W; NaN where either has no data. */
 	products_W: Float64Array[];
 	/** Per mapping: Urms(1/2) of voltages in primary volts; null for currents. */
-	halfCycles: (HalfCycleRms | null)[];
+	halfCycles: (HalfCycleRows | null)[];
 	/** Per mapping. */
 	flatTops: FlatTops[];
 	missingSamples: number[];
+}
+
+/** HalfCycles of consecutive windows. */
+export interface HalfCycleRows {
+	/** [windows] */
+	first: Float64Array;
+	/** [windows × 2·cyclesPerWindow] */
+	rms: Float64Array;
 }
 
 export interface AnalystSetup {
@@ -42,6 +50,7 @@ export class WindowAnalyst {
 	private readonly kernels: SignalKernels;
 	private readonly feed: SampleFeed;
 	private readonly lines: Float64Array;
+	private readonly half: HalfCycles;
 
 	constructor(
 		private readonly source: CaptureSource,
@@ -53,26 +62,27 @@ export class WindowAnalyst {
 		const indexes = mappings.map((m) => m.channelIndex);
 		this.feed = new SampleFeed(source.samples, source.sampleCount, indexes, this.kernels);
 		this.lines = new Float64Array(plan.spectrum.lineCount);
+		this.half = createHalfCycles(plan.cyclesPerWindow);
 	}
 
 	/** windows  consecutive, in order of time; they may overlap at a tick */
 	analyse(windows: readonly TrackedWindow[]): WindowBlock {
-		const { mappings, pairs } = this.setup;
+		const { mappings, pairs, plan } = this.setup;
 		const block: WindowBlock = {
 			windows: [...windows],
 			channels: mappings.map((m) => emptyChannel(this.source.channels[m.channelIndex]!, m, windows.length)),
 			products_W: pairs.map(() => new Float64Array(windows.length).fill(NaN)),
-			halfCycles: mappings.map((m) => (m.quantity === 'voltage' ? emptyHalfCycles() : null)),
+			halfCycles: mappings.map((m) =>
+				m.quantity === 'voltage' ? emptyHalfCycles(windows.length, plan.cyclesPerWindow) : null
+			),
 			flatTops: mappings.map(noFlatTops),
 			missingSamples: mappings.map(() => 0)
 		};
-		const half = mappings.map((): HalfCycleRms[] => []);
-		windows.forEach((window, row) => this.addWindow(block, half, window, row));
-		block.halfCycles = block.halfCycles.map((none, m) => (none === null ? null : joinHalfCycles(half[m]!)));
+		windows.forEach((window, row) => this.addWindow(block, window, row));
 		return block;
 	}
 
-	private addWindow(block: WindowBlock, half: HalfCycleRms[][], window: TrackedWindow, row: number): void {
+	private addWindow(block: WindowBlock, window: TrackedWindow, row: number): void {
 		const { plan, mappings, reference, pairs } = this.setup;
 		const { spectrum, cyclesPerWindow, stretch } = plan;
 		const { kernels, feed } = this;
@@ -90,7 +100,7 @@ export class WindowAnalyst {
 			? block.channels[reference]!.phases_deg[row * ORDER_STRIDE + 1]!
 			: NaN;
 		mappings.forEach((mapping, m) => {
-			if (mapping.quantity === 'voltage') half[m]!.push(this.halfCyclesOf(block, window, row, m, start));
+			if (mapping.quantity === 'voltage') this.addHalfCycles(block, window, row, m);
 			referPhases(block.channels[m]!, row, phase_deg, spectrum.highestOrder);
 		});
 		pairs.forEach(({ voltage, current }, p) => {
@@ -129,27 +139,16 @@ export class WindowAnalyst {
 		return true;
 	}
 
-	private halfCyclesOf(
-		block: WindowBlock,
-		window: TrackedWindow,
-		row: number,
-		m: number,
-		start: number
-	): HalfCycleRms {
-		const { kernels, setup, feed, source } = this;
+	private addHalfCycles(block: WindowBlock, window: TrackedWindow, row: number, m: number): void {
+		const { kernels, setup, feed, source, half } = this;
+		const rows = block.halfCycles[m]!;
+		const { base } = feed;
+		const end = Math.min(source.sampleCount, setup.plan.stretch.toSample, base + kernels.shape.capacity);
 		const phase_deg = block.channels[m]!.phases_deg[row * ORDER_STRIDE + 1]!;
-		const held = Math.min(source.sampleCount, setup.plan.stretch.toSample) - feed.base;
-		const values = halfCycleRms(
-			kernels.samples[m]!.subarray(0, Math.min(held, kernels.shape.capacity)),
-			[{ start, length: window.length, phase_deg }],
-			setup.plan.cyclesPerWindow
-		);
+		measureHalfCycles({ samples: kernels.samples[m]!, base, end }, window, phase_deg, half);
 		const size = Math.abs(setup.mappings[m]!.toPrimary);
-		return {
-			starts: values.starts.map((s) => s + feed.base),
-			lengths: values.lengths,
-			rms: values.rms.map((v) => v * size)
-		};
+		rows.first[row] = half.first;
+		for (let k = 0; k < half.rms.length; k++) rows.rms[row * half.rms.length + k] = half.rms[k]! * size;
 	}
 }
 
@@ -159,19 +158,9 @@ function countMissing(samples: Float64Array, from: number, to: number): number {
 	return count;
 }
 
-function emptyHalfCycles(): HalfCycleRms {
-	return { starts: new Float64Array(0), lengths: new Float64Array(0), rms: new Float64Array(0) };
-}
-
-function joinHalfCycles(parts: readonly HalfCycleRms[]): HalfCycleRms {
-	const join = (name: keyof HalfCycleRms) => {
-		const joined = new Float64Array(parts.reduce((sum, part) => sum + part[name].length, 0));
-		let at = 0;
-		for (const part of parts) {
-			joined.set(part[name], at);
-			at += part[name].length;
-		}
-		return joined;
+function emptyHalfCycles(windows: number, cyclesPerWindow: number): HalfCycleRows {
+	return {
+		first: new Float64Array(windows).fill(NaN),
+		rms: new Float64Array(windows * 2 * cyclesPerWindow).fill(NaN)
 	};
-	return { starts: join('starts'), lengths: join('lengths'), rms: join('rms') };
 }

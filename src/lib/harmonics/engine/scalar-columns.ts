@@ -1,0 +1,133 @@
+import type { AggregationRule } from '../aggregation/column-sums';
+import type { Phase } from '../../recording/phase';
+import { LINE_PHASES } from '../../recording/phase';
+import { ORDER_STRIDE } from '../intervals';
+import { phaseCurrents, phaseVoltages } from '../quality/fundamental-phasors';
+import { sequenceComponents, unbalance } from '../sequence/sequence-components';
+import type { ChannelAnalysis, ChannelMapping, WaveformWindows } from '../waveform-analysis';
+
+/** One figure per interval that is followed over time, beside the levels by order. */
+export type ScalarMeasure =
+	| 'active-power'
+	| 'fundamental-active-power'
+	| 'fundamental-reactive-power'
+	| 'apparent-power'
+	| 'negative-sequence-voltage'
+	| 'zero-sequence-voltage'
+	| 'negative-sequence-current'
+	| 'peak'
+	| 'dc';
+
+export type ScalarPhase = Phase | 'total';
+
+export interface ScalarColumn {
+	measure: ScalarMeasure;
+	phase: ScalarPhase;
+	quantity: 'voltage' | 'current' | 'power';
+	unit: 'W' | 'var' | 'VA' | '%' | 'V' | 'A';
+	rule: AggregationRule;
+	/** Value of one window; NaN = no data. */
+	of: (span: WaveformWindows, window: number) => number;
+}
+
+/**
+ * The scalars that a capture with these channels has.
+ * Powers are those of the conductors with a voltage to neutral and a current; the total stands where all of them have data.
+ * source  IEEE Std 1459-2010, 3.1.2 (from memory); unbalance IEC 61000-4-30:2015, 5.7 (from memory)
+ */
+export function scalarColumns(
+	mappings: readonly ChannelMapping[],
+	pairs: readonly { voltage: number; current: number }[]
+): ScalarColumn[] {
+	return [
+		...mappings.flatMap((mapping, m) => channelColumns(mapping, m)),
+		...powerColumns(mappings, pairs),
+		...unbalanceColumns(mappings)
+	];
+}
+
+function channelColumns({ quantity, phase }: ChannelMapping, m: number): ScalarColumn[] {
+	const unit = quantity === 'voltage' ? 'V' : 'A';
+	return [
+		{ measure: 'peak', phase, quantity, unit, rule: 'max', of: (span, w) => span.channels[m]!.peak[w]! },
+		{ measure: 'dc', phase, quantity, unit, rule: 'mean', of: (span, w) => span.channels[m]!.dc[w]! }
+	];
+}
+
+type PhaseValue = (span: WaveformWindows, pair: number, window: number) => number;
+
+function powerColumns(
+	mappings: readonly ChannelMapping[],
+	pairs: readonly { voltage: number; current: number }[]
+): ScalarColumn[] {
+	const kinds: [ScalarMeasure, ScalarColumn['unit'], PhaseValue][] = [
+		['active-power', 'W', (span, p, w) => span.powers[p]!.activePower_W[w]!],
+		['fundamental-active-power', 'W', (span, p, w) => span.powers[p]!.fundamentalActivePower_W[w]!],
+		['fundamental-reactive-power', 'var', (span, p, w) => span.powers[p]!.fundamentalReactivePower_var[w]!],
+		[
+			'apparent-power',
+			'VA',
+			(span, p, w) => span.channels[pairs[p]!.voltage]!.rms[w]! * span.channels[pairs[p]!.current]!.rms[w]!
+		]
+	];
+	return kinds.flatMap(([measure, unit, value]): ScalarColumn[] => {
+		const common = { measure, unit, quantity: 'power', rule: 'mean' } as const;
+		const each = pairs.map(({ current }, p): ScalarColumn => ({
+			...common,
+			phase: mappings[current]!.phase,
+			of: (span, w) => value(span, p, w)
+		}));
+		if (pairs.length < 2 || measure === 'apparent-power') return each;
+		const total: ScalarColumn = {
+			...common,
+			phase: 'total',
+			of: (span, w) => pairs.reduce((sum, _, p) => sum + value(span, p, w), 0)
+		};
+		return [...each, total];
+	});
+}
+
+function unbalanceColumns(mappings: readonly ChannelMapping[]): ScalarColumn[] {
+	const columns: ScalarColumn[] = [];
+	const has = (quantity: 'voltage' | 'current', phases: readonly Phase[]) =>
+		phases.every((phase) => mappings.some((m) => m.quantity === quantity && m.phase === phase));
+	const toNeutral = has('voltage', LINE_PHASES);
+	const voltage = { phase: 'total', quantity: 'voltage', unit: '%', rule: 'rms' } as const;
+	if (toNeutral || has('voltage', ['L1L2', 'L2L3', 'L3L1'])) {
+		columns.push({
+			...voltage,
+			measure: 'negative-sequence-voltage',
+			of: (span, w) => unbalanceOf(phaseVoltages(span.channels.map((c) => oneWindow(c, w)))).u2_pct
+		});
+	}
+	if (toNeutral) {
+		columns.push({
+			...voltage,
+			measure: 'zero-sequence-voltage',
+			of: (span, w) => unbalanceOf(phaseVoltages(span.channels.map((c) => oneWindow(c, w)))).u0_pct
+		});
+	}
+	if (has('current', LINE_PHASES)) {
+		columns.push({
+			...voltage,
+			quantity: 'current',
+			measure: 'negative-sequence-current',
+			of: (span, w) => unbalanceOf(phaseCurrents(span.channels.map((c) => oneWindow(c, w)))).u2_pct
+		});
+	}
+	return columns;
+}
+
+function unbalanceOf(phasors: ReturnType<typeof phaseVoltages>): { u2_pct: number; u0_pct: number } {
+	const { L1, L2, L3 } = phasors;
+	return L1 && L2 && L3 ? unbalance(sequenceComponents(L1, L2, L3)) : { u2_pct: NaN, u0_pct: NaN };
+}
+
+function oneWindow(channel: ChannelAnalysis, w: number): ChannelAnalysis {
+	return {
+		...channel,
+		rms: channel.rms.subarray(w, w + 1),
+		components: channel.components.subarray(w * ORDER_STRIDE, (w + 1) * ORDER_STRIDE),
+		phases_deg: channel.phases_deg.subarray(w * ORDER_STRIDE, (w + 1) * ORDER_STRIDE)
+	};
+}
