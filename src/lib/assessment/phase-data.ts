@@ -17,6 +17,8 @@ export interface PhaseData {
 export function collectPhaseData(series: IntervalSeries[]): PhaseData[] {
 	const groups = new Map<string, IntervalSeries[]>();
 	for (const one of series) {
+		// No rule reads two-hour values; they are there to be looked at.
+		if (one.interval === '2h') continue;
 		if (one.subgroups.length !== one.starts_ms.length * ORDER_STRIDE)
 			throw new Error('an interval series has a matrix of the wrong length');
 		const key = `${one.quantity}/${one.phase}/${one.interval}`;

@@ -91,6 +91,7 @@ export class VoltageEventDetector {
 	feed(channel: number, start_s: number, cycle_s: number, value: number): boolean {
 		const { latest, declared } = this;
 		if (start_s < latest.starts_s[channel]! + cycle_s / 4) return this.isInEvent();
+		if (start_s > latest.starts_s[channel]! + 1.75 * cycle_s) this.markGap();
 		latest.starts_s[channel] = start_s;
 		latest.cycles_s[channel] = cycle_s;
 		if (Number.isNaN(value)) {
@@ -137,6 +138,10 @@ export class VoltageEventDetector {
 	private forget(channel: number): void {
 		this.latest.levels_pct[channel] = NaN;
 		this.declared.levels_pct[channel] = NaN;
+		this.markGap();
+	}
+
+	private markGap(): void {
 		for (const event of this.openEvents()) event.hasGap = true;
 	}
 

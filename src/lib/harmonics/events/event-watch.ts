@@ -39,11 +39,11 @@ export class EventWatch {
 		if (this.isBeyond(level_pct)) isOut[channel] = 1;
 		else if (this.hasReturned(level_pct)) isOut[channel] = 0;
 		if (this.open === null) {
-			if (this.begins()) this.begin(channel);
+			if (isOut[channel] === 1 && this.begins(level_pct, latest.starts_s[channel]!)) this.begin(channel);
 			return null;
 		}
 		const at_s = latest.starts_s[channel]!;
-		if (this.ends()) {
+		if (this.ends(level_pct, at_s)) {
 			if (wasOut) this.recordOf(this.open, channel).end_s = at_s;
 			return this.close(at_s, at_s + latest.cycles_s[channel]! / 2, false);
 		}
@@ -67,25 +67,28 @@ export class EventWatch {
 	}
 
 	/** A dip or swell begins on any channel, an interruption when it has reached all. */
-	private begins(): boolean {
-		return this.kind === 'interruption'
-			? this.known().every((c) => this.isBeyond(this.latest.levels_pct[c]!))
-			: this.known().some((c) => this.isBeyond(this.latest.levels_pct[c]!));
+	private begins(level_pct: number, at_s: number): boolean {
+		if (!this.isBeyond(level_pct)) return false;
+		return this.kind !== 'interruption' || this.everyKnown(at_s, (other_pct) => this.isBeyond(other_pct));
 	}
 
 	/** A dip or swell ends when every channel has returned, an interruption when any has. */
-	private ends(): boolean {
-		return this.kind === 'interruption'
-			? this.known().some((c) => this.hasReturned(this.latest.levels_pct[c]!))
-			: this.known().every((c) => this.hasReturned(this.latest.levels_pct[c]!));
+	private ends(level_pct: number, at_s: number): boolean {
+		if (!this.hasReturned(level_pct)) return false;
+		return this.kind === 'interruption' || this.everyKnown(at_s, (other_pct) => this.hasReturned(other_pct));
 	}
 
-	private known(): number[] {
-		const channels: number[] = [];
-		this.latest.levels_pct.forEach((level, c) => {
-			if (!Number.isNaN(level)) channels.push(c);
-		});
-		return channels;
+	/** Whether all channels with a value of about now pass; one that has gone silent has no say. */
+	private everyKnown(at_s: number, passes: (level_pct: number) => boolean): boolean {
+		const { levels_pct } = this.latest;
+		for (let c = 0; c < levels_pct.length; c++)
+			if (this.isKnown(c, at_s) && !passes(levels_pct[c]!)) return false;
+		return true;
+	}
+
+	private isKnown(channel: number, at_s: number): boolean {
+		const { levels_pct, starts_s, cycles_s } = this.latest;
+		return !Number.isNaN(levels_pct[channel]!) && at_s - starts_s[channel]! < 2 * cycles_s[channel]!;
 	}
 
 	private begin(channel: number): void {
@@ -104,7 +107,8 @@ export class EventWatch {
 			hasGap: false
 		};
 		this.open = event;
-		for (const c of this.known()) if (this.isOut[c] === 1) this.extend(event, c, true);
+		for (let c = 0; c < this.isOut.length; c++)
+			if (this.isOut[c] === 1 && this.isKnown(c, event.start_s)) this.extend(event, c, true);
 	}
 
 	private extend(event: VoltageEvent, channel: number, wasOut: boolean): void {

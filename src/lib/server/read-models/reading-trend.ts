@@ -43,7 +43,8 @@ export interface PercentileTable {
 /** Intervals from which on a line shows a course. */
 const FEWEST_FOR_A_COURSE = 12;
 
-const RANK: Record<IntervalKind, number> = { window: 0, '3s': 1, '10min': 2 };
+/** Longer kinds say more, up to those that limits are stated for: two-hour values are shown where they are asked for. */
+const RANK: Record<IntervalKind, number> = { '2h': 0, window: 1, '3s': 2, '10min': 3 };
 const printable = (value: number): number | null =>
 	Number.isFinite(value) ? Number(value.toPrecision(7)) : null;
 
@@ -105,7 +106,8 @@ export function intervalTrend(
 		.sort((a, b) => RANK[b] - RANK[a]);
 	const countOf = (kind: IntervalKind) => rows.find((row) => row.interval === kind)?.interval_count ?? 0;
 	// The longest kind says most, but a handful of points is no course over time.
-	const usual = usable.find((kind) => countOf(kind) >= FEWEST_FOR_A_COURSE) ?? usable.at(-1);
+	const judged = usable.filter((kind) => kind !== '2h');
+	const usual = judged.find((kind) => countOf(kind) >= FEWEST_FOR_A_COURSE) ?? judged.at(-1);
 	const interval = usable.find((kind) => kind === asked.interval) ?? usual;
 	const chosen = rows.filter((row) => row.interval === interval);
 	const first = chosen[0];

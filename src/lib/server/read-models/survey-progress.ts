@@ -45,8 +45,8 @@ async function captures(
 	};
 }
 
-/** Of several kinds of interval that one analysis holds, the longest is what people count in. */
-const LENGTH_RANK: Record<IntervalKind, number> = { window: 0, '3s': 1, '10min': 2 };
+/** Of several kinds of interval that one analysis holds, people count in the longest that limits are stated for. */
+const LENGTH_RANK: Record<IntervalKind, number> = { '2h': 0, window: 1, '3s': 2, '10min': 3 };
 
 async function readings(db: Db, scope: Scope, surveyId: string): Promise<Facts['readings']> {
 	const rows = await db('analysis_series as s')

@@ -5,7 +5,12 @@ import type { SheetContext } from '../sheet-context';
 import { heading, paragraph, ruledTable, soft } from '../typeset';
 
 const SEVERITY = { blocks: 'blocks a verdict', warns: 'warning', notes: 'note' } as const;
-const INTERVAL: Record<string, string> = { window: '10/12 cycles', '3s': '3 s', '10min': '10 min' };
+const INTERVAL: Record<string, string> = {
+	window: '10/12 cycles',
+	'3s': '3 s',
+	'10min': '10 min',
+	'2h': '2 h'
+};
 
 export function qualitySection(context: SheetContext): Content[] {
 	const { quality, site } = context.model;

@@ -7,7 +7,7 @@ const query = z.object({
 	quantity: z.enum(['voltage', 'current']).catch('voltage'),
 	window: z.coerce.number().int().min(1).nullable().catch(null),
 	order: z.union([z.literal('total'), z.coerce.number().int().min(1).max(MAX_ORDER)]).catch('total'),
-	interval: z.enum(['window', '3s', '10min']).nullable().catch(null)
+	interval: z.enum(['window', '3s', '10min', '2h']).nullable().catch(null)
 });
 
 export function parseReadingsQuery(parameters: URLSearchParams) {
