@@ -73,7 +73,18 @@ const MAY_ENTER = {
 };
 
 export default ts.config(
-	{ ignores: ['build/', '.svelte-kit/', 'node_modules/', 'data/', 'test-results/', 'coverage/'] },
+	{
+		ignores: [
+			'build/',
+			'.svelte-kit/',
+			'node_modules/',
+			'data/',
+			'test-results/',
+			'coverage/',
+			// AssemblyScript, which is no TypeScript.
+			'src/lib/numerics/kernels/assembly/'
+		]
+	},
 	js.configs.recommended,
 	...ts.configs.recommended,
 	...svelte.configs.recommended,

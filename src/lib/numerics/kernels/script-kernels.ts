@@ -1,8 +1,8 @@
 import { executeRealDft, planRealDft } from '../dft/real-dft';
 import { interpolateEvenly, planInterpolator } from '../resample/interpolator';
+import { checkRowBounds } from './row-bounds';
 import type { KernelShape, RawFormat, RowLayout, SignalKernels, StretchFigures } from './signal-kernels';
 
-const VALUE_BYTES: Record<RawFormat, number> = { int16: 2, int32: 4, float32: 4 };
 const MISSING: Record<RawFormat, number> = { int16: -(2 ** 15), int32: -(2 ** 31), float32: NaN };
 
 /** The kernels in plain script over the general-purpose transform: reference of the tests, and fallback. */
@@ -18,14 +18,12 @@ export function createScriptKernels(shape: KernelShape): SignalKernels {
 	const spectra = buffers(2 * lineCount);
 
 	function decodeRows(layout: RowLayout, count: number, at: number): void {
+		checkRowBounds(shape, layout, count, at);
 		const { format, rowBytes } = layout;
-		if (count * rowBytes > raw.length) throw new RangeError('more rows than the raw buffer holds');
 		for (let c = 0; c < channelCount; c++) {
 			const into = samples[c]!;
 			const factor = layout.factors[c]!;
 			const addition = layout.additions[c]!;
-			const last = layout.offsets[c]! + VALUE_BYTES[format];
-			if (last > rowBytes) throw new RangeError('a channel lies outside the row');
 			let place = layout.offsets[c]!;
 			for (let row = 0; row < count; row++, place += rowBytes) {
 				const value =
