@@ -22,7 +22,7 @@ beforeAll(async () => {
 });
 afterAll(() => world.close());
 
-const ASKED = { quantity: 'current', window: null, order: 5, interval: null } as const;
+const ASKED = { view: 'spectrum', quantity: 'current', window: null, order: 5, interval: null } as const;
 
 async function analysed(files: Parameters<typeof upload>[3], point = {}) {
 	const { surveyId } = await surveyAtPoint(world.db, owner, point);

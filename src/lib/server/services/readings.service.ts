@@ -6,7 +6,8 @@ import { readWaveformSlice, type WaveformRange, type WaveformSlice } from '../an
 import { requirePermission } from '../auth/require-permission';
 import type { CaptureRow } from '../db/rows';
 import { captureSurvey } from '../read-models/capture-list';
-import { readings, type Readings, type ReadingsQuestion } from '../read-models/readings';
+import { READING_VIEWS, type ReadingView } from '../read-models/readings/reading-views';
+import { readings, type Readings, type ReadingsQuestion } from '../read-models/readings/readings';
 import { analysesRepository } from '../repositories/analyses.repository';
 import { capturesRepository } from '../repositories/captures.repository';
 import { scopeOf } from '../repositories/scope';
@@ -19,6 +20,9 @@ export interface ReadingsPage {
 	notAnalysed: number;
 	/** The capture shown; null when none has been analysed. */
 	captureId: string | null;
+	/** The view shown, and all there are. */
+	view: ReadingView;
+	views: typeof READING_VIEWS;
 	readings: Readings | null;
 }
 
@@ -56,6 +60,8 @@ export function createReadingsService({ db, blobs }: ServiceDeps) {
 			})),
 			notAnalysed: rows.length - captures.length,
 			captureId: shown?.id ?? null,
+			view: asked.view,
+			views: READING_VIEWS,
 			readings: shown ? await readings(db, scope, survey, shown, asked) : null
 		};
 	}

@@ -1,9 +1,11 @@
 import { z } from 'zod';
 import { MAX_ORDER } from '$lib/harmonics/intervals';
+import { READING_VIEW_NAMES } from '$lib/server/read-models/readings/reading-views';
 
 /** What the address asks for. Whatever is not understood falls back: an old link must still open. */
 const query = z.object({
 	capture: z.string().nullable().catch(null),
+	view: z.enum(READING_VIEW_NAMES).catch('spectrum'),
 	quantity: z.enum(['voltage', 'current']).catch('voltage'),
 	window: z.coerce.number().int().min(1).nullable().catch(null),
 	order: z.union([z.literal('total'), z.coerce.number().int().min(1).max(MAX_ORDER)]).catch('total'),
@@ -14,6 +16,7 @@ export function parseReadingsQuery(parameters: URLSearchParams) {
 	const given = (name: string) => parameters.get(name) || null;
 	return query.parse({
 		capture: given('capture'),
+		view: given('view'),
 		quantity: given('quantity'),
 		window: given('window') === null || given('window') === 'all' ? null : given('window'),
 		order: given('order') ?? 'total',

@@ -1,0 +1,40 @@
+import type { PointSystem } from '../../../harmonics/nominal-voltages';
+import type { WindowRows as ConductorWindows } from '../../../harmonics/order-phasors';
+import type { LinePhase, PointWindows } from '../../../harmonics/power/point-windows';
+import type { Phase } from '../../../recording/phase';
+import { bufferToFloat64 } from '../../analysis/series-codec';
+import type { AnalysisSeriesRow } from '../../db/rows';
+
+export interface PointContext {
+	system: PointSystem;
+	highestOrder: number;
+	/** Name of a conductor or pair at this point. */
+	label: (phase: Phase) => string;
+}
+
+/** The stored windows of all channels as the powers and sequences of a point need them. */
+export function pointWindows(rows: readonly AnalysisSeriesRow[], context: PointContext): PointWindows {
+	const point: PointWindows = {
+		system: context.system,
+		highestOrder: context.highestOrder,
+		voltages: {},
+		currents: {}
+	};
+	for (const row of rows)
+		(row.quantity === 'voltage' ? point.voltages : point.currents)[row.phase] ??= conductorWindows(row);
+	return point;
+}
+
+function conductorWindows({ rms, dc, components, phases_deg }: AnalysisSeriesRow): ConductorWindows {
+	if (!components || !phases_deg || !dc)
+		throw new Error('phasors are asked of a series that is not made of windows');
+	return {
+		rms: bufferToFloat64(rms),
+		dc: bufferToFloat64(dc),
+		components: bufferToFloat64(components),
+		phases_deg: bufferToFloat64(phases_deg)
+	};
+}
+
+/** Mean of u·i of every window by conductor, where the analysis kept it; without it P is the sum over the orders. */
+export type SamplePowers_W = Partial<Record<LinePhase, Float64Array>>;

@@ -1,0 +1,18 @@
+/**
+ * The views of the readings page, in the order of its tabs. A further one is a line here, a read-model beside this file
+ * called from readings.ts, and a component shown by the page where `detail.kind` is its own.
+ */
+export const READING_VIEWS = [
+	{ view: 'spectrum', label: 'Spectrum' },
+	{ view: 'power', label: 'Power and direction' },
+	{ view: 'sequence', label: 'Sequence and unbalance' }
+] as const;
+
+export type ReadingView = (typeof READING_VIEWS)[number]['view'];
+
+export const READING_VIEW_NAMES = READING_VIEWS.map(({ view }) => view) as [ReadingView, ...ReadingView[]];
+
+/** A view that needs samples, asked of a log of intervals. */
+export interface NoWaveform {
+	kind: 'no-waveform';
+}

@@ -1,0 +1,118 @@
+import { MAX_ORDER, type IntervalKind } from '../../../harmonics/intervals';
+import type { QualityRemark } from '../../../harmonics/waveform-analysis';
+import { formatPhase, type Phase } from '../../../recording/phase';
+import { toAssessedPoint } from '../../../register/assessed-point';
+import { parseSummary } from '../../analysis/analysis-summary';
+import { readingBasis, type ReadingBasis } from '../../analysis/reading-basis';
+import type { Db } from '../../db/database';
+import type { CaptureRow } from '../../db/rows';
+import { analysesRepository } from '../../repositories/analyses.repository';
+import { limitSetsRepository } from '../../repositories/limit-sets.repository';
+import type { Scope } from '../../repositories/scope';
+import type { CaptureSurvey } from '../capture-list';
+import { intervalTrend, percentileTable, type IntervalTrend, type PercentileTable } from '../reading-trend';
+import { powerReadings, type PowerReadings } from './power-view';
+import type { NoWaveform, ReadingView } from './reading-views';
+import { sequenceReadings, type SequenceReadings } from './sequence-view';
+import { waveformReadings, type WaveformReadings } from './spectrum-view';
+import { byPhase, windowRows, type Quantity, type WindowChoice, type WindowRows } from './window-rows';
+
+export interface ReadingsQuestion {
+	view: ReadingView;
+	quantity: Quantity;
+	/** Window counted from 1; null = all windows taken together. */
+	window: number | null;
+	/** Order shown over time; 'total' is THD, or TDD where that is the limit's basis. */
+	order: number | 'total';
+	/** Null = the longest that holds two intervals or more. */
+	interval: IntervalKind | null;
+}
+
+export interface TrendReadings {
+	kind: 'trend';
+	percentiles: PercentileTable;
+}
+
+export interface Readings {
+	analysisId: string;
+	engineVersion: string;
+	analysedAt: string;
+	intervalKinds: IntervalKind[];
+	intervalCount: number;
+	flaggedCount: number;
+	quality: QualityRemark[];
+	/** Quantities that this capture holds. */
+	quantities: Quantity[];
+	quantity: Quantity;
+	basis: ReadingBasis;
+	/** What the window chooser shows; null for a log of intervals. */
+	choice: WindowChoice | null;
+	detail: WaveformReadings | TrendReadings | PowerReadings | SequenceReadings | NoWaveform;
+	/** Of the spectrum view only. */
+	trend: IntervalTrend | null;
+}
+
+/** All that one view of the readings page shows of one analysed capture. Null while the capture has no analysis. */
+export async function readings(
+	db: Db,
+	scope: Scope,
+	survey: CaptureSurvey,
+	capture: CaptureRow,
+	asked: ReadingsQuestion
+): Promise<Readings | null> {
+	const analyses = analysesRepository(db, scope);
+	const analysis = await analyses.currentOf(capture.id);
+	if (!analysis) return null;
+	const summary = parseSummary(analysis.summary_json);
+	const kinds = await analyses.intervalKindsOf(analysis.id);
+	const point = toAssessedPoint(survey.facts);
+	const limitSet =
+		survey.facts.limitSetId === null
+			? null
+			: await limitSetsRepository(db, scope.practiceId).byId(survey.facts.limitSetId);
+	const overview = await analyses.seriesOf(analysis.id);
+	const quantities = (['voltage', 'current'] as const).filter((quantity) =>
+		overview.some((row) => row.quantity === quantity)
+	);
+	const quantity = quantities.includes(asked.quantity) ? asked.quantity : (quantities[0] ?? asked.quantity);
+	const highestOrder = summary.kind === 'waveform' ? summary.highestOrder : MAX_ORDER;
+	const basis = readingBasis(limitSet, point, quantity, highestOrder);
+	const own = overview.filter((row) => row.quantity === quantity).sort(byPhase);
+	const label = (phase: Phase) => formatPhase(phase, survey.facts.phaseNames);
+	const windows =
+		summary.kind === 'waveform' ? await windowRows(db, scope, analysis, summary, asked.window) : null;
+	const detail = (): Readings['detail'] => {
+		if (asked.view !== 'spectrum')
+			return windows ? waveformView(asked.view, windows) : { kind: 'no-waveform' };
+		return summary.kind === 'waveform' && windows
+			? waveformReadings(windows, summary, { point, basis, label, quantity })
+			: { kind: 'trend', percentiles: percentileTable(own, { point, basis, label, highestOrder }) };
+	};
+	const waveformView = (view: Exclude<ReadingView, 'spectrum'>, rows: WindowRows) => {
+		const context = { system: survey.facts.system, highestOrder, label };
+		switch (view) {
+			case 'power':
+				return powerReadings(rows, context);
+			case 'sequence':
+				return sequenceReadings(rows, context);
+		}
+	};
+	return {
+		analysisId: analysis.id,
+		engineVersion: analysis.engine_version,
+		analysedAt: analysis.created_at,
+		intervalKinds: kinds,
+		intervalCount: summary.kind === 'waveform' ? summary.windowCount : summary.intervalCount,
+		flaggedCount: summary.flaggedCount,
+		quality: summary.quality,
+		quantities,
+		quantity,
+		basis,
+		choice: windows?.choice ?? null,
+		detail: detail(),
+		trend:
+			asked.view === 'spectrum'
+				? intervalTrend(own, kinds, { point, basis, label, highestOrder, asked })
+				: null
+	};
+}
