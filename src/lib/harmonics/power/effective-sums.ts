@@ -6,7 +6,8 @@ import type { ConductorReader, PointWindows } from './point-windows';
 /** Sums over windows from which the effective quantities and the positive sequence of three phases follow. */
 export class EffectiveSums {
 	readonly #fourWire: boolean;
-	readonly #neutralRows: PointWindows['currents']['N'];
+	readonly #neutralMeasured: boolean;
+	readonly #highestOrder: number;
 	readonly #neutral: OrderPhasors = emptyOrderPhasors();
 	#neutralSquare = NaN;
 	#voltage = 0;
@@ -20,42 +21,40 @@ export class EffectiveSums {
 	/** The rotation is told from the sums of both senses, kept side by side until then. */
 	#turned = { voltage: 0, current: 0, active: 0, reactive: 0 };
 
-	constructor(
-		readonly point: PointWindows,
-		readonly voltages: ConductorReader,
-		readonly currents: ConductorReader
-	) {
+	constructor(point: PointWindows) {
 		this.#fourWire = point.system === 'four-wire';
-		this.#neutralRows = this.#fourWire ? point.currents.N : undefined;
+		this.#neutralMeasured = this.#fourWire && point.currents.N !== undefined;
+		this.#highestOrder = point.highestOrder;
 	}
 
 	get neutral(): 'measured' | 'computed' | null {
 		if (!this.#fourWire) return null;
-		return this.#neutralRows ? 'measured' : 'computed';
+		return this.#neutralMeasured ? 'measured' : 'computed';
 	}
 
-	/** False when the measured neutral has no data in the window. */
-	canRead(window: number): boolean {
-		if (!this.#neutralRows) return true;
-		readOrderPhasors(this.#neutralRows, window, this.point.highestOrder, this.#neutral);
-		this.#neutralSquare = this.#neutralRows.rms[window]! ** 2;
+	/** Reads the neutral of the window; false when it is measured and has no data there. */
+	canRead(point: PointWindows, window: number): boolean {
+		const rows = point.currents.N;
+		if (!this.#neutralMeasured || !rows) return true;
+		readOrderPhasors(rows, window, this.#highestOrder, this.#neutral);
+		this.#neutralSquare = rows.rms[window]! ** 2;
 		return !Number.isNaN(this.#neutralSquare) && !Number.isNaN(this.#neutral.re[1]!);
 	}
 
 	/** Adds the window that the readers hold. */
-	add(): void {
-		const u = this.#effectiveVoltageSquares();
-		const i = this.#effectiveCurrentSquares();
+	add(voltages: ConductorReader, currents: ConductorReader): void {
+		const u = this.#effectiveVoltageSquares(voltages);
+		const i = this.#effectiveCurrentSquares(currents);
 		this.#voltage += u.all;
 		this.#voltage1 += u.fundamental;
 		this.#current += i.all;
 		this.#current1 += i.fundamental;
-		const straight = this.#sequencePower(1);
+		const straight = sequencePower(voltages, currents, 1);
 		this.#positiveVoltage += straight.voltage;
 		this.#positiveCurrent += straight.current;
 		this.#positiveActive += straight.active;
 		this.#positiveReactive += straight.reactive;
-		const turned = this.#sequencePower(-1);
+		const turned = sequencePower(voltages, currents, -1);
 		this.#turned.voltage += turned.voltage;
 		this.#turned.current += turned.current;
 		this.#turned.active += turned.active;
@@ -77,55 +76,55 @@ export class EffectiveSums {
 		};
 	}
 
-	#zeroSquare(reader: ConductorReader, order: number): number {
-		const { re, im } = sequenceOfOrder(...triple(reader), order, 0);
-		return re * re + im * im;
+	#zeroSquares(reader: ConductorReader): number {
+		let sum = 0;
+		for (let order = 0; order <= this.#highestOrder; order++) sum += zeroSquare(reader, order);
+		return sum;
 	}
 
-	#effectiveVoltageSquares(): { all: number; fundamental: number } {
-		const { voltages, point } = this;
+	#effectiveVoltageSquares(voltages: ConductorReader): { all: number; fundamental: number } {
 		const phases = voltages.squares.reduce((sum, square) => sum + square, 0);
 		const phases1 = fundamentalSquares(voltages);
-		let zero = 0;
-		for (let order = 0; order <= point.highestOrder; order++) zero += this.#zeroSquare(voltages, order);
 		const pairs = Number.isNaN(voltages.lineToLineSquares)
-			? lineToLineSquares(phases, zero)
+			? lineToLineSquares(phases, this.#zeroSquares(voltages))
 			: voltages.lineToLineSquares;
-		const pairs1 = lineToLineSquares(phases1, this.#zeroSquare(voltages, 1));
+		const pairs1 = lineToLineSquares(phases1, zeroSquare(voltages, 1));
 		// Without a zero sequence in sight, four wires are seen as three.
 		return this.#fourWire && voltages.origin === 'conductor'
 			? { all: (3 * phases + pairs) / 18, fundamental: (3 * phases1 + pairs1) / 18 }
 			: { all: pairs / 9, fundamental: pairs1 / 9 };
 	}
 
-	#effectiveCurrentSquares(): { all: number; fundamental: number } {
-		const { currents, point } = this;
+	#effectiveCurrentSquares(currents: ConductorReader): { all: number; fundamental: number } {
 		const lines = currents.squares.reduce((sum, square) => sum + square, 0);
 		const lines1 = fundamentalSquares(currents);
 		if (!this.#fourWire) return { all: lines / 3, fundamental: lines1 / 3 };
-		if (this.#neutralRows)
+		if (this.#neutralMeasured)
 			return {
 				all: (lines + this.#neutralSquare) / 3,
 				fundamental: (lines1 + this.#neutral.re[1]! ** 2 + this.#neutral.im[1]! ** 2) / 3
 			};
-		let zero = 0;
-		for (let order = 0; order <= point.highestOrder; order++) zero += this.#zeroSquare(currents, order);
 		return {
-			all: (lines + 9 * zero) / 3,
-			fundamental: (lines1 + 9 * this.#zeroSquare(currents, 1)) / 3
+			all: (lines + 9 * this.#zeroSquares(currents)) / 3,
+			fundamental: (lines1 + 9 * zeroSquare(currents, 1)) / 3
 		};
 	}
+}
 
-	#sequencePower(sense: 1 | -1) {
-		const u = sequenceOfOrder(...triple(this.voltages), 1, sense);
-		const i = sequenceOfOrder(...triple(this.currents), 1, sense);
-		return {
-			voltage: u.re * u.re + u.im * u.im,
-			current: i.re * i.re + i.im * i.im,
-			active: 3 * (u.re * i.re + u.im * i.im),
-			reactive: 3 * (u.im * i.re - u.re * i.im)
-		};
-	}
+function zeroSquare(reader: ConductorReader, order: number): number {
+	const { re, im } = sequenceOfOrder(...triple(reader), order, 0);
+	return re * re + im * im;
+}
+
+function sequencePower(voltages: ConductorReader, currents: ConductorReader, sense: 1 | -1) {
+	const u = sequenceOfOrder(...triple(voltages), 1, sense);
+	const i = sequenceOfOrder(...triple(currents), 1, sense);
+	return {
+		voltage: u.re * u.re + u.im * u.im,
+		current: i.re * i.re + i.im * i.im,
+		active: 3 * (u.re * i.re + u.im * i.im),
+		reactive: 3 * (u.im * i.re - u.re * i.im)
+	};
 }
 
 function triple(reader: ConductorReader): [OrderPhasors, OrderPhasors, OrderPhasors] {

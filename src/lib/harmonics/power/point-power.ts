@@ -49,93 +49,150 @@ export interface PointPower {
 	} | null;
 }
 
+/** Mean of u·i of each window by phase, W, where it was kept. */
+export type SamplePowers_W = Partial<Record<LinePhase, Float64Array>>;
+
+/** What the first windows added decide for all. */
+interface PowerPlan {
+	phases: readonly LinePhase[];
+	voltageOrigin: ConductorReader['origin'];
+	computed: ConductorReader['computed'];
+	fromSamples: boolean;
+	/** Every line conductor of the point has voltage and current. */
+	complete: boolean;
+	effective: EffectiveSums | null;
+	sums: PhaseSums[];
+}
+
 /**
- * Powers of a point over one window or several taken together: rms levels by root mean square, powers by mean.
- * windows         indexes; those in which a conductor has no data are left out
- * samplePowers_W  [windowCount] by phase: mean of u·i where it was kept; without it P is the sum over the orders
- * returns         load convention, P > 0 into the installation; null when no phase has voltage and current
- * source          IEEE Std 1459-2010, 3.1.2 and 3.2.3 (from memory). In a three-wire system two wattmeters are enough: the
- *                 third current and the star voltages follow from what is measured, and P is the same.
+ * Gathers windows, stretch after stretch, from which the powers of a point follow: rms levels by root mean square,
+ * powers by mean.
+ * source  IEEE Std 1459-2010, 3.1.2 and 3.2.3 (from memory). In a three-wire system two wattmeters are enough: the third
+ *         current and the star voltages follow from what is measured, and P is the same.
  */
+export class PointPowerSums {
+	#plan: PowerPlan | null = null;
+	readonly #positive = new Float64Array(ORDER_STRIDE);
+	readonly #negative = new Float64Array(ORDER_STRIDE);
+	#highestOrder = 0;
+	#count = 0;
+
+	/**
+	 * point           every stretch with the same conductors
+	 * windows         indexes into it; those in which a conductor has no data are left out
+	 * samplePowers_W  where it is given for every phase P is its mean, else the sum over the orders
+	 */
+	add(point: PointWindows, windows: readonly number[], samplePowers_W: SamplePowers_W = {}): void {
+		const voltages = voltageReader(point);
+		const currents = currentReader(point);
+		if (!voltages || !currents) return;
+		this.#highestOrder = point.highestOrder;
+		this.#plan ??= planPowers(point, voltages, currents, samplePowers_W);
+		const { phases, fromSamples, effective, sums } = this.#plan;
+		const places = phases.map(
+			(phase) => [voltages.phases.indexOf(phase), currents.phases.indexOf(phase)] as const
+		);
+		for (const window of windows) {
+			const voltageRead = voltages.read(window);
+			const currentRead = currents.read(window);
+			if (!voltageRead || !currentRead || (effective && !effective.canRead(point, window))) continue;
+			places.forEach(([u, i], p) => {
+				const sampled = fromSamples ? (samplePowers_W[phases[p]!]?.[window] ?? NaN) : NaN;
+				sums[p]!.add(
+					voltages.phasors[u]!,
+					currents.phasors[i]!,
+					voltages.squares[u]!,
+					currents.squares[i]!,
+					sampled
+				);
+			});
+			this.#countSigns(sums);
+			effective?.add(voltages, currents);
+			this.#count++;
+		}
+	}
+
+	#countSigns(sums: readonly PhaseSums[]): void {
+		for (let order = 0; order <= this.#highestOrder; order++) {
+			let active = 0;
+			for (const sum of sums) active += sum.lastActive[order]!;
+			if (active > 0) this.#positive[order]! += 1;
+			else if (active < 0) this.#negative[order]! += 1;
+		}
+	}
+
+	/** Load convention, P > 0 into the installation; null when no phase has voltage and current in any window. */
+	finish(): PointPower | null {
+		const plan = this.#plan;
+		const count = this.#count;
+		if (!plan || count === 0 || plan.phases.length === 0) return null;
+		const phases = plan.sums.map((sum, i): PhasePowers => ({
+			phase: plan.phases[i]!,
+			powers: singlePhasePower(sum.levels(count, plan.fromSamples)),
+			orders: sum.orders(count)
+		}));
+		return {
+			windowCount: count,
+			voltageOrigin: plan.voltageOrigin,
+			computed: plan.computed,
+			activePowerFrom: plan.fromSamples ? 'samples' : 'orders',
+			phases,
+			total: plan.complete ? this.#total(plan, phases, count) : null
+		};
+	}
+
+	#total(plan: PowerPlan, phases: readonly PhasePowers[], count: number): PointPower['total'] {
+		const added = (pick: (powers: SinglePhasePower) => number) =>
+			phases.reduce((sum, { powers }) => sum + pick(powers), 0);
+		const totals = {
+			activePower_W: added((p) => p.activePower_W),
+			fundamentalActivePower_W: added((p) => p.fundamentalActivePower_W),
+			fundamentalReactivePower_var: added((p) => p.fundamentalReactivePower_var)
+		};
+		const summed = phases.map(({ powers, orders }) => ({
+			apparentPower_VA: powers.apparentPower_VA,
+			activePower_W: powers.activePower_W,
+			budeanuReactivePower_var: sumOfOrders(orders.reactivePower_var, this.#highestOrder)
+		}));
+		return {
+			...totals,
+			orders: addOrders(phases, { positive: this.#positive, negative: this.#negative }, count),
+			effective: plan.effective ? threePhasePower({ ...plan.effective.levels(count), ...totals }) : null,
+			summed: plan.voltageOrigin === 'conductor' ? summedApparentPower(summed) : null,
+			neutral: plan.effective?.neutral ?? null
+		};
+	}
+}
+
+function planPowers(
+	point: PointWindows,
+	voltages: ConductorReader,
+	currents: ConductorReader,
+	samplePowers_W: SamplePowers_W
+): PowerPlan {
+	const phases = voltages.phases.filter((phase) => currents.phases.includes(phase));
+	const complete = phases.length === lineConductors(point).length;
+	return {
+		phases,
+		voltageOrigin: voltages.origin,
+		computed: [...voltages.computed, ...currents.computed],
+		fromSamples:
+			voltages.origin === 'conductor' && phases.every((phase) => samplePowers_W[phase] !== undefined),
+		complete,
+		effective: complete && phases.length === 3 ? new EffectiveSums(point) : null,
+		sums: phases.map(() => new PhaseSums(point.highestOrder))
+	};
+}
+
+/** Powers of a point over the windows of one stretch; see PointPowerSums. */
 export function pointPower(
 	point: PointWindows,
 	windows: readonly number[],
-	samplePowers_W: Partial<Record<LinePhase, Float64Array>> = {}
+	samplePowers_W: SamplePowers_W = {}
 ): PointPower | null {
-	const voltages = voltageReader(point);
-	const currents = currentReader(point);
-	if (!voltages || !currents) return null;
-	const phases = voltages.phases.filter((phase) => currents.phases.includes(phase));
-	if (phases.length === 0) return null;
-	const { highestOrder } = point;
-	const fromSamples =
-		voltages.origin === 'conductor' && phases.every((phase) => samplePowers_W[phase] !== undefined);
-	const sums = phases.map(() => new PhaseSums(highestOrder));
-	const complete = phases.length === lineConductors(point).length;
-	const threePhase = complete && phases.length === 3;
-	const effective = threePhase ? new EffectiveSums(point, voltages, currents) : null;
-	const totalPerWindow = {
-		positive: new Float64Array(ORDER_STRIDE),
-		negative: new Float64Array(ORDER_STRIDE)
-	};
-	let count = 0;
-	for (const window of windows) {
-		const voltageRead = voltages.read(window);
-		const currentRead = currents.read(window);
-		if (!voltageRead || !currentRead || (effective && !effective.canRead(window))) continue;
-		phases.forEach((phase, i) => {
-			const u = voltages.phases.indexOf(phase);
-			const c = currents.phases.indexOf(phase);
-			sums[i]!.add(
-				voltages.phasors[u]!,
-				currents.phasors[c]!,
-				voltages.squares[u]!,
-				currents.squares[c]!,
-				fromSamples ? samplePowers_W[phase]![window]! : NaN
-			);
-		});
-		for (let order = 0; order <= highestOrder; order++) {
-			const active = sums.reduce((sum, phase) => sum + phase.lastActive[order]!, 0);
-			totalPerWindow.positive[order]! += active > 0 ? 1 : 0;
-			totalPerWindow.negative[order]! += active < 0 ? 1 : 0;
-		}
-		effective?.add();
-		count++;
-	}
-	if (count === 0) return null;
-	const measured = sums.map((sum, i): PhasePowers => ({
-		phase: phases[i]!,
-		powers: singlePhasePower(sum.levels(count, fromSamples)),
-		orders: sum.orders(count)
-	}));
-	const summed = measured.map(({ powers, orders }) => ({
-		apparentPower_VA: powers.apparentPower_VA,
-		activePower_W: powers.activePower_W,
-		budeanuReactivePower_var: sumOfOrders(orders.reactivePower_var, highestOrder)
-	}));
-	const added = (pick: (powers: SinglePhasePower) => number) =>
-		measured.reduce((sum, { powers }) => sum + pick(powers), 0);
-	const totals = {
-		activePower_W: added((p) => p.activePower_W),
-		fundamentalActivePower_W: added((p) => p.fundamentalActivePower_W),
-		fundamentalReactivePower_var: added((p) => p.fundamentalReactivePower_var)
-	};
-	return {
-		windowCount: count,
-		voltageOrigin: voltages.origin,
-		computed: [...voltages.computed, ...currents.computed],
-		activePowerFrom: fromSamples ? 'samples' : 'orders',
-		phases: measured,
-		total: complete
-			? {
-					...totals,
-					orders: addOrders(measured, totalPerWindow, count),
-					effective: effective ? threePhasePower({ ...effective.levels(count), ...totals }) : null,
-					summed: voltages.origin === 'conductor' ? summedApparentPower(summed) : null,
-					neutral: effective?.neutral ?? null
-				}
-			: null
-	};
+	const sums = new PointPowerSums();
+	sums.add(point, windows, samplePowers_W);
+	return sums.finish();
 }
 
 function sumOfOrders(row: Float64Array, highestOrder: number): number {

@@ -1,6 +1,17 @@
 import { ORDER_STRIDE } from '../intervals';
-import { emptyOrderPhasors, readOrderPhasors, squareOfOrders, type OrderPhasors } from '../order-phasors';
-import { currentReader, lineConductors, type PointWindows } from '../power/point-windows';
+import {
+	emptyOrderPhasors,
+	readOrderPhasors,
+	squareOfOrders,
+	type OrderPhasors,
+	type WindowRows
+} from '../order-phasors';
+import {
+	currentReader,
+	lineConductors,
+	type ConductorReader,
+	type PointWindows
+} from '../power/point-windows';
 
 /** The neutral current over the windows chosen. Rows are [ORDER_STRIDE], index 0 dc; NaN = no data. */
 export interface NeutralLevels {
@@ -32,7 +43,7 @@ export interface NeutralCurrent {
 	ratioToLine: number;
 }
 
-class NeutralSums {
+class ConductorSums {
 	readonly #orders = new Float64Array(ORDER_STRIDE);
 	#square = 0;
 
@@ -58,67 +69,98 @@ class NeutralSums {
 }
 
 /**
- * Current of the neutral conductor, measured and as the sum of the line currents.
- * windows  indexes; those in which a conductor has no data are left out
- * returns  null for a point without a neutral of its own (three-wire; single-phase, where it is the line current), or
- *          where it is neither measured nor computable
- * source   I_N = I_L1 + I_L2 + I_L3 as phasors per order (Kirchhoff); a balanced one is 3·√(I3² + I9² + …)
+ * Gathers windows, stretch after stretch, from which the current of the neutral conductor follows, as measured and as
+ * the sum of the line currents.
+ * source  I_N = I_L1 + I_L2 + I_L3 as phasors per order (Kirchhoff); a balanced one is 3·√(I3² + I9² + …)
  */
-export function neutralCurrent(point: PointWindows, windows: readonly number[]): NeutralCurrent | null {
-	if (point.system === 'three-wire' || point.system === 'single-phase') return null;
-	const { highestOrder } = point;
-	const lines = currentReader(point);
-	const own = point.currents.N;
-	const complete = lines !== null && lines.phases.length === lineConductors(point).length;
-	if (!own && !complete) return null;
-	const measured = new NeutralSums();
-	const computed = new NeutralSums();
-	const lineSquares = new Float64Array(lines?.phases.length ?? 0);
-	const phasors = emptyOrderPhasors();
-	const sum = emptyOrderPhasors();
-	const leftOver = { straight: 0, turned: 0 };
-	let count = 0;
-	for (const window of windows) {
-		if (lines && !lines.read(window)) continue;
-		if (own) {
-			readOrderPhasors(own, window, highestOrder, phasors);
-			if (Number.isNaN(own.rms[window]!) || Number.isNaN(phasors.re[1]!)) continue;
-			measured.add(phasors, own.rms[window]! ** 2, highestOrder);
+export class NeutralCurrentSums {
+	readonly #measured = new ConductorSums();
+	readonly #computed = new ConductorSums();
+	readonly #phasors = emptyOrderPhasors();
+	readonly #sum = emptyOrderPhasors();
+	readonly #lineSquares = new Float64Array(3);
+	#has = { measured: false, computed: false };
+	#straight = 0;
+	#turned = 0;
+	#highestOrder = 0;
+	#count = 0;
+
+	/** windows: indexes; those in which a conductor has no data are left out. */
+	add(point: PointWindows, windows: readonly number[]): void {
+		if (point.system === 'three-wire' || point.system === 'single-phase') return;
+		const lines = currentReader(point);
+		const own = point.currents.N;
+		const complete = lines !== null && lines.phases.length === lineConductors(point).length;
+		this.#has = { measured: own !== undefined, computed: complete };
+		this.#highestOrder = point.highestOrder;
+		if (!own && !complete) return;
+		for (const window of windows) {
+			if (complete && !lines.read(window)) continue;
+			if (own && !this.#readMeasured(own, window)) continue;
+			if (complete) this.#addLines(lines);
+			if (complete && own) this.#compare();
+			this.#count++;
 		}
-		if (complete) {
-			addUp(lines.phasors, highestOrder, sum);
-			computed.add(sum, squareOfOrders(sum, highestOrder), highestOrder);
-			lines.squares.forEach((square, i) => (lineSquares[i]! += square));
-			if (own)
-				for (let order = 0; order <= highestOrder; order++) {
-					leftOver.straight +=
-						(phasors.re[order]! - sum.re[order]!) ** 2 + (phasors.im[order]! - sum.im[order]!) ** 2;
-					leftOver.turned +=
-						(phasors.re[order]! + sum.re[order]!) ** 2 + (phasors.im[order]! + sum.im[order]!) ** 2;
-				}
-		}
-		count++;
 	}
-	if (count === 0) return null;
-	const measuredLevels = own ? measured.finish(count, highestOrder) : null;
-	const computedLevels = complete ? computed.finish(count, highestOrder) : null;
-	const difference_A = Math.sqrt(Math.min(leftOver.straight, leftOver.turned) / count);
-	const greatestLine_A = Math.sqrt(Math.max(0, ...lineSquares) / count);
-	const rms_A = (measuredLevels ?? computedLevels)!.rms_A;
-	return {
-		windowCount: count,
-		measured: measuredLevels,
-		computed: computedLevels,
-		comparison:
-			measuredLevels && computedLevels
-				? {
-						difference_A,
-						difference_pct: measuredLevels.rms_A > 0 ? (100 * difference_A) / measuredLevels.rms_A : NaN,
-						turned: leftOver.turned < leftOver.straight
-					}
-				: null,
-		ratioToLine: greatestLine_A > 0 ? rms_A / greatestLine_A : NaN
-	};
+
+	#readMeasured(own: WindowRows, window: number): boolean {
+		readOrderPhasors(own, window, this.#highestOrder, this.#phasors);
+		const square = own.rms[window]! ** 2;
+		if (Number.isNaN(square) || Number.isNaN(this.#phasors.re[1]!)) return false;
+		this.#measured.add(this.#phasors, square, this.#highestOrder);
+		return true;
+	}
+
+	#addLines(lines: ConductorReader): void {
+		addUp(lines.phasors, this.#highestOrder, this.#sum);
+		this.#computed.add(this.#sum, squareOfOrders(this.#sum, this.#highestOrder), this.#highestOrder);
+		lines.squares.forEach((square, i) => (this.#lineSquares[i]! += square));
+	}
+
+	#compare(): void {
+		const { re, im } = this.#phasors;
+		for (let order = 0; order <= this.#highestOrder; order++) {
+			const sumRe = this.#sum.re[order]!;
+			const sumIm = this.#sum.im[order]!;
+			this.#straight += (re[order]! - sumRe) ** 2 + (im[order]! - sumIm) ** 2;
+			this.#turned += (re[order]! + sumRe) ** 2 + (im[order]! + sumIm) ** 2;
+		}
+	}
+
+	/**
+	 * Null for a point without a neutral of its own (three-wire; single-phase, where it is the line current), or where it
+	 * is neither measured nor computable.
+	 */
+	finish(): NeutralCurrent | null {
+		const count = this.#count;
+		if (count === 0) return null;
+		const measured = this.#has.measured ? this.#measured.finish(count, this.#highestOrder) : null;
+		const computed = this.#has.computed ? this.#computed.finish(count, this.#highestOrder) : null;
+		const difference_A = Math.sqrt(Math.min(this.#straight, this.#turned) / count);
+		const greatestLine_A = Math.sqrt(Math.max(...this.#lineSquares) / count);
+		const rms_A = (measured ?? computed)!.rms_A;
+		return {
+			windowCount: count,
+			measured,
+			computed,
+			comparison:
+				measured && computed
+					? {
+							difference_A,
+							difference_pct: measured.rms_A > 0 ? (100 * difference_A) / measured.rms_A : NaN,
+							turned: this.#turned < this.#straight
+						}
+					: null,
+			ratioToLine: greatestLine_A > 0 ? rms_A / greatestLine_A : NaN
+		};
+	}
+}
+
+/** The neutral current over the windows of one stretch; see NeutralCurrentSums. */
+export function neutralCurrent(point: PointWindows, windows: readonly number[]): NeutralCurrent | null {
+	const sums = new NeutralCurrentSums();
+	sums.add(point, windows);
+	return sums.finish();
 }
 
 function addUp(phasors: readonly OrderPhasors[], highestOrder: number, into: OrderPhasors): void {

@@ -55,13 +55,13 @@ class SequenceSums {
 	count = 0;
 
 	constructor(
-		readonly reader: ConductorReader,
+		readonly origin: ConductorReader['origin'],
 		readonly highestOrder: number
 	) {}
 
-	add(window: number): void {
-		if (!this.reader.read(window)) return;
-		const [a, b, c] = this.reader.phasors as [
+	add(reader: ConductorReader, window: number): void {
+		if (!reader.read(window)) return;
+		const [a, b, c] = reader.phasors as [
 			ConductorReader['phasors'][0],
 			ConductorReader['phasors'][0],
 			ConductorReader['phasors'][0]
@@ -82,8 +82,8 @@ class SequenceSums {
 		this.#ratios[1]! += zero / positive;
 		this.#ratios[2]! += positive / negative;
 		this.#ratios[3]! += zero / negative;
-		this.reader.phasors.forEach((phasor, i) => {
-			const next = this.reader.phasors[(i + 1) % 3]!;
+		reader.phasors.forEach((phasor, i) => {
+			const next = reader.phasors[(i + 1) % 3]!;
 			this.pairs[i]! += (phasor.re[1]! - next.re[1]!) ** 2 + (phasor.im[1]! - next.im[1]!) ** 2;
 		});
 		this.count++;
@@ -96,7 +96,7 @@ class SequenceSums {
 	finish(rotation: Rotation): QuantitySequences {
 		const [positive, negative] = rotation === 'L1-L2-L3' ? [0, 1] : [1, 0];
 		const ratio = rotation === 'L1-L2-L3' ? 0 : 2;
-		const withoutZero = this.reader.origin === 'virtual-star';
+		const withoutZero = this.origin === 'virtual-star';
 		const percent = (sum: number) => {
 			const value = 100 * Math.sqrt(sum / this.count);
 			return Number.isFinite(value) ? value : NaN;
@@ -130,32 +130,59 @@ function emptyRow(): SequenceRow {
 }
 
 /**
- * Symmetrical components of every order of a three-phase point, over one window or several.
- * windows  indexes; those in which a conductor has no data are left out
- * returns  sequences named after the rotation found at the fundamental; null for a point without three phases or where
- *          neither three voltages nor three currents are measured
- * source   Fortescue's transformation per order; u2 and u0: IEC 61000-4-30:2015, 5.7 (from memory)
+ * Gathers windows, stretch after stretch, from which the symmetrical components of every order of a three-phase point
+ * follow.
+ * source  Fortescue's transformation per order; u2 and u0: IEC 61000-4-30:2015, 5.7 (from memory)
  */
+export class PointSequenceSums {
+	#voltage: SequenceSums | null = null;
+	#current: SequenceSums | null = null;
+
+	/** windows: indexes; those in which a conductor has no data are left out. */
+	add(point: PointWindows, windows: readonly number[]): void {
+		if (point.system !== 'three-wire' && point.system !== 'four-wire') return;
+		const voltages = threeOf(voltageReader(point));
+		const currents = threeOf(currentReader(point));
+		if (voltages) this.#voltage ??= new SequenceSums(voltages.origin, point.highestOrder);
+		if (currents) this.#current ??= new SequenceSums(currents.origin, point.highestOrder);
+		for (const window of windows) {
+			if (voltages) this.#voltage?.add(voltages, window);
+			if (currents) this.#current?.add(currents, window);
+		}
+	}
+
+	/**
+	 * Sequences named after the rotation found at the fundamental; null for a point without three phases or where neither
+	 * three voltages nor three currents are measured.
+	 */
+	finish(): PointSequences | null {
+		const voltage = this.#voltage?.count ? this.#voltage : null;
+		const current = this.#current?.count ? this.#current : null;
+		const leading = voltage ?? current;
+		if (!leading) return null;
+		const rotation = leading.turns;
+		const pairs = voltage
+			? ([0, 1, 2].map((i) => Math.sqrt(voltage.pairs[i]! / voltage.count)) as [number, number, number])
+			: null;
+		return {
+			rotation,
+			rotationFrom: voltage ? 'voltage' : 'current',
+			windowCount: leading.count,
+			voltage: voltage?.finish(rotation) ?? null,
+			current: current?.finish(rotation) ?? null,
+			lineDeviation_pct: pairs ? lineVoltageDeviation_pct(...pairs) : NaN,
+			lineToLine_V: pairs
+		};
+	}
+}
+
+function threeOf(reader: ConductorReader | null): ConductorReader | null {
+	return reader?.phases.length === 3 ? reader : null;
+}
+
+/** Sequences of the windows of one stretch; see PointSequenceSums. */
 export function pointSequences(point: PointWindows, windows: readonly number[]): PointSequences | null {
-	if (point.system !== 'three-wire' && point.system !== 'four-wire') return null;
-	const sums = [voltageReader(point), currentReader(point)].map((reader) =>
-		reader?.phases.length === 3 ? new SequenceSums(reader, point.highestOrder) : null
-	);
-	for (const window of windows) for (const sum of sums) sum?.add(window);
-	const [voltage, current] = sums.map((sum) => (sum && sum.count > 0 ? sum : null));
-	const leading = voltage ?? current;
-	if (!leading) return null;
-	const rotation = leading.turns;
-	const pairs = voltage
-		? ([0, 1, 2].map((i) => Math.sqrt(voltage.pairs[i]! / voltage.count)) as [number, number, number])
-		: null;
-	return {
-		rotation,
-		rotationFrom: voltage ? 'voltage' : 'current',
-		windowCount: leading.count,
-		voltage: voltage?.finish(rotation) ?? null,
-		current: current?.finish(rotation) ?? null,
-		lineDeviation_pct: pairs ? lineVoltageDeviation_pct(...pairs) : NaN,
-		lineToLine_V: pairs
-	};
+	const sums = new PointSequenceSums();
+	sums.add(point, windows);
+	return sums.finish();
 }
