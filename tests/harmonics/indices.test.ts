@@ -1,10 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { crestFactor } from '$lib/harmonics/crest-factor';
 import { tdd_pctOfDemandCurrent, thd_pctOfFundamental, thd_pctOfRms } from '$lib/harmonics/distortion';
-import { halfCycleRms } from '$lib/harmonics/events/half-cycle-rms';
 import { wrapDegrees } from '$lib/harmonics/phasor';
 import { lineToLineUnbalance_pct, sequenceComponents, unbalance } from '$lib/harmonics/sequence/sequence-components';
-import { findVoltageEvents } from '$lib/harmonics/events/single-voltage-events';
 import { rootMeanSquare } from '$lib/numerics/stats/root-mean-square';
 import {
 	samplePeriod,
@@ -118,60 +116,6 @@ describe('symmetrical components', () => {
 	it('angles stay within (−180°, 180°]', () => {
 		expect([wrapDegrees(540), wrapDegrees(-180), wrapDegrees(181), wrapDegrees(-90)]).toEqual([
 			180, 180, -179, -90
-		]);
-	});
-});
-
-describe('Urms(1/2) and events', () => {
-	const PER_CYCLE = 256;
-	const cycles = 20;
-	function step(factor: number): Float64Array {
-		return Float64Array.from({ length: PER_CYCLE * (cycles + 2) }, (_, n) => {
-			const amplitude = n < PER_CYCLE * 10 ? 1 : factor;
-			return amplitude * Math.SQRT2 * Math.sin((2 * Math.PI * n) / PER_CYCLE);
-		});
-	}
-	const windows = [0, 10].map((cycle) => ({
-		start: cycle * PER_CYCLE,
-		length: 10 * PER_CYCLE,
-		phase_deg: -90
-	}));
-
-	it('a step from 1.0 to 0.5 at a zero crossing gives 1.0, 0.790569, 0.5 (IEC 61000-4-30 definition)', () => {
-		const values = halfCycleRms(step(0.5), windows, 10);
-		const near = [18, 19, 20].map((i) => values.rms[i]!);
-		[1, 0.790569415, 0.5].forEach((expected, i) => expect(Math.abs(near[i]! - expected)).toBeLessThan(1e-6));
-	});
-
-	it('a dip ends only above threshold and hysteresis', () => {
-		const rms = Float64Array.of(1, 0.89, 0.91, 0.905, 0.93, 1);
-		const values = {
-			rms,
-			starts: Float64Array.from(rms, (_, i) => i * 128),
-			lengths: new Float64Array(6).fill(256)
-		};
-		const events = findVoltageEvents(values, 1);
-		expect(events).toHaveLength(1);
-		expect(events[0]).toMatchObject({ kind: 'dip', from: 128, to: 4 * 128 + 128 });
-		expect(events[0]!.extreme_pct).toBeCloseTo(89, 9);
-	});
-
-	it('below 5 % it is an interruption, above 110 % a swell, between 90 % and 110 % nothing', () => {
-		const kinds = (level: number) =>
-			findVoltageEvents(
-				{
-					rms: Float64Array.of(1, level, 1),
-					starts: Float64Array.of(0, 1, 2),
-					lengths: Float64Array.of(2, 2, 2)
-				},
-				1
-			).map((e) => e.kind);
-		expect([kinds(0.04), kinds(1.12), kinds(0.9), kinds(1.0999), kinds(0.06)]).toEqual([
-			['interruption'],
-			['swell'],
-			[],
-			[],
-			['dip']
 		]);
 	});
 });
