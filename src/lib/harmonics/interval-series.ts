@@ -1,12 +1,12 @@
 import { ORDER_STRIDE, type IntervalSeries } from './intervals';
-import type { WaveformAnalysis } from './waveform-analysis';
+import type { WaveformWindows } from './waveform-analysis';
 
 /**
  * The windows of an analysis as interval series, one per channel.
  * start_ms  moment of sample 0, milliseconds since 1970-01-01 UTC
  * returns   series of kind 'window'; matrices are the analysis' own, not copies
  */
-export function toWindowSeries(analysis: WaveformAnalysis, start_ms: number): IntervalSeries[] {
+export function toWindowSeries(analysis: WaveformWindows, start_ms: number): IntervalSeries[] {
 	const starts_ms = analysis.windowStarts_s.map((s) => start_ms + 1000 * s);
 	return analysis.channels.map((channel) => ({
 		quantity: channel.mapping.quantity,

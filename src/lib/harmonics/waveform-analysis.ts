@@ -1,4 +1,5 @@
 import type { Phase } from '../recording/phase';
+import type { CaptureEvent } from './flag-windows';
 
 /** A channel as the engineer confirmed it: what it measures, on which conductor, and how to reach primary values. */
 export interface ChannelMapping {
@@ -94,6 +95,12 @@ export interface CaptureFindings {
 	referenceChannelIndex: number;
 	/** Highest order that the sampling rate supports, at most MAX_ORDER; orders above it are NaN. */
 	highestOrder: number;
+	/** Mean over the windows in which it could be measured, Hz. */
+	meanFrequency_Hz: number;
+	/** Every channel as one row: all windows without a flag taken together (all windows, where each has one). */
+	whole: ChannelAnalysis[];
+	/** Dips, swells and interruptions; null when no nominal voltage was given and nothing could be looked for. */
+	events: CaptureEvent[] | null;
 	quality: QualityRemark[];
 }
 

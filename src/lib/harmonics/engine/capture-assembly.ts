@@ -105,23 +105,29 @@ export class CaptureAssembly {
 	/** What holds for the capture as a whole, once every block was accepted. */
 	findings(): CaptureFindings {
 		const { prepared, options } = this;
+		const whole = this.overall.channels();
+		const events = this.flagging.finish();
+		const meanFrequency_Hz = this.overall.meanFrequency_Hz() ?? prepared.reference.frequency_Hz;
 		return {
 			engineVersion: ENGINE_VERSION,
 			nominalFrequency_Hz: prepared.nominalFrequency_Hz,
 			cyclesPerWindow: prepared.cyclesPerWindow,
 			referenceChannelIndex: prepared.reference.channelIndex,
 			highestOrder: prepared.highestOrder,
+			meanFrequency_Hz,
+			whole,
+			events,
 			quality: [
 				...prepared.remarks,
 				...inspectCapture(this.source, {
 					pointNominal_Hz: options.nominalFrequency_Hz,
 					usedNominal_Hz: prepared.nominalFrequency_Hz,
-					frequency_Hz: this.overall.meanFrequency_Hz() ?? prepared.reference.frequency_Hz,
+					frequency_Hz: meanFrequency_Hz,
 					referenceChannelIndex: prepared.reference.channelIndex,
 					cyclesPerWindow: prepared.cyclesPerWindow,
 					highestOrder: prepared.highestOrder,
 					stretches: prepared.plans.map((plan) => plan.stretch),
-					channels: this.overall.channels(),
+					channels: whole,
 					flatTops: this.flatTops,
 					missingSamples: this.missingSamples,
 					windowsWithoutData: this.windowsWithoutData,
@@ -130,15 +136,10 @@ export class CaptureAssembly {
 					used_s: this.used_s,
 					nominalVoltages_V: options.nominalVoltages_V ?? {},
 					names: options.phaseNames ?? DEFAULT_PHASE_NAMES,
-					events: this.flagging.finish()
+					events
 				})
 			]
 		};
-	}
-
-	/** Every channel as one row over the whole capture. */
-	overallChannels() {
-		return this.overall.channels();
 	}
 
 	private get held(): number {

@@ -74,7 +74,8 @@ export function nominalFor(measured_Hz: number, stated_Hz: 50 | 60 | null): 50 |
 	return measured_Hz < 55 ? 50 : 60;
 }
 
-function pairChannels(mappings: readonly ChannelMapping[]): PreparedCapture['pairs'] {
+/** Voltage to neutral and current of each conductor that has both, by position in `mappings`. */
+export function pairChannels(mappings: readonly ChannelMapping[]): PreparedCapture['pairs'] {
 	const pairs: PreparedCapture['pairs'] = [];
 	mappings.forEach((mapping, current) => {
 		if (mapping.quantity !== 'current' || mapping.phase === 'N') return;

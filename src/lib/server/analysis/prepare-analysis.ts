@@ -1,18 +1,19 @@
 import { aggregateIntervals } from '../../harmonics/aggregation/aggregate-intervals';
-import { analyseWaveformSteps } from '../../harmonics/analyse-waveform';
+import { analyseCapture } from '../../harmonics/analyse-waveform';
+import { IntervalCollector } from '../../harmonics/engine/interval-collector';
+import { pairChannels } from '../../harmonics/engine/prepare-capture';
 import { ENGINE_VERSION } from '../../harmonics/engine-version';
-import { toWindowSeries } from '../../harmonics/interval-series';
-import type { IntervalSeries } from '../../harmonics/intervals';
 import { trendToIntervalSeries, type TrendMapping } from '../../harmonics/trend-intervals';
-import type { ChannelAnalysis, ChannelMapping, WaveformAnalysis } from '../../harmonics/waveform-analysis';
+import type { CaptureFindings, ChannelMapping, WaveformWindows } from '../../harmonics/waveform-analysis';
 import type { Phase, PhaseNames } from '../../recording/phase';
 import type { Recording, Trend } from '../../recording/recording';
+import { sourceOf } from '../../recording/sample-source';
 import { JobFailed, type JobContext } from '../jobs/job-definition';
-import type { NewSeriesRow } from '../repositories/analyses.repository';
+import type { AnalysisPart } from '../repositories/analyses.repository';
 import type { BlobStore, StoredBlob } from '../storage/blob-store';
 import type { AnalysisParameters, AnalysisSummary, TrendSummary } from './analysis-summary';
 import { layOutSamples, samplesStream } from './samples-blob';
-import { encodeSeries, float64ToBuffer } from './series-codec';
+import { aggregatePart, plainRow, windowPart } from './series-rows';
 
 /** What the figures rest on beside the samples and the mapping. */
 export interface AnalysisBasis {
@@ -23,69 +24,25 @@ export interface AnalysisBasis {
 	phaseNames: PhaseNames;
 }
 
-/** An analysis, computed and not yet stored. */
+/** An analysis, computed; windows have been stored on the way, the rest is here. */
 export interface PreparedAnalysis {
 	engineVersion: string;
 	parameters: Pick<AnalysisParameters, 'nominalFrequency_Hz' | 'start_ms'>;
 	summary: AnalysisSummary;
-	series: NewSeriesRow[];
+	last: AnalysisPart;
 	/** Derived samples for the waveform view; null for trends. */
 	samples: StoredBlob | null;
 }
 
-const NO_WINDOW_COLUMNS = {
-	components: null,
-	interharmonic_subgroups: null,
-	phases_deg: null,
-	dc: null,
-	peak: null
-};
+/** Stores the windows of one span as soon as they are there. */
+export type StorePart = (part: AnalysisPart) => Promise<void>;
 
-function windowRow(series: IntervalSeries, channel: ChannelAnalysis): NewSeriesRow {
-	return {
-		...encodeSeries(series),
-		channel_index: channel.mapping.channelIndex,
-		components: float64ToBuffer(channel.components),
-		interharmonic_subgroups: float64ToBuffer(channel.interharmonicSubgroups),
-		phases_deg: float64ToBuffer(channel.phases_deg),
-		dc: float64ToBuffer(channel.dc),
-		peak: float64ToBuffer(channel.peak)
-	};
-}
-
-function plainRow(series: IntervalSeries, channelIndex: number | null): NewSeriesRow {
-	return { ...encodeSeries(series), channel_index: channelIndex, ...NO_WINDOW_COLUMNS };
-}
-
-/** Windows of every channel, and their 3 s and 10 min aggregates where the capture fills any. */
-function seriesRows(analysis: WaveformAnalysis, start_ms: number): NewSeriesRow[] {
-	return toWindowSeries(analysis, start_ms).flatMap((series, i) => {
-		const channel = analysis.channels[i]!;
-		const aggregates = (['3s', '10min'] as const)
-			.map((interval) => aggregateIntervals(series, interval).series)
-			.filter((aggregate) => aggregate.starts_ms.length > 0)
-			.map((aggregate) => plainRow(aggregate, channel.mapping.channelIndex));
-		return [windowRow(series, channel), ...aggregates];
-	});
-}
-
-async function runSteps(
-	recording: Recording,
-	mappings: readonly ChannelMapping[],
-	basis: AnalysisBasis,
-	context: Pick<JobContext, 'progress'>
-): Promise<WaveformAnalysis> {
-	const steps = analyseWaveformSteps(recording, mappings, basis);
-	for (;;) {
-		const step = steps.next();
-		if (step.done) {
-			if (!step.value.ok) throw new JobFailed(step.value.problem.sentence);
-			return step.value.value;
-		}
-		const { done, total } = step.value;
-		// One short of the end: what follows still has to be stored.
-		await context.progress(Math.min(done, total), total + 1, `${done} of ${total} windows analysed`);
-	}
+/** What became of the windows beside being stored. */
+interface WindowsSeen {
+	windowCount: number;
+	flaggedCount: number;
+	start_s: number;
+	end_s: number;
 }
 
 /** Analyses a waveform window by window; stops between blocks when it was cancelled or the process is going down. */
@@ -94,28 +51,66 @@ export async function prepareWaveform(
 	recording: Recording,
 	mappings: readonly ChannelMapping[],
 	basis: AnalysisBasis,
-	context: Pick<JobContext, 'progress'>
+	context: Pick<JobContext, 'progress'>,
+	store: StorePart
 ): Promise<PreparedAnalysis> {
-	const analysis = await runSteps(recording, mappings, basis, context);
+	const { start_ms } = basis;
+	const collector = new IntervalCollector(mappings, pairChannels(mappings), start_ms);
+	const spans: WaveformWindows[] = [];
+	const seen: WindowsSeen = { windowCount: 0, flaggedCount: 0, start_s: NaN, end_s: NaN };
+	let part = 0;
+	async function storeSpans(): Promise<void> {
+		for (const span of spans.splice(0)) {
+			collector.accept(span);
+			note(seen, span);
+			await store(windowPart(span, collector, part++, start_ms));
+		}
+	}
+	const steps = analyseCapture(sourceOf(recording), mappings, basis, (span) => spans.push(span));
+	let findings: CaptureFindings;
+	for (;;) {
+		const step = steps.next();
+		await storeSpans();
+		if (step.done) {
+			if (!step.value.ok) throw new JobFailed(step.value.problem.sentence);
+			findings = step.value.value;
+			break;
+		}
+		const { done, total } = step.value;
+		// One short of the end: what follows still has to be stored.
+		await context.progress(Math.min(done, total), total + 1, `${done} of ${total} windows analysed`);
+	}
+	collector.finish();
 	const samples = await blobs.putStream(samplesStream(recording, mappings), Number.MAX_SAFE_INTEGER);
 	return {
-		engineVersion: analysis.engineVersion,
-		parameters: { nominalFrequency_Hz: analysis.nominalFrequency_Hz, start_ms: basis.start_ms },
+		engineVersion: findings.engineVersion,
+		parameters: { nominalFrequency_Hz: findings.nominalFrequency_Hz, start_ms },
 		summary: {
 			kind: 'waveform',
-			nominalFrequency_Hz: analysis.nominalFrequency_Hz,
-			cyclesPerWindow: analysis.cyclesPerWindow,
-			referenceChannelIndex: analysis.referenceChannelIndex,
-			highestOrder: analysis.highestOrder,
-			windowCount: analysis.windowCount,
-			flaggedCount: analysis.flagged.reduce((sum, flag) => sum + flag, 0),
-			channels: analysis.channels.map(({ mapping, name }) => ({ ...mapping, name })),
-			quality: analysis.quality,
+			nominalFrequency_Hz: findings.nominalFrequency_Hz,
+			cyclesPerWindow: findings.cyclesPerWindow,
+			referenceChannelIndex: findings.referenceChannelIndex,
+			highestOrder: findings.highestOrder,
+			windowCount: seen.windowCount,
+			flaggedCount: seen.flaggedCount,
+			channels: findings.whole.map(({ mapping, name }) => ({ ...mapping, name })),
+			quality: findings.quality,
 			samples: { sha256: samples.sha256, ...layOutSamples(recording, mappings) }
 		},
-		series: seriesRows(analysis, basis.start_ms),
+		last: aggregatePart(collector, findings.whole, {
+			start_ms: start_ms + 1000 * seen.start_s,
+			length_s: seen.end_s - seen.start_s,
+			frequency_Hz: findings.meanFrequency_Hz
+		}),
 		samples
 	};
+}
+
+function note(seen: WindowsSeen, span: WaveformWindows): void {
+	if (seen.windowCount === 0) seen.start_s = span.windowStarts_s[0]!;
+	seen.windowCount += span.windowCount;
+	seen.flaggedCount += span.flagged.reduce((sum, flag) => sum + flag, 0);
+	seen.end_s = span.windowStarts_s.at(-1)! + span.windowLengths_s.at(-1)!;
 }
 
 /** A trend log as interval series; ten-minute values are made of three-second ones where the log has those. */
@@ -151,7 +146,7 @@ export async function prepareTrend(
 			flaggedCount: flagged ? flagged.reduce((sum, flag) => sum + flag, 0) : 0,
 			quality
 		},
-		series: rows,
+		last: { series: rows, scalars: [] },
 		samples: null
 	};
 }

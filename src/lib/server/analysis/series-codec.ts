@@ -1,5 +1,5 @@
 import { endianness } from 'node:os';
-import { ORDER_STRIDE, type IntervalSeries } from '../../harmonics/intervals';
+import { ORDER_STRIDE, type IntervalKind, type IntervalSeries } from '../../harmonics/intervals';
 import type { AnalysisSeriesRow } from '../db/rows';
 
 // Blobs are little-endian; a typed array has the machine's order, so one is the other only where they agree.
@@ -28,6 +28,20 @@ export function bufferToFloat32(bytes: Uint8Array): Float32Array {
 	return copy;
 }
 
+/** A float64 array at half its size, for what is shown and not judged: seven digits. */
+export function float32Buffer(values: Float64Array): Buffer {
+	const narrow = Float32Array.from(values);
+	return Buffer.from(narrow.buffer, narrow.byteOffset, narrow.byteLength);
+}
+
+/** [length] values that were stored with four or with eight bytes each. */
+export function bufferToFloats(bytes: Uint8Array, length: number): Float64Array {
+	if (bytes.byteLength === 8 * length) return bufferToFloat64(bytes);
+	if (bytes.byteLength !== 4 * length)
+		throw new Error(`${bytes.byteLength} bytes do not hold ${length} values: the stored series is damaged`);
+	return Float64Array.from(bufferToFloat32(bytes));
+}
+
 export function bytesToBuffer(values: Uint8Array): Buffer {
 	return Buffer.from(values.buffer, values.byteOffset, values.byteLength);
 }
@@ -36,7 +50,6 @@ export type SeriesColumns = Pick<
 	AnalysisSeriesRow,
 	| 'quantity'
 	| 'phase'
-	| 'interval'
 	| 'interval_count'
 	| 'starts_ms'
 	| 'lengths_s'
@@ -44,7 +57,7 @@ export type SeriesColumns = Pick<
 	| 'frequency_hz'
 	| 'subgroups'
 	| 'flagged'
->;
+> & { interval: IntervalKind };
 
 /** A series as the columns of one row of analysis_series. */
 export function encodeSeries(series: IntervalSeries): SeriesColumns {

@@ -73,6 +73,19 @@ export function concatenateInTime(parts: readonly IntervalSeries[]): {
 	return { series: mergeSeries(kept), trimmed };
 }
 
+/**
+ * What an assessment reads of one analysis: 3 s and 10 min values, and the windows only where no 3 s value stands without
+ * a flag (they can be many).
+ */
+async function assessedSeries(
+	analyses: ReturnType<typeof analysesRepository>,
+	analysisId: string
+): Promise<IntervalSeries[]> {
+	const series = (await analyses.seriesOf(analysisId, ['3s', '10min'])).map(decodeSeries);
+	if (series.some((one) => one.flagged.includes(0))) return series;
+	return [...series, ...(await analyses.seriesOf(analysisId, ['window'])).map(decodeSeries)];
+}
+
 /** Current analyses of a survey's captures, laid together. Without any analysis, `series` is empty. */
 export async function seriesForSurvey(db: Db, scope: Scope, surveyId: string): Promise<SurveySeries> {
 	const analysesOf = analysesRepository(db, scope);
@@ -85,9 +98,9 @@ export async function seriesForSurvey(db: Db, scope: Scope, surveyId: string): P
 	const groups = new Map<string, IntervalSeries[]>();
 	const quality: QualityRemark[] = [];
 	for (const analysis of analyses) {
-		for (const row of await analysesOf.seriesOf(analysis.id)) {
-			const key = `${row.quantity}/${row.phase}/${row.interval}`;
-			groups.set(key, [...(groups.get(key) ?? []), decodeSeries(row)]);
+		for (const series of await assessedSeries(analysesOf, analysis.id)) {
+			const key = `${series.quantity}/${series.phase}/${series.interval}`;
+			groups.set(key, [...(groups.get(key) ?? []), series]);
 		}
 		for (const remark of parseSummary(analysis.summary_json).quality)
 			quality.push({

@@ -2,7 +2,7 @@ import { crestFactor } from '../../harmonics/crest-factor';
 import { thd_pctOfFundamental } from '../../harmonics/distortion';
 import { ORDER_STRIDE } from '../../harmonics/intervals';
 import type { AnalysisSeriesRow } from '../db/rows';
-import { bufferToFloat64 } from './series-codec';
+import { bufferToFloat64, bufferToFloats } from './series-codec';
 
 /** One channel over one window, or over several taken together. Absolute values in primary V or A; NaN = no data. */
 export interface ChannelValues {
@@ -63,8 +63,8 @@ export function channelValues(
 	const matrices = {
 		rms: bufferToFloat64(row.rms),
 		subgroups: bufferToFloat64(row.subgroups),
-		components: bufferToFloat64(components),
-		phases_deg: bufferToFloat64(phases_deg),
+		components: bufferToFloats(components, row.interval_count * ORDER_STRIDE),
+		phases_deg: bufferToFloats(phases_deg, row.interval_count * ORDER_STRIDE),
 		dc: bufferToFloat64(dc),
 		peak: bufferToFloat64(peak)
 	};
@@ -75,7 +75,7 @@ export function channelValues(
 		angles_deg[order] = meanAngle_deg(matrices.components, matrices.phases_deg, windows, order);
 	}
 	const rms = columnRms(matrices.rms, windows, 1, 0);
-	const greatest = Math.max(...windows.map((window) => matrices.peak[window]!));
+	const greatest = windows.reduce((most, window) => Math.max(most, matrices.peak[window]!), -Infinity);
 	return {
 		rms,
 		dc: windows.reduce((sum, window) => sum + matrices.dc[window]!, 0) / windows.length,

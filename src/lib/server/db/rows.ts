@@ -4,6 +4,7 @@
  */
 import type { Role } from '../../access/access';
 import type { AssessedPoint, DecisionRule, Evidence, Verdict } from '../../assessment/assessment';
+import type { ScalarMeasure, ScalarPhase } from '../../harmonics/engine/scalar-columns';
 import type { IntervalKind } from '../../harmonics/intervals';
 import type { LimitBasis, Provenance } from '../../limits/limit-set';
 import type { Phase } from '../../recording/phase';
@@ -348,7 +349,12 @@ export interface AnalysisRow {
 	summary_json: string;
 	is_current: 0 | 1;
 	created_at: string;
+	/** 0 while parts of it are still being stored. */
+	is_finished: 0 | 1;
 }
+
+/** Beside the intervals themselves: the capture as one, flagged windows left out where others are there. */
+export type StoredInterval = IntervalKind | 'whole';
 
 export interface AnalysisSeriesRow {
 	id: string;
@@ -357,7 +363,8 @@ export interface AnalysisSeriesRow {
 	channel_index: number | null;
 	quantity: 'voltage' | 'current';
 	phase: Phase;
-	interval: IntervalKind;
+	interval: StoredInterval;
+	part: number;
 	interval_count: number;
 	starts_ms: Buffer;
 	lengths_s: Buffer;
@@ -370,6 +377,22 @@ export interface AnalysisSeriesRow {
 	phases_deg: Buffer | null;
 	dc: Buffer | null;
 	peak: Buffer | null;
+	harmonic_groups: Buffer | null;
+	interharmonic_groups: Buffer | null;
+}
+
+export interface AnalysisScalarRow {
+	id: string;
+	practice_id: string;
+	analysis_id: string;
+	measure: ScalarMeasure;
+	quantity: 'voltage' | 'current' | 'power';
+	phase: ScalarPhase;
+	unit: string;
+	interval: StoredInterval;
+	part: number;
+	starts_ms: Buffer;
+	values: Buffer;
 }
 
 export interface JobRow {
@@ -590,6 +613,7 @@ declare module 'knex/types/tables' {
 		capture_files: CaptureFileRow;
 		analyses: AnalysisRow;
 		analysis_series: AnalysisSeriesRow;
+		analysis_scalars: AnalysisScalarRow;
 		jobs: JobRow;
 		assessments: AssessmentRow;
 		verdict_rows: VerdictRow;

@@ -1,8 +1,14 @@
+import { ENGINE_VERSION } from '../../harmonics/engine-version';
 import { nominalVoltagesByPhase_V } from '../../harmonics/nominal-voltages';
 import { readCapture } from '../../recording/read-capture';
 import type { CaptureContent } from '../../recording/recording';
 import { parseSettings } from '../analysis/capture-settings';
-import { prepareTrend, prepareWaveform, type PreparedAnalysis } from '../analysis/prepare-analysis';
+import {
+	prepareTrend,
+	prepareWaveform,
+	type PreparedAnalysis,
+	type StorePart
+} from '../analysis/prepare-analysis';
 import type { Container } from '../container';
 import { withTransaction, type Db } from '../db/database';
 import type { CaptureRow } from '../db/rows';
@@ -26,9 +32,19 @@ export const handle: JobHandler = async (container, rawPayload, context) => {
 	try {
 		await captures.update(captureId, { status: 'analysing', problem: null }, clock());
 		const content = await readOriginals(container, capture, context);
-		const prepared = await prepare(container, capture, survey, content, context);
+		const analyses = analysesRepository(db, context);
+		await analyses.discardUnfinished(captureId);
+		const analysisId = await analyses.begin({
+			client_id: capture.client_id,
+			capture_id: captureId,
+			engine_version: ENGINE_VERSION,
+			created_at: clock().toISOString()
+		});
+		const storePart: StorePart = (part) =>
+			withTransaction(db, (trx) => analysesRepository(trx, context).addPart(analysisId, part));
+		const prepared = await prepare(container, capture, survey, content, context, storePart);
 		await context.progress(1, 1, 'storing the readings');
-		await withTransaction(db, (trx) => save(container, trx, capture, prepared, context));
+		await withTransaction(db, (trx) => save(container, trx, capture, analysisId, prepared, context));
 	} catch (cause) {
 		await settle(container, captureId, cause, context);
 		throw cause;
@@ -59,7 +75,8 @@ function prepare(
 	capture: CaptureRow,
 	survey: CaptureSurvey,
 	content: CaptureContent,
-	context: JobContext
+	context: JobContext,
+	storePart: StorePart
 ): Promise<PreparedAnalysis> {
 	if (capture.mappings_json === null || capture.started_at === null)
 		throw new JobFailed(
@@ -73,7 +90,7 @@ function prepare(
 		phaseNames: survey.facts.phaseNames
 	};
 	if (content.kind === 'waveform' && settings.kind === 'waveform')
-		return prepareWaveform(container.blobs, content, settings.channels, basis, context);
+		return prepareWaveform(container.blobs, content, settings.channels, basis, context, storePart);
 	if (content.kind === 'trend' && settings.kind === 'trend')
 		return prepareTrend(content, settings.columns, basis);
 	throw new JobFailed('The confirmed channels do not fit what the files hold. Confirm them again.');
@@ -84,6 +101,7 @@ async function save(
 	container: Container,
 	trx: Db,
 	capture: CaptureRow,
+	analysisId: string,
 	prepared: PreparedAnalysis,
 	context: JobContext
 ): Promise<void> {
@@ -91,21 +109,18 @@ async function save(
 	const files = await capturesRepository(trx, context).filesOf([capture.id]);
 	if (prepared.samples)
 		await storedFilesRepository(trx).record(prepared.samples, 'application/x-sinewright-samples', now);
-	await analysesRepository(trx, context).add(
-		{
-			client_id: capture.client_id,
-			capture_id: capture.id,
-			engine_version: prepared.engineVersion,
-			parameters_json: JSON.stringify({
-				...prepared.parameters,
-				settings: parseSettings(capture.mappings_json ?? 'null'),
-				fileHashes: files.map((file) => file.sha256)
-			}),
-			summary_json: JSON.stringify(prepared.summary),
-			created_at: now.toISOString()
-		},
-		prepared.series
-	);
+	const analyses = analysesRepository(trx, context);
+	await analyses.addPart(analysisId, prepared.last);
+	await analyses.complete(analysisId, capture.id, {
+		engine_version: prepared.engineVersion,
+		parameters_json: JSON.stringify({
+			...prepared.parameters,
+			settings: parseSettings(capture.mappings_json ?? 'null'),
+			fileHashes: files.map((file) => file.sha256)
+		}),
+		summary_json: JSON.stringify(prepared.summary),
+		created_at: now.toISOString()
+	});
 	await capturesRepository(trx, context).update(capture.id, { status: 'analysed', problem: null }, now);
 	await container.jobs.enqueue(
 		trx,
@@ -125,6 +140,7 @@ async function settle(
 ): Promise<void> {
 	const { db, clock } = container;
 	const captures = capturesRepository(db, context);
+	await analysesRepository(db, context).discardUnfinished(captureId);
 	if (cause instanceof JobInterrupted) await captures.update(captureId, { status: 'queued' }, clock());
 	else if (cause instanceof JobCancelled) await releaseCapture(db, context, captureId, clock());
 	else {

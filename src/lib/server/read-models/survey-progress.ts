@@ -54,6 +54,7 @@ async function readings(db: Db, scope: Scope, surveyId: string): Promise<Facts['
 		.join('captures as c', 'c.id', 'a.capture_id')
 		.where({ 'c.practice_id': scope.practiceId, 'c.survey_id': surveyId, 'a.is_current': 1 })
 		.whereNull('c.removed_at')
+		.whereNot('s.interval', 'whole')
 		.groupBy('s.analysis_id', 's.interval')
 		// Any one channel's flags will do: an interval is flagged for all channels of its recorder. Bytes are 0 or 1,
 		// so what remains of the hexadecimal text without zero bytes counts the flagged ones.

@@ -1,6 +1,7 @@
+import type { IntervalKind } from '../../harmonics/intervals';
 import type { Db } from '../db/database';
 import { newId } from '../db/ids';
-import type { AnalysisRow, AnalysisSeriesRow } from '../db/rows';
+import type { AnalysisRow, AnalysisScalarRow, AnalysisSeriesRow, StoredInterval } from '../db/rows';
 import type { Scope } from './scope';
 
 const ASSESSED_COLUMNS = [
@@ -15,9 +16,18 @@ const ASSESSED_COLUMNS = [
 	'subgroups',
 	'flagged'
 ] as const;
-export type AssessedColumns = Pick<AnalysisSeriesRow, (typeof ASSESSED_COLUMNS)[number]>;
+export type AssessedColumns = Pick<AnalysisSeriesRow, (typeof ASSESSED_COLUMNS)[number]> & {
+	interval: IntervalKind;
+};
 
 export type NewSeriesRow = Omit<AnalysisSeriesRow, 'id' | 'practice_id' | 'analysis_id'>;
+export type NewScalarRow = Omit<AnalysisScalarRow, 'id' | 'practice_id' | 'analysis_id'>;
+
+/** What one span, or the end, of an analysis leaves behind. */
+export interface AnalysisPart {
+	series: readonly NewSeriesRow[];
+	scalars: readonly NewScalarRow[];
+}
 
 /** Analyses of one practice (and of one client when given). The newest of a capture is its current one. */
 export function analysesRepository(db: Db, scope: Scope) {
@@ -26,26 +36,44 @@ export function analysesRepository(db: Db, scope: Scope) {
 		return scope.clientId === undefined ? query : query.where('analyses.client_id', scope.clientId);
 	};
 
+	async function addPart(analysisId: string, { series, scalars }: AnalysisPart): Promise<void> {
+		const common = () => ({ id: newId(), practice_id: scope.practiceId, analysis_id: analysisId });
+		for (const row of series) await db('analysis_series').insert({ ...row, ...common() });
+		for (const row of scalars) await db('analysis_scalars').insert({ ...row, ...common() });
+	}
+
 	return {
-		/** Earlier analyses stay, for the reports that rest on them, but are current no longer. */
-		async add(
-			analysis: Pick<
-				AnalysisRow,
-				'client_id' | 'capture_id' | 'engine_version' | 'parameters_json' | 'summary_json' | 'created_at'
-			>,
-			series: readonly NewSeriesRow[]
+		/** Opens an analysis that is stored part by part; it is nobody's result until it is completed. */
+		async begin(
+			analysis: Pick<AnalysisRow, 'client_id' | 'capture_id' | 'engine_version' | 'created_at'>
 		): Promise<string> {
 			const id = newId();
-			await own().where({ capture_id: analysis.capture_id, is_current: 1 }).update({ is_current: 0 });
-			await db('analyses').insert({ ...analysis, id, practice_id: scope.practiceId, is_current: 1 });
-			for (const row of series)
-				await db('analysis_series').insert({
-					...row,
-					id: newId(),
-					practice_id: scope.practiceId,
-					analysis_id: id
-				});
+			await db('analyses').insert({
+				...analysis,
+				id,
+				practice_id: scope.practiceId,
+				parameters_json: '{}',
+				summary_json: '{}',
+				is_current: 0,
+				is_finished: 0
+			});
 			return id;
+		},
+		addPart,
+		/** Makes an analysis the current one. Earlier ones stay, for the reports that rest on them. */
+		async complete(
+			id: string,
+			captureId: string,
+			analysis: Pick<AnalysisRow, 'engine_version' | 'parameters_json' | 'summary_json' | 'created_at'>
+		): Promise<void> {
+			await own().where({ capture_id: captureId, is_current: 1 }).update({ is_current: 0 });
+			await own()
+				.where({ id })
+				.update({ ...analysis, is_current: 1, is_finished: 1 });
+		},
+		/** Removes what an attempt that did not come to its end has left of a capture. */
+		async discardUnfinished(captureId: string): Promise<void> {
+			await own().where({ capture_id: captureId, is_finished: 0 }).delete();
 		},
 		async currentOf(captureId: string): Promise<AnalysisRow | null> {
 			return (await own().where({ capture_id: captureId, is_current: 1 }).first()) ?? null;
@@ -63,27 +91,51 @@ export function analysesRepository(db: Db, scope: Scope) {
 				.orderBy('captures.created_at')
 				.select<AnalysisRow[]>('analyses.*');
 		},
-		/** Series that an assessment looks at; the columns that only the readings page shows stay unread. */
-		async seriesOf(analysisId: string): Promise<AssessedColumns[]> {
-			return db('analysis_series')
+		/**
+		 * Series without the columns that only the readings page shows, parts in order of time.
+		 * intervals  when left out every kind, but the windows of a capture that has them in several parts (they are many)
+		 */
+		async seriesOf(analysisId: string, intervals?: readonly IntervalKind[]): Promise<AssessedColumns[]> {
+			const query = db('analysis_series')
 				.where({ practice_id: scope.practiceId, analysis_id: analysisId })
-				.orderBy(['quantity', 'phase', 'interval'])
-				.select(ASSESSED_COLUMNS);
+				.orderBy(['quantity', 'phase', 'interval', 'part'])
+				.select<AssessedColumns[]>(ASSESSED_COLUMNS);
+			if (intervals) return query.whereIn('interval', [...intervals]);
+			const windows = await this.windowCountsOf(analysisId);
+			return query.whereNotIn('interval', windows.length > 1 ? ['whole', 'window'] : ['whole']);
 		},
-		/** Series of one kind with every column, for the readings page. */
+		/** Series of one kind with every column, for the readings page; one part of it, or all. */
 		async wholeSeriesOf(
 			analysisId: string,
-			interval: AnalysisSeriesRow['interval']
+			interval: StoredInterval,
+			part?: number
 		): Promise<AnalysisSeriesRow[]> {
-			return db('analysis_series')
+			const query = db('analysis_series')
 				.where({ practice_id: scope.practiceId, analysis_id: analysisId, interval })
-				.orderBy(['quantity', 'phase']);
+				.orderBy(['quantity', 'phase', 'part']);
+			return part === undefined ? query : query.where({ part });
 		},
-		async intervalKindsOf(analysisId: string): Promise<AnalysisSeriesRow['interval'][]> {
-			return db('analysis_series')
+		/** Number of windows in each part, in order of time. */
+		async windowCountsOf(analysisId: string): Promise<number[]> {
+			const rows = await db('analysis_series')
+				.where({ practice_id: scope.practiceId, analysis_id: analysisId, interval: 'window' })
+				.groupBy('part')
+				.orderBy('part')
+				.select<{ count: number }[]>(db.raw('max(interval_count) as count'));
+			return rows.map((row) => row.count);
+		},
+		/** Scalars over one kind of interval, parts in order of time. */
+		async scalarsOf(analysisId: string, interval: StoredInterval): Promise<AnalysisScalarRow[]> {
+			return db('analysis_scalars')
+				.where({ practice_id: scope.practiceId, analysis_id: analysisId, interval })
+				.orderBy(['measure', 'phase', 'part']);
+		},
+		async intervalKindsOf(analysisId: string): Promise<IntervalKind[]> {
+			const kinds: StoredInterval[] = await db('analysis_series')
 				.where({ practice_id: scope.practiceId, analysis_id: analysisId })
 				.distinct()
 				.pluck('interval');
+			return kinds.filter((kind) => kind !== 'whole');
 		}
 	};
 }

@@ -30,6 +30,7 @@ async function intervalTotal(db: Db, scope: Scope, surveyId: string): Promise<nu
 		.join('captures as c', 'c.id', 'a.capture_id')
 		.where({ 'c.practice_id': scope.practiceId, 'c.survey_id': surveyId, 'a.is_current': 1 })
 		.whereNull('c.removed_at')
+		.whereIn('s.interval', ['3s', '10min'])
 		.sum<{ n: number | null }[]>({ n: 's.interval_count' })
 		.first();
 	return row?.n ?? 0;

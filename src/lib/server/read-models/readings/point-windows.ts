@@ -1,8 +1,10 @@
 import type { PointSystem } from '../../../harmonics/nominal-voltages';
+import { ORDER_STRIDE } from '../../../harmonics/intervals';
 import type { WindowRows as ConductorWindows } from '../../../harmonics/order-phasors';
-import type { LinePhase, PointWindows } from '../../../harmonics/power/point-windows';
+import type { SamplePowers_W } from '../../../harmonics/power/point-power';
+import type { PointWindows } from '../../../harmonics/power/point-windows';
 import type { Phase } from '../../../recording/phase';
-import { bufferToFloat64 } from '../../analysis/series-codec';
+import { bufferToFloat64, bufferToFloats } from '../../analysis/series-codec';
 import type { AnalysisSeriesRow } from '../../db/rows';
 
 export interface PointContext {
@@ -31,10 +33,15 @@ function conductorWindows({ rms, dc, components, phases_deg }: AnalysisSeriesRow
 	return {
 		rms: bufferToFloat64(rms),
 		dc: bufferToFloat64(dc),
-		components: bufferToFloat64(components),
-		phases_deg: bufferToFloat64(phases_deg)
+		components: bufferToFloats(components, (rms.byteLength / 8) * ORDER_STRIDE),
+		phases_deg: bufferToFloats(phases_deg, (rms.byteLength / 8) * ORDER_STRIDE)
 	};
 }
 
-/** Mean of u·i of every window by conductor, where the analysis kept it; without it P is the sum over the orders. */
-export type SamplePowers_W = Partial<Record<LinePhase, Float64Array>>;
+/**
+ * Mean of u·i of the windows by conductor. The stored rows hold none, so P is the sum over the orders; this is the place
+ * for a stored one, index by index beside the rows of `pointWindows`.
+ */
+export function samplePowers_W(): SamplePowers_W {
+	return {};
+}

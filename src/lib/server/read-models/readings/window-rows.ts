@@ -48,27 +48,105 @@ export async function windowRows(
 	summary: WaveformSummary,
 	askedWindow: number | null
 ): Promise<WindowRows> {
-	const rows = (await analysesRepository(db, scope).wholeSeriesOf(analysis.id, 'window')).sort(
-		byQuantityAndPhase
-	);
-	const first = rows[0];
-	if (!first) throw new Error(`analysis ${analysis.id} has no windows`);
+	const analyses = analysesRepository(db, scope);
+	const counts = await analyses.windowCountsOf(analysis.id);
 	const window =
 		askedWindow !== null && askedWindow >= 1 && askedWindow <= summary.windowCount ? askedWindow : null;
+	const at = window === null ? null : placeInParts(counts, window - 1);
+	const rows =
+		at !== null || counts.length === 1
+			? await analyses.wholeSeriesOf(analysis.id, 'window', at?.part ?? 0)
+			: await everyNthWindow(analyses, analysis.id, counts);
+	const first = rows.sort(byQuantityAndPhase)[0];
+	if (!first) throw new Error(`analysis ${analysis.id} has no windows`);
 	return {
 		rows,
-		windows: selectedWindows(first, window),
+		windows: at === null ? unflaggedWindows(first) : [at.index],
 		choice: {
 			cyclesPerWindow: summary.cyclesPerWindow,
 			windowCount: summary.windowCount,
 			window,
-			place: window === null ? null : placeOf(first, window - 1, captureStart_ms(analysis))
+			place: at === null ? null : placeOf(first, at.index, captureStart_ms(analysis))
 		}
 	};
 }
 
-function selectedWindows(row: AnalysisSeriesRow, window: number | null): number[] {
-	if (window !== null) return [window - 1];
+/** Windows that are read at most for a view of a whole capture; beyond that every n-th stands for its neighbours. */
+const MOST_WINDOWS = 3200;
+
+function placeInParts(counts: readonly number[], index: number): { part: number; index: number } {
+	let before = 0;
+	for (const [part, count] of counts.entries()) {
+		if (index < before + count) return { part, index: index - before };
+		before += count;
+	}
+	throw new RangeError(`window ${index + 1} of ${before}`);
+}
+
+/** The windows of a long capture thinned evenly, part by part, so that only one part is held at a time. */
+async function everyNthWindow(
+	analyses: ReturnType<typeof analysesRepository>,
+	analysisId: string,
+	counts: readonly number[]
+): Promise<AnalysisSeriesRow[]> {
+	const step = Math.ceil(counts.reduce((sum, count) => sum + count, 0) / MOST_WINDOWS);
+	const thinned: AnalysisSeriesRow[][] = [];
+	for (const part of counts.keys()) {
+		const rows = await analyses.wholeSeriesOf(analysisId, 'window', part);
+		thinned.push(rows.map((row) => thinRow(row, step)));
+	}
+	const parts = thinned.flat();
+	const channels = thinned[0] ?? [];
+	return channels.map((channel) =>
+		joinRows(parts.filter((row) => row.channel_index === channel.channel_index))
+	);
+}
+
+/** Columns that hold one value, or one row of values, per window. */
+const WINDOW_COLUMNS = [
+	'starts_ms',
+	'lengths_s',
+	'rms',
+	'frequency_hz',
+	'subgroups',
+	'flagged',
+	'components',
+	'interharmonic_subgroups',
+	'phases_deg',
+	'dc',
+	'peak',
+	'harmonic_groups',
+	'interharmonic_groups'
+] as const;
+
+function thinRow(row: AnalysisSeriesRow, step: number): AnalysisSeriesRow {
+	const kept = Math.ceil(row.interval_count / step);
+	const thin = (bytes: Buffer) => {
+		const each = bytes.byteLength / row.interval_count;
+		return Buffer.concat(
+			Array.from({ length: kept }, (_, i) => bytes.subarray(i * step * each, (i * step + 1) * each))
+		);
+	};
+	const out = { ...row, interval_count: kept };
+	for (const column of WINDOW_COLUMNS) {
+		const bytes = row[column];
+		if (bytes !== null) out[column] = thin(bytes);
+	}
+	return out;
+}
+
+function joinRows(rows: readonly AnalysisSeriesRow[]): AnalysisSeriesRow {
+	const out = {
+		...rows[0]!,
+		interval_count: rows.reduce((sum, row) => sum + row.interval_count, 0)
+	};
+	for (const column of WINDOW_COLUMNS) {
+		if (out[column] !== null) out[column] = Buffer.concat(rows.map((row) => row[column]!));
+	}
+	return out;
+}
+
+function unflaggedWindows(row: AnalysisSeriesRow): number[] {
 	const all = Array.from({ length: row.interval_count }, (_, i) => i);
 	const valid = all.filter((i) => row.flagged[i] !== 1);
 	return valid.length > 0 ? valid : all;
