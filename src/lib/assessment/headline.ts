@@ -1,6 +1,6 @@
 import type { IntervalSeries } from '../harmonics/intervals';
 import type { LimitBasis } from '../limits/limit-set';
-import { percentileNearestRank } from '../numerics/stats/percentile-nearest-rank';
+import { selectPercentileNearestRank } from '../numerics/stats/percentile-nearest-rank';
 import type { Assessment, AssessedPoint } from './assessment';
 import { fewestForPercentile } from './evidence';
 import { intervalLevels, levelBaseOf, type LevelBase, type LevelItem } from './interval-levels';
@@ -10,9 +10,9 @@ import { snapshotValue } from './snapshot';
 
 const TOTAL: LevelItem = { kind: 'total', from: 2, to: 50 };
 
-/** Valid levels of a series, ascending. */
-function sortedValid(series: IntervalSeries, levels_pct: Float64Array): Float64Array {
-	return levels_pct.filter((level, i) => series.flagged[i] !== 1 && !Number.isNaN(level)).sort();
+/** Valid levels of a series. */
+function validLevels(series: IntervalSeries, levels_pct: Float64Array): Float64Array {
+	return levels_pct.filter((level, i) => series.flagged[i] !== 1 && !Number.isNaN(level));
 }
 
 /**
@@ -23,8 +23,8 @@ function sortedValid(series: IntervalSeries, levels_pct: Float64Array): Float64A
 function headlineValue(data: PhaseData, base: LevelBase): number | null {
 	const tenMinute = data.byKind.get('10min');
 	if (tenMinute !== undefined) {
-		const sorted = sortedValid(tenMinute, intervalLevels(tenMinute, TOTAL, base).levels_pct);
-		if (sorted.length >= fewestForPercentile(95)) return percentileNearestRank(sorted, 0.95);
+		const valid = validLevels(tenMinute, intervalLevels(tenMinute, TOTAL, base).levels_pct);
+		if (valid.length >= fewestForPercentile(95)) return selectPercentileNearestRank(valid, 0.95);
 	}
 	const series = snapshotSeries(data);
 	if (series === null) return null;

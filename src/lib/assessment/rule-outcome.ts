@@ -1,6 +1,6 @@
 import type { IntervalSeries } from '../harmonics/intervals';
 import type { StatisticRule } from '../limits/limit-set';
-import { percentileNearestRank } from '../numerics/stats/percentile-nearest-rank';
+import { selectPercentileNearestRank } from '../numerics/stats/percentile-nearest-rank';
 import { fewestForPercentile, isComplete, type RulePeriod } from './evidence';
 
 /** One period's percentile and what stands behind it. */
@@ -44,10 +44,9 @@ export function periodPercentile(
 		if (flagged[i] === 1) flaggedCount += 1;
 		else if (!Number.isNaN(levels_pct[i]!)) valid[validCount++] = levels_pct[i]!;
 	}
-	const sorted = valid.subarray(0, validCount).sort();
 	return {
 		date: period.date,
-		value_pct: percentileNearestRank(sorted, percentile / 100),
+		value_pct: selectPercentileNearestRank(valid.subarray(0, validCount), percentile / 100),
 		validCount,
 		flaggedCount,
 		coverage: Math.min(1, validCount / period.expected),
