@@ -4,9 +4,10 @@ import { createWasmKernels } from '../src/lib/numerics/kernels/wasm-kernels';
 import { designKaiserKernel } from '../src/lib/numerics/resample/kaiser-kernel';
 
 // Run with: node --import tsx scripts/bench-kernels.ts [channels]
-// Both forms take turns, so that a busy machine slows both alike; the median of many rounds counts.
+// Both forms take turns, so that a busy machine slows both alike. The ratio is that of the medians.
 const CHANNELS = Number(process.argv[2] ?? 8);
-const ROUNDS = 41;
+const WARM_ROUNDS = 20;
+const ROUNDS = 61;
 const CALLS_PER_ROUND = 8;
 /** Ten cycles of 50 Hz at 12.8 kS/s. */
 const ROWS = 2560;
@@ -64,8 +65,6 @@ function time_us(task: (kernels: SignalKernels) => void, kernels: SignalKernels)
 	return Number(process.hrtime.bigint() - begin) / 1000 / CALLS_PER_ROUND;
 }
 
-const median = (values: number[]) => values.sort((a, b) => a - b)[values.length >> 1]!;
-
 const begin = performance.now();
 const wasm = createWasmKernels(shape);
 const made_ms = performance.now() - begin;
@@ -74,25 +73,23 @@ const script = createScriptKernels(shape);
 console.log(
 	`${CHANNELS} channels, ${ROWS} rows, ${shape.points} points, ${shape.lineCount} lines, ${2 * wasm.guard} taps; made in ${made_ms.toFixed(1)} ms`
 );
-console.log('median per call, µs'.padEnd(26), 'script'.padStart(9), 'wasm'.padStart(9), 'ratio'.padStart(7));
+const row = (name: string, ...cells: string[]) =>
+	console.log(name.padEnd(24) + cells.map((cell) => cell.padStart(14)).join(''));
+row('µs per call', 'script lowest', 'wasm lowest', 'script median', 'wasm median', 'ratio');
 for (const [name, task] of Object.entries(tasks)) {
-	const times = { script: [] as number[], wasm: [] as number[] };
-	for (let round = 0; round < ROUNDS; round++) {
-		const warm = round < ROUNDS / 4;
-		const scriptTime = time_us(task, script);
-		const wasmTime = time_us(task, wasm);
-		if (!warm) {
-			times.script.push(scriptTime);
-			times.wasm.push(wasmTime);
-		}
+	const plain: number[] = [];
+	const fast: number[] = [];
+	for (let round = 0; round < WARM_ROUNDS + ROUNDS; round++) {
+		const plainTime = time_us(task, script);
+		const fastTime = time_us(task, wasm);
+		if (round < WARM_ROUNDS) continue;
+		plain.push(plainTime);
+		fast.push(fastTime);
 	}
-	const [plain, fast] = [median(times.script), median(times.wasm)];
-	console.log(
-		name.padEnd(26),
-		plain.toFixed(1).padStart(9),
-		fast.toFixed(1).padStart(9),
-		(plain / fast).toFixed(1).padStart(7)
-	);
+	[plain, fast].forEach((times) => times.sort((a, b) => a - b));
+	const middle = ROUNDS >> 1;
+	const cells = [plain[0]!, fast[0]!, plain[middle]!, fast[middle]!, plain[middle]! / fast[middle]!];
+	row(name, ...cells.map((cell) => cell.toFixed(1)));
 }
 let worst = 0;
 let largest = 0;
