@@ -17,7 +17,7 @@ const LEAST_SHARE_WIDE = 0.5;
 const LEAST_OF_STRONGEST = 0.2;
 /** Length of one place that is looked at, and how many are looked at along the capture. */
 const PLACE_S = 1;
-const MOST_PLACES = 24;
+const MOST_PLACES = 8;
 
 export interface ReferenceChannel {
 	channelIndex: number;

@@ -1,4 +1,4 @@
-import { createScriptKernels } from '../../numerics/kernels/script-kernels';
+import { createSignalKernels } from '../../numerics/kernels/create-kernels';
 import type { SignalKernels } from '../../numerics/kernels/signal-kernels';
 
 /** The smallest transform that kernels can be made with: these only decode and hold samples. */
@@ -11,5 +11,5 @@ export function createDecodingKernels(
 	capacity: number,
 	rowBytes: number
 ): SignalKernels {
-	return createScriptKernels({ ...IDLE, channelCount, capacity, rawCapacity: Math.max(RAW_BYTES, rowBytes) });
+	return createSignalKernels({ ...IDLE, channelCount, capacity, rawCapacity: Math.max(RAW_BYTES, rowBytes) });
 }

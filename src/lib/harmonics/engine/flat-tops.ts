@@ -4,7 +4,12 @@ interface EndRuns {
 	/** Runs of three samples and more. */
 	runs: number;
 	longestRun: number;
+	/** Pieces that reached this value and were looked through. */
+	pieces: number;
 }
+
+/** Pieces at one extreme value that are looked through; what they do not show, more of them would not. */
+const ENOUGH_PIECES = 40;
 
 /** What is needed to tell cut-off crests, gathered piece by piece. */
 export interface FlatTops {
@@ -16,8 +21,8 @@ export interface FlatTops {
 
 export function noFlatTops(): FlatTops {
 	return {
-		top: { value: -Infinity, runs: 0, longestRun: 0 },
-		bottom: { value: Infinity, runs: 0, longestRun: 0 },
+		top: { value: -Infinity, runs: 0, longestRun: 0, pieces: 0 },
+		bottom: { value: Infinity, runs: 0, longestRun: 0, pieces: 0 },
 		resolution: Infinity
 	};
 }
@@ -36,8 +41,11 @@ export function addPiece(
 	least: number,
 	greatest: number
 ): void {
-	if (greatest >= tops.top.value) addEnd(tops.top, runsAt(samples, from, to, greatest));
-	if (least <= tops.bottom.value) addEnd(tops.bottom, runsAt(samples, from, to, least));
+	const { top, bottom } = tops;
+	if (greatest > top.value || (greatest === top.value && top.pieces < ENOUGH_PIECES))
+		addEnd(top, runsAt(samples, from, to, greatest));
+	if (least < bottom.value || (least === bottom.value && bottom.pieces < ENOUGH_PIECES))
+		addEnd(bottom, runsAt(samples, from, to, least));
 }
 
 /** Looks for the smallest step between neighbours of a piece. */
@@ -64,12 +72,13 @@ export function joinFlatTops(a: FlatTops, b: FlatTops): FlatTops {
 function addEnd(end: EndRuns, piece: EndRuns): void {
 	const same = piece.value === end.value;
 	end.value = piece.value;
+	end.pieces = piece.pieces + (same ? end.pieces : 0);
 	end.runs = piece.runs + (same ? end.runs : 0);
 	end.longestRun = Math.max(piece.longestRun, same ? end.longestRun : 0);
 }
 
 function runsAt(samples: Float64Array, from: number, to: number, value: number): EndRuns {
-	const found: EndRuns = { value, runs: 0, longestRun: 0 };
+	const found: EndRuns = { value, runs: 0, longestRun: 0, pieces: 1 };
 	let run = 0;
 	for (let i = from; i <= to; i++) {
 		if (i < to && samples[i] === value) {

@@ -1,4 +1,4 @@
-import { createScriptKernels } from '../../numerics/kernels/script-kernels';
+import { createSignalKernels } from '../../numerics/kernels/create-kernels';
 import type { KernelShape, SignalKernels } from '../../numerics/kernels/signal-kernels';
 import { squaresAtEnds } from '../../numerics/stats/windowed-rms';
 import type { CaptureSource } from '../../recording/sample-source';
@@ -55,7 +55,7 @@ export class WindowAnalyst {
 	constructor(
 		private readonly source: CaptureSource,
 		private readonly setup: AnalystSetup,
-		createKernels: KernelFactory = createScriptKernels
+		createKernels: KernelFactory = (shape) => createSignalKernels(shape)
 	) {
 		const { plan, mappings } = setup;
 		this.kernels = createKernels(kernelShapeFor(plan, mappings.length, source.samples));

@@ -21,6 +21,18 @@ export interface Interpolator {
  */
 export function planInterpolator(kernel: KaiserKernel): Interpolator {
 	const taps = 2 * kernel.halfWidth;
+	return { taps, guard: kernel.halfWidth, rows: tableOf(kernel), weights: new Float64Array(taps) };
+}
+
+/** Tables are costly to compute and never written to; captures analysed one after the other mostly need the same one. */
+const tables = new Map<string, Float64Array>();
+const MOST_TABLES = 8;
+
+function tableOf(kernel: KaiserKernel): Float64Array {
+	const key = `${kernel.cutoff}/${kernel.halfWidth}/${kernel.beta}`;
+	const known = tables.get(key);
+	if (known) return known;
+	const taps = 2 * kernel.halfWidth;
 	const rows = new Float64Array((ROWS_PER_SAMPLE + 1) * taps);
 	for (let row = 0; row <= ROWS_PER_SAMPLE; row++) {
 		const fraction = row / ROWS_PER_SAMPLE;
@@ -28,7 +40,9 @@ export function planInterpolator(kernel: KaiserKernel): Interpolator {
 			rows[row * taps + tap] = kaiserKernelAt(kernel, tap - kernel.halfWidth + 1 - fraction);
 		}
 	}
-	return { taps, guard: kernel.halfWidth, rows, weights: new Float64Array(taps) };
+	if (tables.size >= MOST_TABLES) tables.clear();
+	tables.set(key, rows);
+	return rows;
 }
 
 /**
