@@ -1,3 +1,4 @@
+import { LEAST_RECORDED_SHARE } from '../harmonics/aggregation/interval-group';
 import type { IntervalSeries } from '../harmonics/intervals';
 import type { StatisticRule } from '../limits/limit-set';
 import { localDayOf } from './local-day';
@@ -8,7 +9,7 @@ import { localDayOf } from './local-day';
  * RECORDED: flagged or not, the recorder was running; one ten-minute interval at each end of a week may be cut.
  * VALID:    what remains after flagged intervals are left out.
  */
-export const COMPLETE_RECORDED_SHARE = 0.99;
+export const COMPLETE_RECORDED_SHARE = LEAST_RECORDED_SHARE;
 export const COMPLETE_VALID_SHARE = 0.95;
 
 const WEEK_MS = 7 * 86_400_000;

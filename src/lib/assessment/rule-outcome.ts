@@ -71,12 +71,12 @@ export function ruleOutcome(
 	const percentiles = periods.map((period) =>
 		periodPercentile(levels_pct, series.flagged, period, rule.percentile)
 	);
-	const flaggedCount = series.flagged.reduce((count, flag) => count + flag, 0);
 	const needed = fewestForPercentile(rule.percentile);
 	const usable = percentiles.filter((period) => period.validCount >= needed);
 	const complete = usable.filter((period) => period.complete);
 	const governing = greatest(complete) ?? greatest(usable);
 	if (governing === null) {
+		const flaggedCount = series.flagged.reduce((count, flag) => count + flag, 0);
 		const validCount = percentiles.reduce((most, period) => Math.max(most, period.validCount), 0);
 		return validCount === 0
 			? { kind: 'no-value', flaggedCount }
