@@ -16,6 +16,8 @@ export interface PhasorData {
 	order: number;
 	phasors: readonly {
 		phase: Phase;
+		/** Drawn in this colour where the arrow is no conductor's. */
+		tone?: 'copper' | 'slate' | 'ink';
 		label: string;
 		quantity: 'voltage' | 'current';
 		/** rms. */
@@ -69,16 +71,16 @@ export function buildPhasorOption(
 			splitLine: { show: true, lineStyle: { color: palette.rule } }
 		},
 		series: data.phasors.map((p) => {
-			const style = phaseStyle(p.phase, mode);
+			const color = p.tone ? palette[p.tone] : phaseStyle(p.phase, mode).color;
 			const angle = ((p.angle_deg % 360) + 360) % 360;
 			const radius = (p.magnitude / longest(p.quantity)) * REACH[p.quantity];
 			return {
 				type: 'line' as const,
 				coordinateSystem: 'polar' as const,
 				name: p.label,
-				color: style.color,
+				color,
 				lineStyle: {
-					color: style.color,
+					color,
 					width: 2,
 					type: p.quantity === 'voltage' ? ('solid' as const) : [5, 3]
 				},
@@ -91,7 +93,7 @@ export function buildPhasorOption(
 						symbolSize: [9, 12],
 						// The symbol points up; screen angles run the same way as the phasor's.
 						symbolRotate: angle - 90,
-						itemStyle: { color: style.color },
+						itemStyle: { color },
 						label: {
 							show: true,
 							formatter: p.label,

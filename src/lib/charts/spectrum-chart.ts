@@ -1,6 +1,7 @@
 import type { CustomSeriesOption, EChartsOption } from 'echarts';
 import type { Phase } from '../recording/phase';
 import type { ChartTable } from './chart-table';
+import { escapeHtml } from './escape-html';
 import {
 	CHART_PALETTES,
 	DEFAULT_CHART_SIZE,
@@ -207,10 +208,6 @@ function tooltipText(data: SpectrumData, parameters: unknown): string {
 	});
 	if (limit !== undefined && limit !== null) lines.push(`limit: ${limit.toFixed(2)}`);
 	return [`<b>order ${data.orders[index] ?? ''}</b>`, ...lines].join('<br>');
-}
-
-function escapeHtml(text: string): string {
-	return text.replaceAll('&', '&amp;').replaceAll('<', '&lt;').replaceAll('>', '&gt;');
 }
 
 export function spectrumTable(data: SpectrumData): ChartTable {

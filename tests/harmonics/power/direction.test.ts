@@ -12,6 +12,7 @@ function asked(angle_deg: number, change: Partial<DirectionQuestion> = {}): Dire
 		order: 5,
 		voltage_V: 5,
 		current_A: 20,
+		apparentPower_VA: apparent,
 		fundamentalVoltage_V: 230,
 		fundamentalCurrent_A: 100,
 		activePower_W: apparent * Math.cos((angle_deg * Math.PI) / 180),
@@ -53,7 +54,9 @@ describe('the direction of an order is an indication', () => {
 	// Floors of IEC 61000-4-7, table 1, class I, from memory: 0.05 % of the voltage, 0.15 % of the current.
 	it('a level within the noise says nothing', () => {
 		expect(directionOf(asked(0, { voltage_V: 0.0004 * 230 })).reason).toBe('voltage-too-small');
-		expect(directionOf(asked(0, { voltage_V: 0.0006 * 230, activePower_W: 2 })).reason).toBe('sign-of-power');
+		expect(
+			directionOf(asked(0, { voltage_V: 0.0006 * 230, activePower_W: 2, apparentPower_VA: 2 })).reason
+		).toBe('sign-of-power');
 		expect(directionOf(asked(0, { current_A: 0.0014 * 100 })).reason).toBe('current-too-small');
 	});
 

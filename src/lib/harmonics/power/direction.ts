@@ -1,3 +1,5 @@
+import { ratioOf } from './apparent-power';
+
 /**
  * Uncertainty of the angle between voltage and current of one order, both transducers and the recorder together.
  * It grows with the order, as a delay and the phase error of instrument transformers do.
@@ -30,6 +32,8 @@ export interface DirectionQuestion {
 	current_A: number;
 	fundamentalVoltage_V: number;
 	fundamentalCurrent_A: number;
+	/** U_h·I_h of this order, or the sum of the phases' where they are taken together. */
+	apparentPower_VA: number;
 	/** Active power of this order, load convention. */
 	activePower_W: number;
 	reactivePower_var: number;
@@ -73,8 +77,7 @@ export function directionOf(question: DirectionQuestion): DirectionIndication {
 			? NaN
 			: (Math.atan2(reactivePower_var, activePower_W) * 180) / Math.PI;
 	const angleUncertainty_deg = angleUncertainty.fundamental_deg + angleUncertainty.perOrder_deg * (order - 1);
-	const apparent = voltage_V * current_A;
-	const activeShare = apparent > 0 ? Math.abs(activePower_W) / apparent : NaN;
+	const activeShare = ratioOf(Math.abs(activePower_W), question.apparentPower_VA);
 	const said = (reason: DirectionReason, indication: DirectionIndication['indication'] = 'undecided') => ({
 		indication,
 		reason,

@@ -1,5 +1,5 @@
-import type { PointSystem } from '../../../harmonics/nominal-voltages';
 import { ORDER_STRIDE } from '../../../harmonics/intervals';
+import type { PointSystem } from '../../../harmonics/nominal-voltages';
 import type { WindowRows as ConductorWindows } from '../../../harmonics/order-phasors';
 import type { SamplePowers_W } from '../../../harmonics/power/point-power';
 import type { PointWindows } from '../../../harmonics/power/point-windows';
@@ -27,14 +27,16 @@ export function pointWindows(rows: readonly AnalysisSeriesRow[], context: PointC
 	return point;
 }
 
-function conductorWindows({ rms, dc, components, phases_deg }: AnalysisSeriesRow): ConductorWindows {
+function conductorWindows(row: AnalysisSeriesRow): ConductorWindows {
+	const { rms, dc, components, phases_deg } = row;
+	const length = row.interval_count * ORDER_STRIDE;
 	if (!components || !phases_deg || !dc)
 		throw new Error('phasors are asked of a series that is not made of windows');
 	return {
 		rms: bufferToFloat64(rms),
 		dc: bufferToFloat64(dc),
-		components: bufferToFloats(components, (rms.byteLength / 8) * ORDER_STRIDE),
-		phases_deg: bufferToFloats(phases_deg, (rms.byteLength / 8) * ORDER_STRIDE)
+		components: bufferToFloats(components, length),
+		phases_deg: bufferToFloats(phases_deg, length)
 	};
 }
 
