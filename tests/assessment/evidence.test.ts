@@ -1,7 +1,9 @@
 import { describe, expect, it } from 'vitest';
 import { assess } from '$lib/assessment/assess';
 import type { Assessment } from '$lib/assessment/assessment';
-import { fewestForPercentile } from '$lib/assessment/evidence';
+import { fewestForPercentile, rulePeriods } from '$lib/assessment/evidence';
+import { mergeSeries } from '$lib/assessment/merge-series';
+import { ruleOutcome } from '$lib/assessment/rule-outcome';
 import type { IntervalSeries } from '$lib/harmonics/intervals';
 import { limitSet } from '../limits/load-limit-files';
 import { DAY_3S, EXACT, makeSeries, POINT, spectrum, WEEK_10MIN, type SeriesPlan } from './series-builder';
@@ -34,6 +36,47 @@ const fifth = (assessment: Assessment, key?: string) =>
 
 it('a percentile means something from 20 values at 95 % and 100 at 99 %', () => {
 	expect([95, 99, 90, 50].map(fewestForPercentile)).toEqual([20, 100, 10, 2]);
+});
+
+describe('periods without data', () => {
+	const part = (start: string, count: number, interval: '3s' | '10min') =>
+		makeSeries({ quantity: 'current', phase: 'L1', interval, count, start, level: spectrum(1000, { 5: 5 }) });
+	const rules = IEEE.tables.find((table) => table.key === 'table-2')!.statistics;
+	const daily = rules.find((rule) => rule.period === 'day')!;
+	const weekly = rules.find((rule) => rule.period === 'week')!;
+
+	it('a day in which nothing was recorded is no period, and the days beside it keep their dates', () => {
+		const series = mergeSeries([
+			part('2026-03-27T23:00:00Z', 200, '3s'),
+			part('2026-03-29T10:00:00Z', 300, '3s')
+		]);
+		expect(rulePeriods(series, daily, 'Europe/Berlin')).toEqual([
+			{ from: 0, to: 200, date: '2026-03-28', expected: 28_800 },
+			// The clocks go forward: 23 hours.
+			{ from: 200, to: 500, date: '2026-03-29', expected: 27_600 }
+		]);
+	});
+
+	it('a week without values neither governs nor passes', () => {
+		const series = mergeSeries([
+			part('2026-03-02T00:00:00Z', WEEK_10MIN, '10min'),
+			part('2026-03-16T00:00:00Z', WEEK_10MIN, '10min')
+		]);
+		const periods = rulePeriods(series, weekly, 'UTC');
+		expect(periods.map(({ date, from, to }) => [date, to - from])).toEqual([
+			['2026-03-02', WEEK_10MIN],
+			['2026-03-09', 0],
+			['2026-03-16', WEEK_10MIN]
+		]);
+		const levels_pct = Float64Array.from(series.starts_ms, (_, i) => (i < WEEK_10MIN ? 1 : 2));
+		const outcome = ruleOutcome(series, levels_pct, weekly, periods);
+		expect(outcome).toMatchObject({
+			kind: 'evaluated',
+			completePeriods: 2,
+			greaterIncomplete: null,
+			governing: { date: '2026-03-16', value_pct: 2, complete: true }
+		});
+	});
 });
 
 describe('weekly', () => {
