@@ -1,4 +1,4 @@
-import { type KaiserKernel, kaiserKernelAt } from './kaiser-kernel';
+import { type KaiserKernel, kaiserKernelFunction } from './kaiser-kernel';
 
 /** Rows of the table between one sample and the next; lines between rows are straight. */
 const ROWS_PER_SAMPLE = 2048;
@@ -34,11 +34,12 @@ function tableOf(kernel: KaiserKernel): Float64Array {
 	if (known) return known;
 	const taps = 2 * kernel.halfWidth;
 	const rows = new Float64Array((ROWS_PER_SAMPLE + 1) * taps);
-	for (let row = 0; row <= ROWS_PER_SAMPLE; row++) {
-		const fraction = row / ROWS_PER_SAMPLE;
-		for (let tap = 0; tap < taps; tap++) {
-			rows[row * taps + tap] = kaiserKernelAt(kernel, tap - kernel.halfWidth + 1 - fraction);
-		}
+	const valueAt = kaiserKernelFunction(kernel);
+	// The kernel is even: the second half of the table is the first, read backwards.
+	for (let i = 0; i < (ROWS_PER_SAMPLE / 2 + 1) * taps; i++) {
+		const fraction = Math.floor(i / taps) / ROWS_PER_SAMPLE;
+		rows[i] = valueAt((i % taps) - kernel.halfWidth + 1 - fraction);
+		rows[rows.length - 1 - i] = rows[i]!;
 	}
 	if (tables.size >= MOST_TABLES) tables.clear();
 	tables.set(key, rows);

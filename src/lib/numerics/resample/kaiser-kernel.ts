@@ -41,12 +41,16 @@ export function designKaiserKernel(passband: number, stopband: number, attenuati
 	};
 }
 
-/** Value of the kernel at distance t (samples) from its centre. */
-export function kaiserKernelAt(kernel: KaiserKernel, t: number): number {
-	const relative = t / kernel.halfWidth;
-	if (relative <= -1 || relative >= 1) return 0;
-	const taper = besselI0(kernel.beta * Math.sqrt(1 - relative * relative)) / besselI0(kernel.beta);
-	const x = 2 * kernel.cutoff * t;
-	const sinc = x === 0 ? 1 : Math.sin(Math.PI * x) / (Math.PI * x);
-	return 2 * kernel.cutoff * sinc * taper;
+/** The kernel as a function of the distance t (samples) from its centre. */
+export function kaiserKernelFunction(kernel: KaiserKernel): (t: number) => number {
+	const { cutoff, halfWidth, beta } = kernel;
+	const whole = besselI0(beta);
+	return (t) => {
+		const relative = t / halfWidth;
+		if (relative <= -1 || relative >= 1) return 0;
+		const taper = besselI0(beta * Math.sqrt(1 - relative * relative)) / whole;
+		const x = 2 * cutoff * t;
+		const sinc = x === 0 ? 1 : Math.sin(Math.PI * x) / (Math.PI * x);
+		return 2 * cutoff * sinc * taper;
+	};
 }
