@@ -124,7 +124,7 @@ describe.each(FORMS)('signal kernels in %s', (_form, create) => {
 		(kernel) => {
 			const kernels = create(shapeOf({ kernel }));
 			const weightAt = kaiserKernelFunction(kernel);
-		fillWithNoise(kernels, SEED + 2);
+			fillWithNoise(kernels, SEED + 2);
 			const { start, step } = widestWindow(kernels, 0.123);
 			kernels.transformWindow(start, step);
 			kernels.windows.forEach((window, c) => {
