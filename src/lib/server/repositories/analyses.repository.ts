@@ -124,11 +124,16 @@ export function analysesRepository(db: Db, scope: Scope) {
 				.select<{ count: number }[]>(db.raw('max(interval_count) as count'));
 			return rows.map((row) => row.count);
 		},
-		/** Scalars over one kind of interval, parts in order of time. */
-		async scalarsOf(analysisId: string, interval: StoredInterval): Promise<AnalysisScalarRow[]> {
-			return db('analysis_scalars')
+		/** Scalars over one kind of interval, parts in order of time; one measure of them, or all. */
+		async scalarsOf(
+			analysisId: string,
+			interval: StoredInterval,
+			measure?: AnalysisScalarRow['measure']
+		): Promise<AnalysisScalarRow[]> {
+			const query = db('analysis_scalars')
 				.where({ practice_id: scope.practiceId, analysis_id: analysisId, interval })
 				.orderBy(['measure', 'phase', 'part']);
+			return measure === undefined ? query : query.where({ measure });
 		},
 		async intervalKindsOf(analysisId: string): Promise<IntervalKind[]> {
 			const kinds: StoredInterval[] = await db('analysis_series')

@@ -3,9 +3,12 @@ import type { PointSystem } from '../../../harmonics/nominal-voltages';
 import type { WindowRows as ConductorWindows } from '../../../harmonics/order-phasors';
 import type { SamplePowers_W } from '../../../harmonics/power/point-power';
 import type { PointWindows } from '../../../harmonics/power/point-windows';
-import type { Phase } from '../../../recording/phase';
+import { LINE_PHASES, type Phase } from '../../../recording/phase';
 import { bufferToFloat64, bufferToFloats } from '../../analysis/series-codec';
+import type { Db } from '../../db/database';
 import type { AnalysisSeriesRow } from '../../db/rows';
+import { analysesRepository } from '../../repositories/analyses.repository';
+import type { Scope } from '../../repositories/scope';
 
 export interface PointContext {
 	system: PointSystem;
@@ -41,9 +44,27 @@ function conductorWindows(row: AnalysisSeriesRow): ConductorWindows {
 }
 
 /**
- * Mean of u·i of the windows by conductor. The stored rows hold none, so P is the sum over the orders; this is the place
- * for a stored one, index by index beside the rows of `pointWindows`.
+ * Mean of u·i of the windows in `rows`, by conductor, from the figures that the analysis keeps over time. Conductors of
+ * which none is kept are left out: their P is the sum over the orders.
  */
-export function samplePowers_W(): SamplePowers_W {
-	return {};
+export async function samplePowers_W(
+	db: Db,
+	scope: Scope,
+	analysisId: string,
+	rows: readonly AnalysisSeriesRow[]
+): Promise<SamplePowers_W> {
+	const first = rows[0];
+	if (!first) return {};
+	const starts_ms = bufferToFloat64(first.starts_ms);
+	const scalars = await analysesRepository(db, scope).scalarsOf(analysisId, 'window', 'active-power');
+	const powers: SamplePowers_W = {};
+	for (const phase of LINE_PHASES) {
+		const byStart = new Map<number, number>();
+		for (const scalar of scalars.filter((one) => one.phase === phase)) {
+			const values = bufferToFloat64(scalar.values);
+			bufferToFloat64(scalar.starts_ms).forEach((start, i) => byStart.set(start, values[i]!));
+		}
+		if (byStart.size > 0) powers[phase] = starts_ms.map((start) => byStart.get(start) ?? NaN);
+	}
+	return powers;
 }

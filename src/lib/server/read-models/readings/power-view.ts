@@ -10,9 +10,9 @@ import {
 } from '../../../harmonics/power/direction';
 import type { ThreePhasePower } from '../../../harmonics/power/effective-power';
 import type { OrderPowers } from '../../../harmonics/power/phase-sums';
-import { PointPowerSums, type PointPower } from '../../../harmonics/power/point-power';
+import { PointPowerSums, type PointPower, type SamplePowers_W } from '../../../harmonics/power/point-power';
 import type { Phase } from '../../../recording/phase';
-import { pointWindows, samplePowers_W, type PointContext } from './point-windows';
+import { pointWindows, type PointContext } from './point-windows';
 import { figure, type Figure } from './reading-figure';
 import { listed, unmappedNotes } from './unmapped-notes';
 import type { WindowRows } from './window-rows';
@@ -65,10 +65,14 @@ function shown<T extends object>(figures: T): Shown<T> {
 }
 
 /** Powers of a point and the direction of its orders over the chosen windows. */
-export function powerReadings({ rows, windows }: WindowRows, context: PointContext): PowerReadings {
+export function powerReadings(
+	{ rows, windows }: WindowRows,
+	context: PointContext,
+	samplePowers_W: SamplePowers_W
+): PowerReadings {
 	const point = pointWindows(rows, context);
 	const sums = new PointPowerSums();
-	sums.add(point, windows, samplePowers_W());
+	sums.add(point, windows, samplePowers_W);
 	const power = sums.finish();
 	const notes = unmappedNotes(point, context.label, 'its power is not known, and no total is stated.');
 	const direction = { caveat: DIRECTION_CAVEAT, angleUncertainty: ASSUMED_ANGLE_UNCERTAINTY };

@@ -11,11 +11,12 @@ import { limitSetsRepository } from '../../repositories/limit-sets.repository';
 import type { Scope } from '../../repositories/scope';
 import type { CaptureSurvey } from '../capture-list';
 import { intervalTrend, percentileTable, type IntervalTrend, type PercentileTable } from '../reading-trend';
+import { samplePowers_W } from './point-windows';
 import { powerReadings, type PowerReadings } from './power-view';
 import type { NoWaveform, ReadingView } from './reading-views';
 import { sequenceReadings, type SequenceReadings } from './sequence-view';
 import { waveformReadings, type WaveformReadings } from './spectrum-view';
-import { byPhase, windowRows, type Quantity, type WindowChoice, type WindowRows } from './window-rows';
+import { byPhase, windowRows, type Quantity, type WindowChoice } from './window-rows';
 
 export interface ReadingsQuestion {
 	view: ReadingView;
@@ -70,31 +71,29 @@ export async function readings(
 		survey.facts.limitSetId === null
 			? null
 			: await limitSetsRepository(db, scope.practiceId).byId(survey.facts.limitSetId);
-	const overview = await analyses.seriesOf(analysis.id);
+	const windows =
+		summary.kind === 'waveform' ? await windowRows(db, scope, analysis, summary, asked.window) : null;
+	const overview = asked.view === 'spectrum' ? await analyses.seriesOf(analysis.id) : [];
 	const quantities = (['voltage', 'current'] as const).filter((quantity) =>
-		overview.some((row) => row.quantity === quantity)
+		(windows?.rows ?? overview).some((row) => row.quantity === quantity)
 	);
 	const quantity = quantities.includes(asked.quantity) ? asked.quantity : (quantities[0] ?? asked.quantity);
 	const highestOrder = summary.kind === 'waveform' ? summary.highestOrder : MAX_ORDER;
 	const basis = readingBasis(limitSet, point, quantity, highestOrder);
 	const own = overview.filter((row) => row.quantity === quantity).sort(byPhase);
 	const label = (phase: Phase) => formatPhase(phase, survey.facts.phaseNames);
-	const windows =
-		summary.kind === 'waveform' ? await windowRows(db, scope, analysis, summary, asked.window) : null;
-	const detail = (): Readings['detail'] => {
-		if (asked.view !== 'spectrum')
-			return windows ? waveformView(asked.view, windows) : { kind: 'no-waveform' };
-		return summary.kind === 'waveform' && windows
+	const spectrum = (): WaveformReadings | TrendReadings =>
+		summary.kind === 'waveform' && windows
 			? waveformReadings(windows, summary, { point, basis, label, quantity })
 			: { kind: 'trend', percentiles: percentileTable(own, { point, basis, label, highestOrder }) };
-	};
-	const waveformView = (view: Exclude<ReadingView, 'spectrum'>, rows: WindowRows) => {
+	const other = async (view: Exclude<ReadingView, 'spectrum'>): Promise<Readings['detail']> => {
+		if (!windows) return { kind: 'no-waveform' };
 		const context = { system: survey.facts.system, highestOrder, label };
 		switch (view) {
 			case 'power':
-				return powerReadings(rows, context);
+				return powerReadings(windows, context, await samplePowers_W(db, scope, analysis.id, windows.rows));
 			case 'sequence':
-				return sequenceReadings(rows, context);
+				return sequenceReadings(windows, context);
 		}
 	};
 	return {
@@ -109,7 +108,7 @@ export async function readings(
 		quantity,
 		basis,
 		choice: windows?.choice ?? null,
-		detail: detail(),
+		detail: asked.view === 'spectrum' ? spectrum() : await other(asked.view),
 		trend:
 			asked.view === 'spectrum'
 				? intervalTrend(own, kinds, { point, basis, label, highestOrder, asked })
