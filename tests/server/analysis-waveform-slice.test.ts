@@ -3,6 +3,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, describe, expect, it } from 'vitest';
 import type { Recording } from '$lib/recording/recording';
+import { sourceOf } from '$lib/recording/sample-source';
 import {
 	layOutSamples,
 	OVERVIEW_BLOCK,
@@ -49,8 +50,8 @@ function recording(samples: Float64Array, over: Partial<Recording> = {}): Record
 
 async function store(source: Recording, toPrimary = 1): Promise<SamplesLayout> {
 	const mappings = [{ channelIndex: 0, quantity: 'voltage' as const, phase: 'L1' as const, toPrimary }];
-	const { sha256 } = await blobs.putStream(samplesStream(source, mappings), Number.MAX_SAFE_INTEGER);
-	return { sha256, ...layOutSamples(source, mappings) };
+	const { sha256 } = await blobs.putStream(samplesStream(sourceOf(source), mappings), Number.MAX_SAFE_INTEGER);
+	return { sha256, ...layOutSamples(sourceOf(source), mappings) };
 }
 const ask = (layout: SamplesLayout, from_s: number, to_s: number, points: number) =>
 	readWaveformSlice(blobs, layout, { from_s, to_s, points }, [0]);

@@ -85,11 +85,11 @@ describe('the worker process', () => {
 				expect(code).toBe(0);
 				expect(await job()).toMatchObject({ status: 'queued', attempts: 0, worker_id: null });
 			} else expect(await job()).toMatchObject({ status: 'running', attempts: 1 });
-			expect(await container.db('analyses').where({ capture_id: captureId })).toHaveLength(0);
+			expect(await container.db('analyses').where({ capture_id: captureId, is_finished: 1 })).toHaveLength(0);
 
 			startWorker();
 			await until(job, (row) => row.status === 'done', 60_000);
-			expect(await container.db('analyses').where({ capture_id: captureId })).toHaveLength(1);
+			expect(await container.db('analyses').where({ capture_id: captureId, is_finished: 1 })).toHaveLength(1);
 			expect(await captures()).toMatchObject([{ status: 'analysed' }]);
 		},
 		180_000

@@ -1,3 +1,5 @@
+import type { OpenedCapture } from './read-capture';
+import { sourceOf, type CaptureSource, type SampleSource, type SourceChannel } from './sample-source';
 import type {
 	CaptureContent,
 	ReadRemark,
@@ -39,18 +41,21 @@ export interface ChannelFacts {
 	phaseHint: RecordingChannel['phaseHint'];
 	valuesAre: RecordingChannel['valuesAre'];
 	ratio: RecordingChannel['ratio'];
-	missingCount: number;
+	/** Null where the samples have not been looked at yet: the analysis counts them. */
+	missingCount: number | null;
 }
 
 /** Orders above this are never asked for (IEEE Std 519, IEC 61000-4-30 class A). */
 const MAX_ORDER_ANALYSED = 50;
 
-export function captureFacts(content: CaptureContent): CaptureFacts {
-	return content.kind === 'waveform' ? waveformFacts(content) : trendFacts(content);
+/** A capture read into memory or one whose samples are still in their file. */
+export function captureFacts(content: CaptureContent | OpenedCapture): CaptureFacts {
+	if (content.kind === 'trend') return trendFacts(content);
+	return waveformFacts('samples' in content ? content : sourceOf(content));
 }
 
 /** Seconds from the first sample to the end of the last one, gaps included. */
-export function recordingDuration_s(recording: Recording): number {
+export function recordingDuration_s(recording: Pick<Recording, 'segments' | 'timeStamps_s'>): number {
 	const stamps = recording.timeStamps_s;
 	if (stamps) {
 		const last = stamps[stamps.length - 1] as number;
@@ -63,7 +68,7 @@ export function recordingDuration_s(recording: Recording): number {
 	);
 }
 
-function waveformFacts(recording: Recording): CaptureFacts {
+function waveformFacts(recording: CaptureSource): CaptureFacts {
 	const rates = recording.segments.map(({ samplingRate_Hz }) => samplingRate_Hz);
 	const samplingRate_Hz =
 		rates.length === 0 ? null : { lowest: Math.min(...rates), highest: Math.max(...rates) };
@@ -71,7 +76,7 @@ function waveformFacts(recording: Recording): CaptureFacts {
 		...commonFacts(recording),
 		kind: 'waveform',
 		channelCount: recording.channels.length,
-		channels: recording.channels.map(channelFacts),
+		channels: recording.channels.map((channel) => channelFacts(channel, recording.samples)),
 		samplingRate_Hz,
 		interval_s: null,
 		sampleCount: recording.sampleCount,
@@ -107,12 +112,12 @@ function trendFacts(trend: Trend): CaptureFacts {
 	};
 }
 
-function commonFacts(content: CaptureContent) {
+function commonFacts(content: OpenedCapture) {
 	const { format, variant, stationName, recorderName, nominalFrequency_Hz, start, remarks } = content;
 	return { format, variant, stationName, recorderName, nominalFrequency_Hz, start, remarks };
 }
 
-function channelFacts(channel: RecordingChannel): ChannelFacts {
+function channelFacts(channel: SourceChannel, samples: SampleSource): ChannelFacts {
 	const { name, unitAsWritten, quantity, phaseHint, valuesAre, ratio } = channel;
 	return {
 		name,
@@ -121,7 +126,7 @@ function channelFacts(channel: RecordingChannel): ChannelFacts {
 		phaseHint,
 		valuesAre,
 		ratio,
-		missingCount: missingIn(channel.samples)
+		missingCount: samples.kind === 'memory' ? missingIn(samples.channels[channel.index]!) : null
 	};
 }
 
@@ -131,7 +136,7 @@ function missingIn(values: Float64Array): number {
 	return missing;
 }
 
-function sideOfAll(channels: RecordingChannel[]): CaptureFacts['valuesAre'] {
+function sideOfAll(channels: readonly SourceChannel[]): CaptureFacts['valuesAre'] {
 	const sides = new Set(channels.map(({ valuesAre }) => valuesAre));
 	const [only] = sides;
 	return sides.size === 1 && only !== undefined ? only : 'mixed';

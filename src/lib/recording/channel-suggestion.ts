@@ -1,5 +1,7 @@
 import { formatPhase, LINE_TO_LINE_PHASES, type Phase, type PhaseNames } from './phase';
-import type { CaptureContent, RecordingChannel, TrendSeries } from './recording';
+import type { OpenedCapture } from './read-capture';
+import type { CaptureContent, TrendSeries } from './recording';
+import type { SourceChannel } from './sample-source';
 
 /** The facts of a point that a suggestion leans on. */
 export interface SuggestionPoint {
@@ -26,7 +28,10 @@ export interface MappingSuggestion {
  * Quantity, conductor and factor to primary values for every channel of a capture.
  * The first channel of a quantity on a conductor is suggested; further ones (a second feeder) are left out.
  */
-export function suggestMappings(content: CaptureContent, point: SuggestionPoint): MappingSuggestion[] {
+export function suggestMappings(
+	content: CaptureContent | OpenedCapture,
+	point: SuggestionPoint
+): MappingSuggestion[] {
 	if (content.kind === 'trend')
 		return content.series.map((series, index) => suggestSeries(series, index, point));
 	const taken = new Map<string, string>();
@@ -34,7 +39,7 @@ export function suggestMappings(content: CaptureContent, point: SuggestionPoint)
 }
 
 function suggestChannel(
-	channel: RecordingChannel,
+	channel: SourceChannel,
 	point: SuggestionPoint,
 	taken: Map<string, string>
 ): MappingSuggestion {
@@ -84,7 +89,7 @@ interface GuessedQuantity {
 	reason: string;
 }
 
-function quantityOf(channel: RecordingChannel): GuessedQuantity | null {
+function quantityOf(channel: SourceChannel): GuessedQuantity | null {
 	const { quantity, unitAsWritten, name } = channel;
 	if (quantity !== 'other') {
 		const isStated = unitAsWritten !== '';
@@ -127,7 +132,7 @@ interface Factor {
 
 /** Primary values need no factor; secondary ones need the file's ratio, or else the point's. */
 function factorToPrimary(
-	channel: RecordingChannel,
+	channel: SourceChannel,
 	quantity: 'voltage' | 'current',
 	point: SuggestionPoint
 ): Factor {

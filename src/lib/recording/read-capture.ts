@@ -1,10 +1,12 @@
-import type { Result } from '../result';
+import { ok, type Result } from '../result';
+import { loadFile, type CaptureHandle } from './capture-handle';
 import { incompleteGroupSentence } from './group-capture-files';
 import { looksLikeCff } from './readers/comtrade/cff';
-import { looksLikeCfg, readComtrade } from './readers/comtrade/read-comtrade';
+import { looksLikeCfg, openComtrade, readComtrade } from './readers/comtrade/read-comtrade';
 import { readDelimitedText, type DelimitedTextOptions } from './readers/delimited-text/read-delimited-text';
 import { refuse } from './readers/read-problem';
-import type { CaptureContent, CaptureFile, ReadProblem } from './recording';
+import type { CaptureContent, CaptureFile, ReadProblem, Trend } from './recording';
+import { sourceOf, type CaptureSource } from './sample-source';
 
 /** First bytes of files that are no captures, or of formats that are not read, with what to do instead. */
 const OTHER_FORMATS: { bytes: number[]; words: string }[] = [
@@ -50,6 +52,24 @@ export function readCapture(
 			);
 	}
 	return readDelimitedText(files, options);
+}
+
+/** A waveform whose samples are fetched when they are needed, or a trend log. */
+export type OpenedCapture = CaptureSource | Trend;
+
+/**
+ * Opens one capture without holding more of it in memory than its format forces: binary COMTRADE stays in its file,
+ * everything else is read as by `readCapture`.
+ */
+export function openCapture(
+	files: readonly CaptureHandle[],
+	options: DelimitedTextOptions = {}
+): Result<OpenedCapture, ReadProblem> {
+	const streamed = openComtrade(files);
+	if (streamed !== null) return streamed;
+	const read = readCapture(files.map(loadFile), options);
+	if (!read.ok || read.value.kind === 'trend') return read as Result<Trend, ReadProblem>;
+	return ok(sourceOf(read.value));
 }
 
 /** A ".dat" with headings is a table of its own; rows of bare numbers, or binary, belong to a configuration. */

@@ -20,13 +20,13 @@ export interface RowSamples {
 export type SampleSource = MemorySamples | RowSamples;
 
 /** What is known of a channel beside its samples. */
-export type ChannelFacts = Omit<RecordingChannel, 'samples'>;
+export type SourceChannel = Omit<RecordingChannel, 'samples'>;
+
+/** Everything of a recording but its samples. */
+export type RecordingFrame = Omit<Recording, 'channels'> & { channels: readonly SourceChannel[] };
 
 /** A recording whose samples are fetched when they are needed, so that its length does not matter. */
-export type CaptureSource = Omit<Recording, 'channels'> & {
-	channels: readonly ChannelFacts[];
-	samples: SampleSource;
-};
+export type CaptureSource = RecordingFrame & { samples: SampleSource };
 
 /** A recording in memory as a source of samples; nothing is copied. */
 export function sourceOf(recording: Recording): CaptureSource {

@@ -1,4 +1,4 @@
-import type { ChannelFacts } from '../../recording/sample-source';
+import type { SourceChannel } from '../../recording/sample-source';
 import { thd_pctOfFundamental } from '../distortion';
 import { harmonicGroup } from '../harmonic-group';
 import { harmonicSubgroup } from '../harmonic-subgroup';
@@ -20,7 +20,7 @@ const MATRICES = [
 const COLUMNS = ['rms', 'dc', 'peak', 'thd_pctOfFundamental'] as const;
 
 /** Room for `count` windows of one channel, everything "no data". */
-export function emptyChannel(channel: ChannelFacts, mapping: ChannelMapping, count: number): ChannelAnalysis {
+export function emptyChannel(channel: SourceChannel, mapping: ChannelMapping, count: number): ChannelAnalysis {
 	const rows = (length: number) => new Float64Array(length).fill(NaN);
 	return {
 		mapping,

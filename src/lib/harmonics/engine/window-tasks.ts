@@ -1,7 +1,7 @@
 import type { CaptureSource } from '../../recording/sample-source';
-import { trackerReach, type TrackedWindow, WindowTracker } from '../window-tracker';
+import { trackerReach, type TrackedWindow, type TrackerSetup, WindowTracker } from '../window-tracker';
 import type { PreparedCapture } from './prepare-capture';
-import { viewChannel } from './reference-view';
+import { viewChannel } from './channel-view';
 import type { SegmentPlan } from './segment-plan';
 
 /** Consecutive windows of one stretch, placed and still to be analysed. */
@@ -17,12 +17,14 @@ const TEN_MINUTES_MS = 600_000;
 /**
  * Places the windows of a capture, one task at a time. A task ends where the train starts anew at a ten-minute tick.
  * start_ms  instant of sample 0, milliseconds since 1970-01-01 UTC; null when it is not known: there are no ticks then
+ * follow    how the reference channel of a stretch is followed where its samples are not evenly spaced
  */
 export function* windowTasks(
 	source: CaptureSource,
 	prepared: PreparedCapture,
 	start_ms: number | null,
-	windowsPerTask = WINDOWS_PER_TASK
+	windowsPerTask = WINDOWS_PER_TASK,
+	follow?: (plan: SegmentPlan) => Pick<TrackerSetup, 'reference' | 'phasorAt'>
 ): Generator<WindowTask, void, void> {
 	const { reference } = prepared;
 	let frequency_Hz = reference.frequency_Hz;
@@ -30,7 +32,9 @@ export function* windowTasks(
 		const { stretch, cyclesPerWindow, spectrum } = plan;
 		const frequency = frequency_Hz / stretch.samplingRate_Hz;
 		const tracker = new WindowTracker({
-			reference: viewChannel(source, reference.channelIndex, trackerReach(cyclesPerWindow, frequency)),
+			...(follow?.(plan) ?? {
+				reference: viewChannel(source, reference.channelIndex, trackerReach(cyclesPerWindow, frequency))
+			}),
 			firstSample: stretch.fromSample,
 			lastSample: stretch.toSample - 1,
 			guard: spectrum.kernel.halfWidth,

@@ -6,8 +6,8 @@ import { ENGINE_VERSION } from '../../harmonics/engine-version';
 import { trendToIntervalSeries, type TrendMapping } from '../../harmonics/trend-intervals';
 import type { CaptureFindings, ChannelMapping, WaveformWindows } from '../../harmonics/waveform-analysis';
 import type { Phase, PhaseNames } from '../../recording/phase';
-import type { Recording, Trend } from '../../recording/recording';
-import { sourceOf } from '../../recording/sample-source';
+import type { Trend } from '../../recording/recording';
+import type { CaptureSource } from '../../recording/sample-source';
 import { JobFailed, type JobContext } from '../jobs/job-definition';
 import type { AnalysisPart } from '../repositories/analyses.repository';
 import type { BlobStore, StoredBlob } from '../storage/blob-store';
@@ -48,7 +48,7 @@ interface WindowsSeen {
 /** Analyses a waveform window by window; stops between blocks when it was cancelled or the process is going down. */
 export async function prepareWaveform(
 	blobs: BlobStore,
-	recording: Recording,
+	source: CaptureSource,
 	mappings: readonly ChannelMapping[],
 	basis: AnalysisBasis,
 	context: Pick<JobContext, 'progress'>,
@@ -66,7 +66,7 @@ export async function prepareWaveform(
 			await store(windowPart(span, collector, part++, start_ms));
 		}
 	}
-	const steps = analyseCapture(sourceOf(recording), mappings, basis, (span) => spans.push(span));
+	const steps = analyseCapture(source, mappings, basis, (span) => spans.push(span));
 	let findings: CaptureFindings;
 	for (;;) {
 		const step = steps.next();
@@ -81,7 +81,7 @@ export async function prepareWaveform(
 		await context.progress(Math.min(done, total), total + 1, `${done} of ${total} windows analysed`);
 	}
 	collector.finish();
-	const samples = await blobs.putStream(samplesStream(recording, mappings), Number.MAX_SAFE_INTEGER);
+	const samples = await blobs.putStream(samplesStream(source, mappings), Number.MAX_SAFE_INTEGER);
 	return {
 		engineVersion: findings.engineVersion,
 		parameters: { nominalFrequency_Hz: findings.nominalFrequency_Hz, start_ms },
@@ -95,7 +95,7 @@ export async function prepareWaveform(
 			flaggedCount: seen.flaggedCount,
 			channels: findings.whole.map(({ mapping, name }) => ({ ...mapping, name })),
 			quality: findings.quality,
-			samples: { sha256: samples.sha256, ...layOutSamples(recording, mappings) }
+			samples: { sha256: samples.sha256, ...layOutSamples(source, mappings) }
 		},
 		last: aggregatePart(collector, findings.whole, {
 			start_ms: start_ms + 1000 * seen.start_s,

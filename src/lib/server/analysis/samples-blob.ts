@@ -1,7 +1,8 @@
 import { Readable } from 'node:stream';
 import { z } from 'zod';
 import type { ChannelMapping } from '../../harmonics/waveform-analysis';
-import type { Recording } from '../../recording/recording';
+import { viewChannel } from '../../harmonics/engine/channel-view';
+import type { CaptureSource } from '../../recording/sample-source';
 
 /** Samples that one overview entry stands for. */
 export const OVERVIEW_BLOCK = 256;
@@ -40,7 +41,7 @@ function channelBytes(sampleCount: number): number {
 	return 4 * (sampleCount + 2 * overviewCount(sampleCount, OVERVIEW_BLOCK));
 }
 
-function timedSegments(recording: Recording): SamplesLayout['segments'] {
+function timedSegments(recording: CaptureSource): SamplesLayout['segments'] {
 	let start_s = 0;
 	return recording.segments.map((segment) => {
 		start_s += segment.gapBefore_s ?? 0;
@@ -57,7 +58,7 @@ function timedSegments(recording: Recording): SamplesLayout['segments'] {
 
 /** The layout of the blob that `samplesStream` writes for these mappings; its hash is known once it is stored. */
 export function layOutSamples(
-	recording: Recording,
+	recording: CaptureSource,
 	mappings: readonly ChannelMapping[]
 ): Omit<SamplesLayout, 'sha256'> {
 	const { sampleCount, timeStamps_s } = recording;
@@ -77,38 +78,53 @@ export function layOutSamples(
 	};
 }
 
-/** One channel as it lies in the blob. A block with nothing but missing samples has NaN as both its ends. */
-export function channelSamples(samples: Float64Array, toPrimary: number): Buffer {
-	const n = samples.length;
-	const blocks = overviewCount(n, OVERVIEW_BLOCK);
-	const out = new Float32Array(n + 2 * blocks);
-	for (let i = 0; i < n; i++) out[i] = samples[i]! * toPrimary;
-	for (let block = 0; block < blocks; block++) {
-		let least = NaN;
-		let greatest = NaN;
-		const end = Math.min(n, (block + 1) * OVERVIEW_BLOCK);
-		for (let i = block * OVERVIEW_BLOCK; i < end; i++) {
-			const value = out[i]!;
-			if (!(value >= least)) least = Number.isNaN(value) ? least : value;
-			if (!(value <= greatest)) greatest = Number.isNaN(value) ? greatest : value;
+/** Samples written at a time; whole blocks of the overview. */
+const CHUNK = 256 * OVERVIEW_BLOCK;
+
+/**
+ * One channel as it lies in the blob, piece by piece: samples, then the least and the greatest of each block.
+ * A block with nothing but missing samples has NaN as both its ends.
+ */
+function* channelParts(
+	source: CaptureSource,
+	{ channelIndex, toPrimary }: ChannelMapping
+): Generator<Buffer> {
+	const { sampleCount } = source;
+	const view = viewChannel(source, channelIndex, CHUNK);
+	const blocks = overviewCount(sampleCount, OVERVIEW_BLOCK);
+	const least = new Float32Array(blocks).fill(NaN);
+	const greatest = new Float32Array(blocks).fill(NaN);
+	for (let from = 0; from < sampleCount; from += CHUNK) {
+		const to = Math.min(sampleCount, from + CHUNK);
+		view.cover(from, to);
+		const out = new Float32Array(to - from);
+		for (let i = from; i < to; i++) {
+			const value = Math.fround(view.samples[i - view.base]! * toPrimary);
+			out[i - from] = value;
+			if (value !== value) continue;
+			const block = Math.floor(i / OVERVIEW_BLOCK);
+			if (!(value >= least[block]!)) least[block] = value;
+			if (!(value <= greatest[block]!)) greatest[block] = value;
 		}
-		out[n + block] = least;
-		out[n + blocks + block] = greatest;
+		yield bytesOf(out);
 	}
-	return Buffer.from(out.buffer);
+	yield bytesOf(least);
+	yield bytesOf(greatest);
 }
 
-/** The blob, channel by channel, so that only one channel's copy is held at a time. */
-export function samplesStream(recording: Recording, mappings: readonly ChannelMapping[]): Readable {
+function bytesOf(values: Float32Array | Float64Array): Buffer {
+	return Buffer.from(values.buffer, values.byteOffset, values.byteLength);
+}
+
+/** The blob, channel by channel and piece by piece, so that a capture of any length can be written. */
+export function samplesStream(source: CaptureSource, mappings: readonly ChannelMapping[]): Readable {
 	function* parts(): Generator<Buffer> {
 		for (const mapping of mappings) {
-			const channel = recording.channels[mapping.channelIndex];
-			if (!channel) throw new Error(`channel ${mapping.channelIndex} is mapped, but the recording has none`);
-			yield channelSamples(channel.samples, mapping.toPrimary);
+			if (!source.channels[mapping.channelIndex])
+				throw new Error(`channel ${mapping.channelIndex} is mapped, but the recording has none`);
+			yield* channelParts(source, mapping);
 		}
-		const { timeStamps_s } = recording;
-		if (timeStamps_s)
-			yield Buffer.from(timeStamps_s.buffer, timeStamps_s.byteOffset, timeStamps_s.byteLength);
+		if (source.timeStamps_s) yield bytesOf(source.timeStamps_s);
 	}
 	return Readable.from(parts(), { objectMode: true });
 }

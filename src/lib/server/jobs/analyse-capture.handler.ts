@@ -1,7 +1,6 @@
 import { ENGINE_VERSION } from '../../harmonics/engine-version';
 import { nominalVoltagesByPhase_V } from '../../harmonics/nominal-voltages';
-import { readCapture } from '../../recording/read-capture';
-import type { CaptureContent } from '../../recording/recording';
+import { openCapture, type OpenedCapture } from '../../recording/read-capture';
 import { parseSettings } from '../analysis/capture-settings';
 import {
 	prepareTrend,
@@ -15,6 +14,7 @@ import type { CaptureRow } from '../db/rows';
 import { captureSurvey, type CaptureSurvey } from '../read-models/capture-list';
 import { analysesRepository } from '../repositories/analyses.repository';
 import { capturesRepository } from '../repositories/captures.repository';
+import { openFileHandle, type FileHandle } from '../storage/file-handle';
 import { storedFilesRepository } from '../repositories/stored-files.repository';
 import { releaseCapture } from '../services/captures.service';
 import { analyseCapture } from './analyse-capture.job';
@@ -31,7 +31,6 @@ export const handle: JobHandler = async (container, rawPayload, context) => {
 	if (!capture || !survey) throw new JobFailed('The capture was removed before it could be analysed.');
 	try {
 		await captures.update(captureId, { status: 'analysing', problem: null }, clock());
-		const content = await readOriginals(container, capture, context);
 		const analyses = analysesRepository(db, context);
 		await analyses.discardUnfinished(captureId);
 		const analysisId = await analyses.begin({
@@ -42,7 +41,8 @@ export const handle: JobHandler = async (container, rawPayload, context) => {
 		});
 		const storePart: StorePart = (part) =>
 			withTransaction(db, (trx) => analysesRepository(trx, context).addPart(analysisId, part));
-		const prepared = await prepare(container, capture, survey, content, context, storePart);
+		const { content, close } = await openOriginals(container, capture, context);
+		const prepared = await prepare(container, capture, survey, content, context, storePart).finally(close);
 		await context.progress(1, 1, 'storing the readings');
 		await withTransaction(db, (trx) => save(container, trx, capture, analysisId, prepared, context));
 	} catch (cause) {
@@ -51,30 +51,37 @@ export const handle: JobHandler = async (container, rawPayload, context) => {
 	}
 };
 
-async function readOriginals(
+/** Opens the stored originals; what they hold may still be in them, so close them only at the very end. */
+async function openOriginals(
 	container: Container,
 	capture: CaptureRow,
 	context: JobContext
-): Promise<CaptureContent> {
+): Promise<{ content: OpenedCapture; close: () => void }> {
 	const files = await capturesRepository(container.db, context).filesOf([capture.id]);
 	const total_bytes = files.reduce((sum, file) => sum + file.size_bytes, 0);
 	let done_bytes = 0;
-	const originals = [];
-	for (const file of files) {
-		await context.progress(done_bytes, total_bytes + 1, `reading ${file.name}`);
-		originals.push({ name: file.name, bytes: await container.blobs.read(file.sha256) });
-		done_bytes += file.size_bytes;
+	const handles: FileHandle[] = [];
+	const close = () => handles.forEach((handle) => handle.close());
+	try {
+		for (const file of files) {
+			await context.progress(done_bytes, total_bytes + 1, `reading ${file.name}`);
+			handles.push(openFileHandle(file.name, await container.blobs.localFile(file.sha256)));
+			done_bytes += file.size_bytes;
+		}
+		const opened = openCapture(handles);
+		if (!opened.ok) throw new JobFailed(opened.problem.sentence);
+		return { content: opened.value, close };
+	} catch (cause) {
+		close();
+		throw cause;
 	}
-	const read = readCapture(originals);
-	if (!read.ok) throw new JobFailed(read.problem.sentence);
-	return read.value;
 }
 
-function prepare(
+async function prepare(
 	container: Container,
 	capture: CaptureRow,
 	survey: CaptureSurvey,
-	content: CaptureContent,
+	content: OpenedCapture,
 	context: JobContext,
 	storePart: StorePart
 ): Promise<PreparedAnalysis> {

@@ -1,8 +1,7 @@
 import { captureFacts } from '../../recording/capture-facts';
 import { suggestMappings } from '../../recording/channel-suggestion';
-import { readCapture } from '../../recording/read-capture';
+import { openCapture, type OpenedCapture } from '../../recording/read-capture';
 import { startToUtc_ms } from '../../recording/recording-start';
-import type { CaptureContent, CaptureFile } from '../../recording/recording';
 import { appendAudit } from '../audit/audit-log';
 import type { Container } from '../container';
 import { withTransaction } from '../db/database';
@@ -10,31 +9,32 @@ import type { UploadRow } from '../db/rows';
 import { captureSurvey, type CaptureSurvey, type StoredFacts } from '../read-models/capture-list';
 import { capturesRepository } from '../repositories/captures.repository';
 import { uploadsRepository } from '../repositories/uploads.repository';
+import { openFileHandle, type FileHandle } from '../storage/file-handle';
 import type { JobHandler } from './handlers';
 import { JobCancelled, JobFailed, type JobContext } from './job-definition';
 import { recogniseCapture } from './recognise-capture.job';
 
 /** The start instant, where the file alone tells it or the site's zone completes it. */
-function startedAt(content: CaptureContent, survey: CaptureSurvey): string | null {
+function startedAt(content: OpenedCapture, survey: CaptureSurvey): string | null {
 	if (!content.start) return null;
 	return new Date(startToUtc_ms(content.start, survey.timeZone).utc_ms).toISOString();
 }
 
-async function readFiles(
+/** Opens the uploads; binary samples are not read. */
+async function openFiles(
 	container: Container,
 	uploads: UploadRow[],
-	context: JobContext
-): Promise<CaptureFile[]> {
+	context: JobContext,
+	handles: FileHandle[]
+): Promise<void> {
 	const total_bytes = uploads.reduce((sum, upload) => sum + upload.size_bytes, 0);
 	let done_bytes = 0;
-	const files: CaptureFile[] = [];
 	for (const upload of uploads) {
 		await context.progress(done_bytes, total_bytes + 1, `reading ${upload.name}`);
-		files.push({ name: upload.name, bytes: await container.blobs.read(upload.sha256) });
+		handles.push(openFileHandle(upload.name, await container.blobs.localFile(upload.sha256)));
 		done_bytes += upload.size_bytes;
 	}
 	await context.progress(done_bytes, total_bytes + 1, 'recognising what the files hold');
-	return files;
 }
 
 /** Lets go of the uploads and ends the job with the reader's sentence, in one transaction: nothing stays half. */
@@ -63,8 +63,10 @@ export const handle: JobHandler = async (container, rawPayload, context) => {
 			payload.uploadIds,
 			'The uploaded files are no longer there. Choose them again.'
 		);
+	const handles: FileHandle[] = [];
 	try {
-		const read = readCapture(await readFiles(container, uploads, context));
+		await openFiles(container, uploads, context, handles);
+		const read = openCapture(handles);
 		if (!read.ok) return await giveUp(container, context, payload.uploadIds, read.problem.sentence);
 		const content = read.value;
 		const facts: StoredFacts = {
@@ -107,5 +109,7 @@ export const handle: JobHandler = async (container, rawPayload, context) => {
 	} catch (cause) {
 		if (cause instanceof JobCancelled) await uploadsRepository(db, context).remove(payload.uploadIds);
 		throw cause;
+	} finally {
+		for (const handle of handles) handle.close();
 	}
 };

@@ -23,6 +23,11 @@ export interface BlobStore {
 	/** `length_bytes` bytes from `offset_bytes`; shorter at the end of the blob. */
 	readSlice(sha256: string, offset_bytes: number, length_bytes: number): Promise<Buffer>;
 	openRead(sha256: string): Readable;
+	/**
+	 * Path of a local file with the content, for reading in any order; it stays for as long as the process runs.
+	 * Throws when the blob is missing or its content no longer has its hash.
+	 */
+	localFile(sha256: string): Promise<string>;
 	has(sha256: string): Promise<boolean>;
 }
 

@@ -6,6 +6,8 @@ import { Readable, Transform } from 'node:stream';
 import { pipeline } from 'node:stream/promises';
 import { BlobTooLarge, type BlobStore, type StoredBlob } from './blob-store';
 
+/** Large pieces: hashing a capture should not wait for its events. */
+const HASHED_AT_ONCE_BYTES = 1 << 20;
 const SHA256 = /^[0-9a-f]{64}$/;
 
 /** Blobs as files `root/ab/cdef…`, named by their hash; written aside, flushed, then renamed into place. */
@@ -74,6 +76,12 @@ export function createDiskBlobStore(root: string): BlobStore {
 			}
 		},
 		openRead: (sha256) => createReadStream(pathOf(sha256)),
+		async localFile(sha256) {
+			const hash = createHash('sha256');
+			await pipeline(createReadStream(pathOf(sha256), { highWaterMark: HASHED_AT_ONCE_BYTES }), hash);
+			if (hash.digest('hex') !== sha256) throw new Error(`stored blob ${sha256} no longer has its hash`);
+			return pathOf(sha256);
+		},
 		async has(sha256) {
 			return access(pathOf(sha256)).then(
 				() => true,

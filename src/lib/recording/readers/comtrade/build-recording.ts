@@ -4,7 +4,8 @@ import type { ReadProblem, ReadRemark, Recording, RecordingChannel } from '../..
 import type { Phase } from '../../phase';
 import { parseUnit, toBaseUnit, type ParsedUnit } from '../../unit-text';
 import { counted, note, warning } from '../read-problem';
-import type { AnalogueLine, ComtradeData, ComtradeHeader } from './comtrade-header';
+import type { AnalogueLine, ComtradeData, ComtradeHeader, ComtradeTiming } from './comtrade-header';
+import type { RecordingFrame, SourceChannel } from '../../sample-source';
 import { timeBaseOf } from './time-base';
 
 /** Limits that only restate what a 32-bit float can hold say nothing about the recorder's range. */
@@ -17,15 +18,32 @@ export function buildRecording(
 	data: ComtradeData,
 	fileRemarks: ReadRemark[]
 ): Result<Recording, ReadProblem> {
+	const frame = buildFrame(dataFile, header, data, fileRemarks);
+	if (!frame.ok) return frame;
+	const channels = header.analogues.map((analogue, index): RecordingChannel => {
+		const unit = parseUnit(analogue.unit);
+		const samples = data.raw[index] as Float64Array;
+		// value = a·x + b in the unit as written, then to V or A: two steps, so that each rounds as the standard's own formula does.
+		for (let sample = 0; sample < samples.length; sample++)
+			samples[sample] = toBaseUnit(analogue.a * (samples[sample] as number) + analogue.b, unit);
+		return { ...frame.value.channels[index]!, samples };
+	});
+	describeMissing(dataFile, channels, data.sampleCount, frame.value.remarks);
+	return ok({ ...frame.value, channels });
+}
+
+/** Everything of a recording but its samples. */
+export function buildFrame(
+	dataFile: string,
+	header: ComtradeHeader,
+	data: ComtradeTiming,
+	fileRemarks: ReadRemark[]
+): Result<RecordingFrame, ReadProblem> {
 	const remarks = [...fileRemarks, ...header.remarks, ...data.remarks];
 	describeCount(dataFile, header, data, remarks);
 	const timeBase = timeBaseOf(dataFile, header, data, remarks);
 	if (!timeBase.ok) return timeBase;
 	const hints = phaseHints(header.analogues.map(({ phaseField, name }) => ({ field: phaseField, name })));
-	const channels = header.analogues.map((analogue, index) =>
-		channelOf(analogue, index, hints[index] ?? null, data.raw[index] as Float64Array)
-	);
-	describeMissing(dataFile, channels, data.sampleCount, remarks);
 	describeSkew(header, remarks);
 	return ok({
 		kind: 'waveform',
@@ -37,30 +55,21 @@ export function buildRecording(
 		start: header.start,
 		sampleCount: data.sampleCount,
 		...timeBase.value,
-		channels,
+		channels: header.analogues.map((analogue, index) => channelOf(analogue, index, hints[index] ?? null)),
 		statusChannelNames: header.statusNames,
 		remarks
 	});
 }
 
-function channelOf(
-	analogue: AnalogueLine,
-	index: number,
-	phaseHint: Phase | null,
-	raw: Float64Array
-): RecordingChannel {
+function channelOf(analogue: AnalogueLine, index: number, phaseHint: Phase | null): SourceChannel {
 	const unit = parseUnit(analogue.unit);
-	// value = a·x + b in the unit as written, then to V or A: two steps, so that each rounds as the standard's own formula does.
-	for (let sample = 0; sample < raw.length; sample++)
-		raw[sample] = toBaseUnit(analogue.a * (raw[sample] as number) + analogue.b, unit);
-	const channel: RecordingChannel = {
+	const channel: SourceChannel = {
 		index,
 		name: analogue.name,
 		phaseHint,
 		unitAsWritten: analogue.unit,
 		baseUnit: unit.base,
 		quantity: unit.quantity,
-		samples: raw,
 		valuesAre: analogue.valuesAre,
 		ratio: analogue.ratio,
 		range: rangeOf(analogue, unit)
@@ -79,7 +88,7 @@ function rangeOf(analogue: AnalogueLine, unit: ParsedUnit): RecordingChannel['ra
 function describeCount(
 	dataFile: string,
 	header: ComtradeHeader,
-	data: ComtradeData,
+	data: ComtradeTiming,
 	remarks: ReadRemark[]
 ): void {
 	if (header.announced === null || header.announced.sampleCount === data.sampleCount) return;

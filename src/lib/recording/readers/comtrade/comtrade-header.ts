@@ -49,12 +49,21 @@ export interface ComtradeHeader {
 	remarks: ReadRemark[];
 }
 
-/** The data, unscaled. */
-export interface ComtradeData {
+/** Time stamps of the samples, in the file's own unit; NaN marks a missing one. Asked for mostly one after the other. */
+export interface StampColumn {
+	readonly length: number;
+	at(sample: number): number | undefined;
+}
+
+/** What the data tell beside the values of the channels. */
+export interface ComtradeTiming {
 	sampleCount: number;
+	stamps: StampColumn;
+	remarks: ReadRemark[];
+}
+
+/** The data, unscaled. */
+export interface ComtradeData extends ComtradeTiming {
 	/** [analogue channels][sampleCount] raw values; NaN marks a missing one. */
 	raw: Float64Array[];
-	/** [sampleCount] time stamps in the file's own unit; NaN marks a missing one. */
-	stamps: Float64Array;
-	remarks: ReadRemark[];
 }

@@ -14,6 +14,65 @@ export function binaryRowBytes(format: BinaryFormat, analogueCount: number, stat
 	return 8 + (format === 'BINARY' ? 2 : 4) * analogueCount + 2 * Math.ceil(statusCount / 16);
 }
 
+/** What the size and the first bytes of binary data tell. */
+export interface BinaryShape {
+	rowBytes: number;
+	sampleCount: number;
+	remarks: ReadRemark[];
+}
+
+/** Bytes from the start of the data that `binaryShape` looks at; fewer where the data are shorter. */
+export function binaryHeadBytes(rowBytes: number): number {
+	return 8 * rowBytes;
+}
+
+/**
+ * Checks binary data against their header.
+ * head        the first `binaryHeadBytes` bytes
+ * size_bytes  of all data
+ * firstByte   position of the data inside `file`, for sentences
+ */
+export function binaryShape(
+	file: string,
+	head: Uint8Array,
+	size_bytes: number,
+	firstByte: number,
+	header: ComtradeHeader,
+	format: BinaryFormat
+): Result<BinaryShape, ReadProblem> {
+	const rowBytes = binaryRowBytes(format, header.analogues.length, header.statusNames.length);
+	const sampleCount = Math.floor(size_bytes / rowBytes);
+	const layout = `${rowBytes} bytes per sample (${header.analogues.length} analogue and ${header.statusNames.length} status channels, ${format})`;
+	if (sampleCount === 0)
+		return refuse(
+			'dat-empty',
+			file,
+			`byte ${firstByte}`,
+			`${file} holds ${counted(size_bytes, 'byte')} of data from byte ${firstByte} on; at least ${layout} were expected.`
+		);
+	const view = new DataView(head.buffer, head.byteOffset, head.byteLength);
+	const order = checkSampleNumbers(view, rowBytes, sampleCount);
+	const announced = header.announced?.sampleCount ?? null;
+	const sizeFits = size_bytes === sampleCount * rowBytes && announced === sampleCount;
+	if (order !== null && !sizeFits)
+		return refuse(
+			'dat-layout',
+			file,
+			`byte ${firstByte + order.row * rowBytes}`,
+			`${file}, byte ${firstByte + order.row * rowBytes}: sample number ${order.expected} was expected, but ${order.found} was found; the file does not have ${layout} as ${header.file} describes.`
+		);
+	const remarks: ReadRemark[] = [];
+	const surplus = size_bytes - sampleCount * rowBytes;
+	if (surplus > 0)
+		remarks.push(
+			warning(
+				'dat-truncated',
+				`${file} ends in the middle of a sample: ${counted(surplus, 'byte')} after byte ${firstByte + sampleCount * rowBytes} do not make up the ${rowBytes} bytes of a sample and were left out.`
+			)
+		);
+	return ok({ rowBytes, sampleCount, remarks });
+}
+
 /**
  * Binary data, little-endian: uint32 number, uint32 stamp, then int16, int32 or float32 values per channel and
  * the status words. Lowest negative integers and every non-finite float mark missing values.
@@ -26,42 +85,22 @@ export function readBinaryData(
 	header: ComtradeHeader,
 	format: BinaryFormat
 ): Result<ComtradeData, ReadProblem> {
-	const rowBytes = binaryRowBytes(format, header.analogues.length, header.statusNames.length);
-	const sampleCount = Math.floor(bytes.length / rowBytes);
-	const layout = `${rowBytes} bytes per sample (${header.analogues.length} analogue and ${header.statusNames.length} status channels, ${format})`;
-	if (sampleCount === 0)
-		return refuse(
-			'dat-empty',
-			file,
-			`byte ${firstByte}`,
-			`${file} holds ${counted(bytes.length, 'byte')} of data from byte ${firstByte} on; at least ${layout} were expected.`
-		);
+	const shape = binaryShape(file, bytes, bytes.length, firstByte, header, format);
+	if (!shape.ok) return shape;
+	const { rowBytes, sampleCount, remarks } = shape.value;
 	const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
-	const order = checkSampleNumbers(view, rowBytes, sampleCount);
-	const announced = header.announced?.sampleCount ?? null;
-	const sizeFits = bytes.length === sampleCount * rowBytes && announced === sampleCount;
-	if (order !== null && !sizeFits)
-		return refuse(
-			'dat-layout',
-			file,
-			`byte ${firstByte + order.row * rowBytes}`,
-			`${file}, byte ${firstByte + order.row * rowBytes}: sample number ${order.expected} was expected, but ${order.found} was found; the file does not have ${layout} as ${header.file} describes.`
-		);
-	const remarks: ReadRemark[] = [];
-	const surplus = bytes.length - sampleCount * rowBytes;
-	if (surplus > 0)
-		remarks.push(
-			warning(
-				'dat-truncated',
-				`${file} ends in the middle of a sample: ${counted(surplus, 'byte')} after byte ${firstByte + sampleCount * rowBytes} do not make up the ${rowBytes} bytes of a sample and were left out.`
-			)
-		);
 	return ok({
 		sampleCount,
 		raw: header.analogues.map((_, channel) => readChannel(view, format, channel, rowBytes, sampleCount)),
 		stamps: readStamps(view, rowBytes, sampleCount),
 		remarks
 	});
+}
+
+/** Time stamp of one row; NaN where it is marked as missing. */
+export function stampIn(row: DataView, at: number): number {
+	const stamp = row.getUint32(at + 4, true);
+	return stamp === STAMP_MISSING ? NaN : stamp;
 }
 
 /** The first samples must count upwards by one; a row length that is wrong shows here at once. */
@@ -81,8 +120,7 @@ function checkSampleNumbers(
 function readStamps(view: DataView, rowBytes: number, sampleCount: number): Float64Array {
 	const stamps = new Float64Array(sampleCount);
 	for (let row = 0; row < sampleCount; row++) {
-		const stamp = view.getUint32(row * rowBytes + 4, true);
-		stamps[row] = stamp === STAMP_MISSING ? NaN : stamp;
+		stamps[row] = stampIn(view, row * rowBytes);
 	}
 	return stamps;
 }

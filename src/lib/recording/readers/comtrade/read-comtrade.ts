@@ -1,5 +1,7 @@
 import type { Result } from '../../../result';
+import { loadFile, type CaptureHandle } from '../../capture-handle';
 import type { CaptureFile, ReadProblem, ReadRemark, Recording } from '../../recording';
+import type { CaptureSource } from '../../sample-source';
 import { note, refuse, warning } from '../read-problem';
 import { asciiCompatibleBytes, decodeText, ENCODING_NAMES } from '../text-decoding';
 import { buildRecording } from './build-recording';
@@ -7,6 +9,7 @@ import { looksLikeCff, splitCff } from './cff';
 import type { ComtradeData, ComtradeHeader } from './comtrade-header';
 import { readAsciiData } from './dat-ascii';
 import { readBinaryData } from './dat-binary';
+import { openBinaryData } from './open-binary';
 import { parseCfg } from './parse-cfg';
 
 /** The data bytes with their place in their file. */
@@ -21,7 +24,7 @@ function stemOf(name: string): string {
 	return name.replace(/\.[^.]*$/, '').toLowerCase();
 }
 
-function hasExtension(file: CaptureFile, extension: string): boolean {
+function hasExtension(file: { name: string }, extension: string): boolean {
 	return file.name.toLowerCase().endsWith(extension);
 }
 
@@ -65,6 +68,24 @@ export function readComtrade(files: CaptureFile[]): Result<Recording, ReadProble
 	return readParts(header.value, part, remarks);
 }
 
+/**
+ * A configuration with binary data at stated rates, without reading the data; null where the files are anything else, or
+ * nothing but their content can tell.
+ */
+export function openComtrade(files: readonly CaptureHandle[]): Result<CaptureSource, ReadProblem> | null {
+	const configuration = files.find((file) => hasExtension(file, '.cfg'));
+	if (configuration === undefined || configuration.size_bytes === 0) return null;
+	const data = dataFileFor(configuration, files);
+	if (data === undefined || data.size_bytes === 0) return null;
+	const { bytes } = loadFile(configuration);
+	if (looksLikeCff(bytes)) return null;
+	const { header, remarks } = readConfiguration(configuration.name, bytes, 1);
+	if (!header.ok || header.value.dataFormat === 'ASCII' || header.value.rates.length === 0) return null;
+	const head = new Uint8Array(Math.min(data.size_bytes, SNIFFED_BYTES));
+	data.read(0, head);
+	return isNumericText(head) ? null : openBinaryData(header.value, data, remarks);
+}
+
 function configurationMissing(files: CaptureFile[]): Result<Recording, ReadProblem> {
 	const name = files[0]?.name ?? '';
 	const stem = name.replace(/\.[^.]*$/, '');
@@ -76,7 +97,10 @@ function configurationMissing(files: CaptureFile[]): Result<Recording, ReadProbl
 	);
 }
 
-function dataFileFor(configuration: CaptureFile, files: CaptureFile[]): CaptureFile | undefined {
+function dataFileFor<File extends { name: string }>(
+	configuration: File,
+	files: readonly File[]
+): File | undefined {
 	const others = files.filter((file) => file !== configuration && !/\.(hdr|inf|cfg)$/i.test(file.name));
 	const sameStem = others.filter((file) => stemOf(file.name) === stemOf(configuration.name));
 	return (

@@ -1,7 +1,7 @@
 import { ok, type Result } from '../../../result';
 import type { RateSegment, ReadProblem, ReadRemark, Recording } from '../../recording';
 import { note, refuse, warning } from '../read-problem';
-import type { ComtradeData, ComtradeHeader } from './comtrade-header';
+import type { ComtradeHeader, ComtradeTiming } from './comtrade-header';
 
 export type TimeBase = Pick<Recording, 'segments' | 'timeStamps_s'>;
 
@@ -12,7 +12,7 @@ const STAMP_WRAP = 2 ** 32;
 export function timeBaseOf(
 	dataFile: string,
 	header: ComtradeHeader,
-	data: ComtradeData,
+	data: ComtradeTiming,
 	remarks: ReadRemark[]
 ): Result<TimeBase, ReadProblem> {
 	if (header.rates.length === 0) return timeBaseFromStamps(dataFile, header, data, remarks);
@@ -37,7 +37,7 @@ function segmentsOf(header: ComtradeHeader, sampleCount: number): RateSegment[] 
 function splitAtGaps(
 	dataFile: string,
 	header: ComtradeHeader,
-	data: ComtradeData,
+	data: ComtradeTiming,
 	segments: RateSegment[],
 	remarks: ReadRemark[]
 ): RateSegment[] {
@@ -47,10 +47,10 @@ function splitAtGaps(
 	for (const { samplingRate_Hz, fromSample, toSample } of segments) {
 		const step_s = 1 / samplingRate_Hz;
 		for (let sample = Math.max(1, fromSample); sample < toSample; sample++) {
-			const rise = (data.stamps[sample] as number) - (data.stamps[sample - 1] as number);
+			const rise = (data.stamps.at(sample) as number) - (data.stamps.at(sample - 1) as number);
 			const stampStep_s = rise * header.stampUnit_s;
 			if (!(stampStep_s > 0)) {
-				if (Number.isFinite(rise) && data.stamps.some((stamp) => stamp !== 0))
+				if (Number.isFinite(rise) && hasStamps(data))
 					remarks.push(
 						note(
 							'stamps-not-rising',
@@ -78,9 +78,15 @@ function splitAtGaps(
 	return cutSegments(segments, gaps);
 }
 
-function ratesDisagree(dataFile: string, header: ComtradeHeader, data: ComtradeData): ReadRemark {
-	const first = data.stamps[0] as number;
-	const last = data.stamps[data.sampleCount - 1] as number;
+/** Whether any stamp is other than zero: recorders that keep no time write nothing but zeros. */
+function hasStamps({ stamps }: ComtradeTiming): boolean {
+	for (let sample = 0; sample < stamps.length; sample++) if (stamps.at(sample) !== 0) return true;
+	return false;
+}
+
+function ratesDisagree(dataFile: string, header: ComtradeHeader, data: ComtradeTiming): ReadRemark {
+	const first = data.stamps.at(0) as number;
+	const last = data.stamps.at(data.sampleCount - 1) as number;
 	const byStamps_Hz = (data.sampleCount - 1) / ((last - first) * header.stampUnit_s);
 	const stated = header.rates[0] as { samplingRate_Hz: number; line: number };
 	return warning(
@@ -117,16 +123,16 @@ function cutSegments(segments: RateSegment[], gaps: { sample: number; gap_s: num
 function timeBaseFromStamps(
 	dataFile: string,
 	header: ComtradeHeader,
-	data: ComtradeData,
+	data: ComtradeTiming,
 	remarks: ReadRemark[]
 ): Result<TimeBase, ReadProblem> {
 	const times_s = new Float64Array(data.sampleCount);
 	let wrapped = 0;
 	for (let sample = 0; sample < data.sampleCount; sample++) {
-		const stamp = data.stamps[sample] as number;
-		const before = sample === 0 ? stamp : (data.stamps[sample - 1] as number);
+		const stamp = data.stamps.at(sample) as number;
+		const before = sample === 0 ? stamp : (data.stamps.at(sample - 1) as number);
 		if (before - stamp > STAMP_WRAP / 2) wrapped += STAMP_WRAP;
-		times_s[sample] = (stamp + wrapped - (data.stamps[0] as number)) * header.stampUnit_s;
+		times_s[sample] = (stamp + wrapped - (data.stamps.at(0) as number)) * header.stampUnit_s;
 		const previous_s = times_s[sample - 1];
 		if (Number.isNaN(stamp) || (previous_s !== undefined && !((times_s[sample] as number) > previous_s)))
 			return noTime(dataFile, header, sample + 1, Number.isNaN(stamp));

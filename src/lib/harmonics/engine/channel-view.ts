@@ -3,7 +3,7 @@ import { createDecodingKernels } from './decoding-kernels';
 import { SampleFeed } from './sample-feed';
 
 /** One channel of a capture, a moving part of it at a time. */
-export interface ReferenceView {
+export interface ChannelView {
 	/** Samples; position `i` of the capture is `samples[i − base]` after `cover`. */
 	readonly samples: Float64Array;
 	readonly base: number;
@@ -12,7 +12,7 @@ export interface ReferenceView {
 }
 
 /** capacity  samples that one call of `cover` may ask for */
-export function viewChannel(source: CaptureSource, channelIndex: number, capacity: number): ReferenceView {
+export function viewChannel(source: CaptureSource, channelIndex: number, capacity: number): ChannelView {
 	const { samples } = source;
 	if (samples.kind === 'memory')
 		return { samples: samples.channels[channelIndex]!, base: 0, cover: () => undefined };
