@@ -13,8 +13,14 @@ function run(
 	from_ms: number,
 	duration_s: number,
 	frequency_Hz: number,
-	{ ramp = 0, phase_deg = 30, skip = (_: number) => false, flagged = (_: number) => false } = {}
+	course: {
+		ramp?: number;
+		phase_deg?: number;
+		skip?: (w: number) => boolean;
+		flagged?: (w: number) => boolean;
+	} = {}
 ): TenSecondFrequency[] {
+	const { ramp = 0, phase_deg = 30, skip = () => false, flagged = () => false } = course;
 	const found: TenSecondFrequency[] = [];
 	const frequencies = new TenSecondFrequencies((value) => found.push(value));
 	const cyclesAt = (t: number) => frequency_Hz * t + (ramp * t * t) / 2;

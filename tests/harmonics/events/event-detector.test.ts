@@ -165,6 +165,21 @@ describe('what is on at the end, missing values, and gaps', () => {
 		expect(events[0]!.hasGap).toBe(true);
 		expect(flagged).toEqual([true, false, false]);
 	});
+
+	it('nor does one that gives no values at all any more', () => {
+		const found: VoltageEvent[] = [];
+		const detector = new VoltageEventDetector({
+			nominals: [100, 100],
+			onEvent: (event) => found.push(event)
+		});
+		for (let k = 0; k < 12; k++) {
+			if (k < 4) detector.feed(0, k * 0.01, CYCLE_S, k < 2 ? 100 : 40);
+			detector.feed(1, k * 0.01 + 0.003, CYCLE_S, 100);
+		}
+		// The last value of the silent one starts at 0.03 s and counts for two cycles.
+		expect(found).toHaveLength(1);
+		expect(found[0]!.end_s).toBeCloseTo(0.073, 12);
+	});
 });
 
 describe('flags', () => {
