@@ -1,5 +1,6 @@
 import { executeRealDft, planRealDft } from '../dft/real-dft';
 import { interpolateEvenly, planInterpolator } from '../resample/interpolator';
+import { planEqualiser } from '../resample/taper-equaliser';
 import { checkRowBounds } from './row-bounds';
 import type { KernelShape, RawFormat, RowLayout, SignalKernels, StretchFigures } from './signal-kernels';
 
@@ -10,6 +11,8 @@ export function createScriptKernels(shape: KernelShape): SignalKernels {
 	const { channelCount, capacity, points, lineCount } = shape;
 	const interpolator = planInterpolator(shape.kernel);
 	const transform = planRealDft(points);
+	const gains = new Float64Array(lineCount);
+	const equaliseFor = planEqualiser(shape.kernel, points, gains);
 	const raw = new Uint8Array(shape.rawCapacity);
 	const view = new DataView(raw.buffer);
 	const buffers = (length: number) => Array.from({ length: channelCount }, () => new Float64Array(length));
@@ -39,11 +42,12 @@ export function createScriptKernels(shape: KernelShape): SignalKernels {
 	}
 
 	function transformWindow(start: number, step: number): void {
+		equaliseFor(step);
 		interpolateEvenly(interpolator, samples, start, step, points, windows);
 		for (let c = 0; c < channelCount; c++) {
 			executeRealDft(transform, windows[c]!);
 			const out = spectra[c]!;
-			for (let i = 0; i < 2 * lineCount; i++) out[i] = transform.spectrum[i]!;
+			for (let i = 0; i < 2 * lineCount; i++) out[i] = transform.spectrum[i]! * gains[i >> 1]!;
 		}
 	}
 

@@ -1,4 +1,5 @@
 import { planInterpolator } from '../resample/interpolator';
+import { planEqualiser } from '../resample/taper-equaliser';
 import { KERNELS_WASM_BASE64 } from './kernels-wasm';
 import { type ChannelRegion, MemoryLayout } from './memory-layout';
 import { checkRowBounds } from './row-bounds';
@@ -45,7 +46,8 @@ interface KernelModule {
 		values: number,
 		twiddles: number,
 		places: number,
-		turns: number
+		turns: number,
+		gains: number
 	): void;
 }
 
@@ -90,6 +92,7 @@ export function createWasmKernels(shape: KernelShape): SignalKernels {
 	const twiddlesAt = place.reserve(tables.twiddles.byteLength);
 	const placesAt = place.reserve(tables.places.byteLength);
 	const turnsAt = place.reserve(tables.turns.byteLength);
+	const gainsAt = place.reserve(8 * lineCount);
 	const decodingAt = place.reserve(DECODING_BYTES * channelCount);
 	const stretchAt = place.reserve(STRETCH_BYTES);
 	const rawAt = place.reserve(shape.rawCapacity);
@@ -101,6 +104,8 @@ export function createWasmKernels(shape: KernelShape): SignalKernels {
 	new Float64Array(buffer, twiddlesAt).set(tables.twiddles);
 	new Uint32Array(buffer, placesAt).set(tables.places);
 	new Float64Array(buffer, turnsAt).set(tables.turns);
+
+	const equaliseFor = planEqualiser(shape.kernel, points, new Float64Array(buffer, gainsAt, lineCount));
 
 	const buffers = ({ at, stride }: ChannelRegion, length: number) =>
 		Array.from({ length: channelCount }, (_, c) => new Float64Array(buffer, at + c * stride, length));
@@ -131,6 +136,7 @@ export function createWasmKernels(shape: KernelShape): SignalKernels {
 	}
 
 	function transformWindow(start: number, step: number): void {
+		equaliseFor(step);
 		module.interpolate(
 			rowsAt,
 			weightsAt,
@@ -155,7 +161,8 @@ export function createWasmKernels(shape: KernelShape): SignalKernels {
 			valuesAt,
 			twiddlesAt,
 			placesAt,
-			turnsAt
+			turnsAt,
+			gainsAt
 		);
 	}
 

@@ -1,7 +1,7 @@
 import { type KaiserKernel, kaiserKernelFunction } from './kaiser-kernel';
 
 /** Rows of the table between one sample and the next; lines between rows are straight. */
-const ROWS_PER_SAMPLE = 2048;
+export const ROWS_PER_SAMPLE = 2048;
 
 /** A kernel laid out as rows of weights, one row per fraction of a sampling interval. */
 export interface Interpolator {

@@ -202,18 +202,20 @@ function finish(at: usize, end: usize, size: usize, twiddles: usize): void {
  * Lines 0 … lineCount−1 of the real windows.
  * places   per line two u32: byte offsets of complex lines k and M−k among the values
  * turns    per line two f64: re and im of −j/2·exp(−j2πk/(2M))
+ * gains    per line one f64, which the line is multiplied by
  */
 function separate(
 	values: usize,
 	places: usize,
 	turns: usize,
+	gains: usize,
 	lineCount: i32,
 	firstOut: usize,
 	secondOut: usize
 ): void {
 	const half = f64x2.splat(0.5);
 	const end = firstOut + (<usize>lineCount << 4);
-	for (; firstOut < end; firstOut += 16, secondOut += 16, places += 8, turns += 16) {
+	for (; firstOut < end; firstOut += 16, secondOut += 16, places += 8, turns += 16, gains += 8) {
 		const a = values + <usize>load<u32>(places);
 		const b = values + <usize>load<u32>(places, 4);
 		const ar = v128.load(a);
@@ -226,8 +228,9 @@ function separate(
 		const di = add(ai, bi);
 		const wr = v128.load64_splat(turns);
 		const wi = v128.load64_splat(turns, 8);
-		const re = add(er, sub(mul(dr, wr), mul(di, wi)));
-		const im = add(ei, add(mul(dr, wi), mul(di, wr)));
+		const gain = v128.load64_splat(gains);
+		const re = mul(gain, add(er, sub(mul(dr, wr), mul(di, wi))));
+		const im = mul(gain, add(ei, add(mul(dr, wi), mul(di, wr))));
 		v128.store(firstOut, v128.shuffle<f64>(re, im, 0, 2));
 		v128.store(secondOut, v128.shuffle<f64>(re, im, 1, 3));
 	}
@@ -245,7 +248,8 @@ export function transform(
 	values: usize,
 	twiddles: usize,
 	places: usize,
-	turns: usize
+	turns: usize,
+	gains: usize
 ): void {
 	const size = points >> 1;
 	const quarter = size >> 2;
@@ -254,7 +258,7 @@ export function transform(
 		const other = <usize>(c + 1 < channelCount);
 		passFromWindows(windows, windows + other * windowStride, values, quarter, twiddles);
 		finish(values, values + (size << 5), quarter, twiddles + quarter * TWIDDLE_BYTES);
-		separate(values, places, turns, lineCount, spectra, spectra + other * spectrumStride);
+		separate(values, places, turns, gains, lineCount, spectra, spectra + other * spectrumStride);
 		windows += windowStride << 1;
 		spectra += spectrumStride << 1;
 	}
