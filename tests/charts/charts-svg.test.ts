@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { buildOrderBarsOption, orderBarsTable, type OrderBarsData } from '$lib/charts/order-bars-chart';
 import { buildPhasorOption } from '$lib/charts/phasor-chart';
 import { renderChartSvg } from '$lib/charts/render-chart-svg';
 import { buildSpectrumOption, spectrumTable, type SpectrumData } from '$lib/charts/spectrum-chart';
@@ -140,5 +141,42 @@ describe('waveform and phasors', () => {
 		);
 		expect(svg).toContain(CHART_PALETTES.print.phase1);
 		expect(svg).toContain(CHART_PALETTES.print.phase2);
+	});
+});
+
+describe('signed bars by order', () => {
+	const data: OrderBarsData = {
+		orders: [0, 5, 7],
+		sets: [
+			{ label: 'A', look: { phase: 'L1' }, values: [null, 120, -40], hollow: [false, false, true] },
+			{ label: 'zero', look: { tone: 'third' }, values: [1, 2, 3] }
+		],
+		valueAxis: 'active power, W',
+		hollowMeans: 'direction undecided'
+	};
+
+	it('names order 0 dc, and says what hollow bars mean', () => {
+		const svg = renderChartSvg(buildOrderBarsOption(data, 'print', SIZE), SIZE);
+		for (const text of ['>dc<', '>5<', 'active power, W', 'direction undecided', '−'])
+			expect(svg).toContain(text);
+		const { hollowMeans: _, ...plain } = data;
+		expect(renderChartSvg(buildOrderBarsOption(plain, 'print', SIZE), SIZE)).not.toContain('undecided');
+	});
+
+	it('draws a hollow bar by its outline', () => {
+		const solid = { ...data, sets: data.sets.map((set) => ({ ...set, hollow: [] })) };
+		const outlines = (of: OrderBarsData) =>
+			renderChartSvg(buildOrderBarsOption(of, 'print', SIZE), SIZE).split(
+				`stroke="${CHART_PALETTES.print.phase1}"`
+			).length - 1;
+		expect(outlines(data) - outlines(solid)).toBe(1);
+	});
+
+	it('leaves missing values missing in the table', () => {
+		expect(orderBarsTable(data).rows).toEqual([
+			[0, null, 1],
+			[5, 120, 2],
+			[7, -40, 3]
+		]);
 	});
 });

@@ -9,6 +9,8 @@ import {
 	type PointSequences,
 	type QuantitySequences
 } from '../../../harmonics/sequence/point-sequences';
+import type { PointWindows } from '../../../harmonics/power/point-windows';
+import { formatCurrent } from '../../../units/format';
 import { pointWindows, type PointContext } from './point-windows';
 import { figure, type Figure } from './reading-figure';
 import { unmappedNotes } from './unmapped-notes';
@@ -72,23 +74,38 @@ export function sequenceReadings({ rows, windows }: WindowRows, context: PointCo
 	neutralSums.add(point, windows);
 	const sequences = sums.finish();
 	const neutral = neutralSums.finish();
-	const threePhase = context.system === 'three-wire' || context.system === 'four-wire';
 	return {
 		kind: 'sequence',
 		highestOrder: context.highestOrder,
 		windowCount: sequences?.windowCount ?? neutral?.windowCount ?? windows.length,
-		notes: threePhase
-			? [
-					...unmappedNotes(point, context.label, 'its sequences are not known.'),
-					...(sequences?.voltage && Number.isNaN(sequences.voltage.u0_pct)
-						? ['Voltages are measured line to line, where a zero sequence cannot be seen.']
-						: [])
-				]
-			: ['Sequences belong to three phases; this point has fewer.'],
+		notes: sequenceNotes(point, sequences, context),
 		sequences: sequences && sequenceFigures(sequences, context),
 		neutral: neutral && neutralFigures(neutral),
 		neutralNote: neutral ? null : neutralNote(context)
 	};
+}
+
+/** In a three-wire system, this share of the positive sequence may be left when three currents are added (common practice). */
+const CLOSING_SHARE = 0.005;
+
+function sequenceNotes(
+	point: PointWindows,
+	found: PointSequences | null,
+	{ system, label, highestOrder }: PointContext
+): string[] {
+	if (system !== 'three-wire' && system !== 'four-wire')
+		return ['Sequences belong to three phases; this point has fewer.'];
+	const notes = unmappedNotes(point, label, 'its sequences are not known.');
+	if (found?.voltage && Number.isNaN(found.voltage.u0_pct))
+		notes.push('Voltages are measured line to line, where a zero sequence cannot be seen.');
+	if (system === 'three-wire' && found?.current) {
+		const left_A = 3 * Math.hypot(...found.current.zero.rms.subarray(0, highestOrder + 1));
+		if (left_A > 3 * CLOSING_SHARE * found.current.positive.rms[1]!)
+			notes.push(
+				`The three currents leave ${formatCurrent(left_A)} when added, where three wires should leave nothing: a current to earth, or transducers that do not match.`
+			);
+	}
+	return notes;
 }
 
 function neutralNote({ system }: PointContext): string {
