@@ -7,7 +7,13 @@ export default defineConfig({
 	publicDir: false,
 	resolve: { alias: { $lib: fileURLToPath(new URL('./src/lib', import.meta.url)) } },
 	build: {
-		ssr: 'src/lib/server/worker/main.ts',
+		ssr: true,
+		rollupOptions: {
+			input: {
+				main: 'src/lib/server/worker/main.ts',
+				'window-thread': 'src/lib/server/analysis/pool/window-thread.ts'
+			}
+		},
 		outDir: 'build/worker',
 		emptyOutDir: true,
 		target: 'node20'

@@ -1,9 +1,8 @@
-import type { KernelFactory } from './engine/window-analyst';
-import { WindowAnalyst } from './engine/window-analyst';
+import { WindowAnalyst, type KernelFactory, type WindowBlock } from './engine/window-analyst';
 import { CaptureAssembly } from './engine/capture-assembly';
 import { joinSpans } from './engine/join-spans';
 import { prepareCapture, tooShortProblem, type PreparedCapture } from './engine/prepare-capture';
-import { expectedWindowCount, windowTasks } from './engine/window-tasks';
+import { expectedWindowCount, windowTasks, type WindowTask } from './engine/window-tasks';
 import type { Phase, PhaseNames } from '../recording/phase';
 import type { Recording } from '../recording/recording';
 import { sourceOf, type CaptureSource } from '../recording/sample-source';
@@ -84,29 +83,57 @@ export function* analyseCapture(
 	options: AnalysisOptions,
 	onSpan: (span: WaveformWindows) => void
 ): Generator<AnalysisStep, Result<CaptureFindings, AnalysisProblem>, void> {
+	const started = analysisRun(source, mappings, options, onSpan);
+	if (!started.ok) return started;
+	const run = started.value;
+	let at = 0;
+	let analyst = new WindowAnalyst(source, analystSetup(run.prepared, at), options.createKernels);
+	for (const { planIndex, windows } of run.tasks) {
+		if (planIndex !== at) {
+			at = planIndex;
+			analyst = new WindowAnalyst(source, analystSetup(run.prepared, at), options.createKernels);
+		}
+		yield run.accept(planIndex, analyst.analyse(windows));
+	}
+	return run.finish();
+}
+
+/** An analysis under way: tasks to be turned into blocks, here or elsewhere, and taken back in their order. */
+export interface AnalysisRun {
+	prepared: PreparedCapture;
+	tasks: Iterable<WindowTask>;
+	accept(planIndex: number, block: WindowBlock): AnalysisStep;
+	finish(): Result<CaptureFindings, AnalysisProblem>;
+}
+
+/** Starts an analysis. See analyseCapture, which does all of it in one thread. */
+export function analysisRun(
+	source: CaptureSource,
+	mappings: readonly ChannelMapping[],
+	options: AnalysisOptions,
+	onSpan: (span: WaveformWindows) => void
+): Result<AnalysisRun, AnalysisProblem> {
 	const preparation = prepareCapture(source, mappings, options.nominalFrequency_Hz);
 	if (!preparation.ok) return preparation;
 	const prepared = preparation.value;
 	const total = expectedWindowCount(prepared);
 	const assembly = new CaptureAssembly(source, prepared, options);
-	let at = 0;
-	let analyst = new WindowAnalyst(source, analystSetup(prepared, at), options.createKernels);
-	for (const { planIndex, windows } of windowTasks(source, prepared, options.start_ms ?? null)) {
-		if (planIndex !== at) {
-			at = planIndex;
-			analyst = new WindowAnalyst(source, analystSetup(prepared, at), options.createKernels);
+	return ok({
+		prepared,
+		tasks: windowTasks(source, prepared, options.start_ms ?? null),
+		accept(planIndex, block) {
+			const span = assembly.accept(planIndex, block);
+			if (span) onSpan(span);
+			return { done: assembly.windowCount, total: Math.max(assembly.windowCount, total) };
+		},
+		finish() {
+			const rest = assembly.takeSpan();
+			if (rest) onSpan(rest);
+			if (assembly.windowCount > 0) return ok(assembly.findings());
+			const { stretch } = prepared.plans[0]!;
+			return err(tooShortProblem(stretch, prepared.reference, prepared.cyclesPerWindow));
 		}
-		const span = assembly.accept(planIndex, analyst.analyse(windows));
-		if (span) onSpan(span);
-		yield { done: assembly.windowCount, total: Math.max(assembly.windowCount, total) };
-	}
-	const rest = assembly.takeSpan();
-	if (rest) onSpan(rest);
-	if (assembly.windowCount === 0) {
-		const { stretch } = prepared.plans[0]!;
-		return err(tooShortProblem(stretch, prepared.reference, prepared.cyclesPerWindow));
-	}
-	return ok(assembly.findings());
+	});
 }
 
 /** What an analyst of one stretch needs to know. */

@@ -1,4 +1,5 @@
 import type { RowLayout } from '../numerics/kernels/signal-kernels';
+import type { CaptureHandle } from './capture-handle';
 import type { Recording, RecordingChannel } from './recording';
 
 /** Samples that lie in memory, one array per analogue channel. */
@@ -15,6 +16,8 @@ export interface RowSamples {
 	layout: RowLayout;
 	/** Fills the start of `into` with rows [fromRow, fromRow + count); throws when the bytes cannot be had. */
 	read(fromRow: number, count: number, into: Uint8Array): void;
+	/** The file whose first byte is row 0, where there is one: others may open it as well. */
+	file?: CaptureHandle;
 }
 
 export type SampleSource = MemorySamples | RowSamples;

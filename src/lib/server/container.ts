@@ -1,4 +1,5 @@
 import { join } from 'node:path';
+import type { WindowPool } from './analysis/pool/window-pool';
 import type { Config } from './config';
 import { databaseFile } from './db/database-file';
 import { openDatabase, type Db } from './db/database';
@@ -35,6 +36,7 @@ export interface Overrides {
 	mailTransport?: MailTransport;
 	clock?: () => Date;
 	log?: Log;
+	windowPool?: WindowPool;
 }
 
 // One line per service, e.g. `captures: createCapturesService(deps)`.
@@ -83,7 +85,8 @@ export function buildContainer(
 		jobs: createJobQueue(db, clock),
 		mail: createOutbox(db, overrides.mailTransport ?? createMailTransport(config), clock, log),
 		clock,
-		log
+		log,
+		windowPool: overrides.windowPool ?? null
 	};
 	return { ...deps, services: buildServices(deps) };
 }

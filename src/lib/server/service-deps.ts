@@ -1,3 +1,4 @@
+import type { WindowPool } from './analysis/pool/window-pool';
 import type { Config } from './config';
 import type { Db } from './db/database';
 import type { JobQueue } from './jobs/job-queue';
@@ -13,5 +14,7 @@ export interface ServiceDeps {
 	jobs: JobQueue;
 	mail: Outbox;
 	clock: () => Date;
+	/** Threads for long arithmetic; only the worker process has them. */
+	windowPool: WindowPool | null;
 	log: Log;
 }

@@ -10,8 +10,10 @@ import type { Trend } from '../../recording/recording';
 import type { CaptureSource } from '../../recording/sample-source';
 import { JobFailed, type JobContext } from '../jobs/job-definition';
 import type { AnalysisPart } from '../repositories/analyses.repository';
-import type { BlobStore, StoredBlob } from '../storage/blob-store';
+import type { ServiceDeps } from '../service-deps';
+import type { StoredBlob } from '../storage/blob-store';
 import type { AnalysisParameters, AnalysisSummary, TrendSummary } from './analysis-summary';
+import { analyseInThreads, threadCapture } from './pool/analyse-in-threads';
 import { layOutSamples, samplesStream } from './samples-blob';
 import { aggregatePart, plainRow, windowPart } from './series-rows';
 
@@ -47,7 +49,7 @@ interface WindowsSeen {
 
 /** Analyses a waveform window by window; stops between blocks when it was cancelled or the process is going down. */
 export async function prepareWaveform(
-	blobs: BlobStore,
+	{ blobs, windowPool: pool }: Pick<ServiceDeps, 'blobs' | 'windowPool'>,
 	source: CaptureSource,
 	mappings: readonly ChannelMapping[],
 	basis: AnalysisBasis,
@@ -66,10 +68,14 @@ export async function prepareWaveform(
 			await store(windowPart(span, collector, part++, start_ms));
 		}
 	}
-	const steps = analyseCapture(source, mappings, basis, (span) => spans.push(span));
+	const onSpan = (span: WaveformWindows) => void spans.push(span);
+	const inThreads = pool && threadCapture(source);
+	const steps = inThreads
+		? analyseInThreads(source, inThreads, pool, mappings, basis, onSpan)
+		: analyseCapture(source, mappings, basis, onSpan);
 	let findings: CaptureFindings;
 	for (;;) {
-		const step = steps.next();
+		const step = await steps.next();
 		await storeSpans();
 		if (step.done) {
 			if (!step.value.ok) throw new JobFailed(step.value.problem.sentence);

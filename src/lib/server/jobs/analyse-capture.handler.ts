@@ -97,7 +97,7 @@ async function prepare(
 		phaseNames: survey.facts.phaseNames
 	};
 	if (content.kind === 'waveform' && settings.kind === 'waveform')
-		return prepareWaveform(container.blobs, content, settings.channels, basis, context, storePart);
+		return prepareWaveform(container, content, settings.channels, basis, context, storePart);
 	if (content.kind === 'trend' && settings.kind === 'trend')
 		return prepareTrend(content, settings.columns, basis);
 	throw new JobFailed('The confirmed channels do not fit what the files hold. Confirm them again.');

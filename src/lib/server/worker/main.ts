@@ -1,11 +1,20 @@
 /** The worker process: takes long work from the queue and sends mail from the outbox, until told to stop. */
 import { setTimeout as sleep } from 'node:timers/promises';
 import { randomUUID } from 'node:crypto';
+import { dirname, join } from 'node:path';
+import { fileURLToPath } from 'node:url';
+import { createWindowPool } from '../analysis/pool/window-pool';
 import { buildContainer } from '../container';
 import { parseConfig } from '../config';
 import { runJob } from '../jobs/run-job';
 
-const container = buildContainer(parseConfig(process.env), 'worker');
+// The thread's file lies beside this one, as a source or compiled, whichever this is.
+const own = fileURLToPath(import.meta.url);
+const threadFile = own.endsWith('.ts')
+	? join(dirname(own), '../analysis/pool/window-thread.ts')
+	: join(dirname(own), 'window-thread.js');
+const windowPool = createWindowPool(threadFile);
+const container = buildContainer(parseConfig(process.env), 'worker', { windowPool });
 const { config, jobs, mail, log } = container;
 const workerId = randomUUID();
 
@@ -33,6 +42,7 @@ while (!stopping) {
 		await sleep(config.workerPoll_ms, undefined, { signal: wake.signal }).catch(() => undefined);
 }
 
+await windowPool.close();
 await container.db.destroy();
 log.info('worker stopped');
 process.exit(0);

@@ -40,7 +40,8 @@ export function openBinaryData(
 		samples: {
 			kind: 'rows',
 			layout: layoutOf(header, format, rowBytes),
-			read: (fromRow, count, into) => data.read(fromRow * rowBytes, into.subarray(0, count * rowBytes))
+			read: (fromRow, count, into) => data.read(fromRow * rowBytes, into.subarray(0, count * rowBytes)),
+			file: data
 		}
 	});
 }
