@@ -1,5 +1,5 @@
-import { taperedPhasor } from '../numerics/frequency/tapered-phasor';
-import type { ReferenceView } from './engine/reference-view';
+import { taperedPhasor, type TaperedPhasor } from '../numerics/frequency/tapered-phasor';
+import type { ChannelView } from './engine/channel-view';
 
 /** One window of whole cycles, in samples of the recording. */
 export interface TrackedWindow {
@@ -16,7 +16,7 @@ export interface TrackedWindow {
 }
 
 export interface TrackerSetup {
-	reference: ReferenceView;
+	reference: ChannelView;
 	/** First and last sample that may be used. */
 	firstSample: number;
 	lastSample: number;
@@ -27,6 +27,8 @@ export interface TrackerSetup {
 	frequency: number;
 	/** Sample numbers (fractions allowed) at which the train starts anew; ascending. */
 	ticks?: Iterator<number>;
+	/** Tone of the reference channel near a frequency, see taperedPhasor; taken from its samples when left out. */
+	phasorAt?: (centre: number, frequency: number, halfCycles: number) => TaperedPhasor;
 }
 
 /** Samples that the tracker may look at together, in cycles: a window, and as much again on either side of it. */
@@ -142,9 +144,13 @@ export class WindowTracker {
 			LEAST_HALF_CYCLES,
 			Math.min(this.setup.cyclesPerWindow / 2, Math.floor(room + 1e-9))
 		);
-		const { samples, base } = this.setup.reference;
-		const phasor = taperedPhasor(samples, centre - base, frequency, halfCycles);
-		return { centre, phase_rad: phasor.phase_rad, amplitude: phasor.amplitude };
+		return { centre, ...this.phasorAt(centre, frequency, halfCycles) };
+	}
+
+	private phasorAt(centre: number, frequency: number, halfCycles: number): TaperedPhasor {
+		const { reference, phasorAt } = this.setup;
+		if (phasorAt) return phasorAt(centre, frequency, halfCycles);
+		return taperedPhasor(reference.samples, centre - reference.base, frequency, halfCycles);
 	}
 
 	/** The stretch without missing samples that holds [from, to]; null when a sample inside is missing. */
@@ -174,12 +180,7 @@ export class WindowTracker {
 		for (let i = 0; i < 16 && span >= 0; i++) {
 			const centre = first + (span * i) / 15;
 			reference.cover(Math.floor(centre - reach), Math.ceil(centre + reach) + 1);
-			const { amplitude } = taperedPhasor(
-				reference.samples,
-				centre - reference.base,
-				this.frequency,
-				LEAST_HALF_CYCLES
-			);
+			const { amplitude } = this.phasorAt(centre, this.frequency, LEAST_HALF_CYCLES);
 			if (amplitude > greatest) greatest = amplitude;
 		}
 		return greatest;

@@ -44,6 +44,25 @@ export function measureHalfCycles(
 	into: HalfCycles
 ): void {
 	const { samples, base, end } = slice;
+	const last = end - base - 1;
+	halfCyclesOf(
+		(from, to) => (from >= 0 && to <= last ? integratedSquares(samples, from, to) : NaN),
+		{ start: window.start - base, length: window.length },
+		phase_deg,
+		into
+	);
+}
+
+/**
+ * The same from the integral of the squares alone, whatever measures it and in whatever unit of time.
+ * squares  integral of the square of the channel over [from, to]; NaN where there is none
+ */
+export function halfCyclesOf(
+	squares: (from: number, to: number) => number,
+	window: { start: number; length: number },
+	phase_deg: number,
+	into: HalfCycles
+): void {
 	const { rms } = into;
 	const half = window.length / rms.length;
 	// cos(πx + φ) crosses zero upwards where its argument is −90°; every half cycle from there is a crossing.
@@ -53,14 +72,13 @@ export function measureHalfCycles(
 		rms.fill(NaN);
 		return;
 	}
-	const last = end - base - 1;
-	let from = window.start - base + first * half;
+	let from = window.start + first * half;
 	let before = NaN;
 	for (let k = 0; k <= rms.length; k++) {
 		const to = from + half;
-		const squares = from >= 0 && to <= last ? integratedSquares(samples, from, to) : NaN;
-		if (k > 0) rms[k - 1] = Math.sqrt((before + squares) / (2 * half));
-		before = squares;
+		const over = squares(from, to);
+		if (k > 0) rms[k - 1] = Math.sqrt((before + over) / (2 * half));
+		before = over;
 		from = to;
 	}
 }

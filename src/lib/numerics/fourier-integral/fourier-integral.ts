@@ -5,18 +5,25 @@ const SERIES_BELOW = 0.25;
 /** The rotating pointers are set afresh after so many steps; what they lose in between stays near 1e-15. */
 const RENEW_EVERY = 32;
 
+/** sin θ/θ by its series, of s = θ² */
+function evenSeries(s: number): number {
+	return 1 - s * (1 / 6 - s * (1 / 120 - s * (1 / 5040 - s * (1 / 362880 - s / 39916800))));
+}
+
+/** (sin θ − θ cos θ)/θ³ by its series, of s = θ² */
+function oddSeries(s: number): number {
+	return 1 / 3 - s * (1 / 30 - s * (1 / 840 - s * (1 / 45360 - s * (1 / 3991680 - s / 518918400))));
+}
+
 /** sin θ/θ */
 function evenPart(theta: number): number {
-	if (Math.abs(theta) >= SERIES_BELOW) return Math.sin(theta) / theta;
-	const s = theta * theta;
-	return 1 - (s / 6) * (1 - (s / 20) * (1 - (s / 42) * (1 - (s / 72) * (1 - s / 110))));
+	return Math.abs(theta) < SERIES_BELOW ? evenSeries(theta * theta) : Math.sin(theta) / theta;
 }
 
 /** (sin θ − θ cos θ)/θ², the odd companion of sin θ/θ; by its series near 0, where the difference loses its digits. */
 function oddPart(theta: number): number {
-	if (Math.abs(theta) >= SERIES_BELOW) return (Math.sin(theta) - theta * Math.cos(theta)) / (theta * theta);
-	const s = theta * theta;
-	return (theta / 3) * (1 - (s / 10) * (1 - (s / 28) * (1 - (s / 54) * (1 - (s / 88) * (1 - s / 130)))));
+	if (Math.abs(theta) < SERIES_BELOW) return theta * oddSeries(theta * theta);
+	return (Math.sin(theta) - theta * Math.cos(theta)) / (theta * theta);
 }
 
 /**
@@ -97,37 +104,51 @@ function createWeights(lineCount: number): PieceWeights {
 
 function fillWeights(weights: PieceWeights, step: number, middle: number, length: number): void {
 	const { evenRe, evenIm, oddRe, oddIm } = weights;
+	const lineCount = evenRe.length;
 	const turn = step * middle;
 	const halfTurn = (step * length) / 2;
 	const turnCos = Math.cos(turn);
 	const turnSin = Math.sin(turn);
 	const halfCos = Math.cos(halfTurn);
 	const halfSin = Math.sin(halfTurn);
-	let cos = 1;
-	let sin = 0;
-	let thetaCos = 1;
-	let thetaSin = 0;
-	for (let k = 0; k < evenRe.length; k++) {
-		const theta = k * halfTurn;
-		if (k % RENEW_EVERY === 0) {
-			cos = Math.cos(k * turn);
-			sin = Math.sin(k * turn);
-			thetaCos = Math.cos(theta);
-			thetaSin = Math.sin(theta);
+	// Lines below this one are in the reach of the series.
+	const closedFrom = Math.ceil(SERIES_BELOW / halfTurn);
+	for (let from = 0; from < lineCount; from += RENEW_EVERY) {
+		const to = Math.min(lineCount, from + RENEW_EVERY);
+		const inSeries = Math.min(to, Math.max(from, closedFrom));
+		let cos = Math.cos(from * turn);
+		let sin = Math.sin(from * turn);
+		for (let k = from; k < inSeries; k++) {
+			const theta = k * halfTurn;
+			const s = theta * theta;
+			const even = length * evenSeries(s);
+			const odd = length * theta * oddSeries(s);
+			evenRe[k] = even * cos;
+			evenIm[k] = -even * sin;
+			oddRe[k] = -odd * sin;
+			oddIm[k] = -odd * cos;
+			const next = cos * turnCos - sin * turnSin;
+			sin = sin * turnCos + cos * turnSin;
+			cos = next;
 		}
-		const inSeries = theta < SERIES_BELOW;
-		const even = length * (inSeries ? evenPart(theta) : thetaSin / theta);
-		const odd = length * (inSeries ? oddPart(theta) : (thetaSin - theta * thetaCos) / (theta * theta));
-		evenRe[k] = even * cos;
-		evenIm[k] = -even * sin;
-		oddRe[k] = -odd * sin;
-		oddIm[k] = -odd * cos;
-		const nextCos = cos * turnCos - sin * turnSin;
-		sin = sin * turnCos + cos * turnSin;
-		cos = nextCos;
-		const nextTheta = thetaCos * halfCos - thetaSin * halfSin;
-		thetaSin = thetaSin * halfCos + thetaCos * halfSin;
-		thetaCos = nextTheta;
+		if (inSeries === to) continue;
+		let thetaCos = Math.cos(inSeries * halfTurn);
+		let thetaSin = Math.sin(inSeries * halfTurn);
+		for (let k = inSeries; k < to; k++) {
+			const inverse = 1 / (k * halfTurn);
+			const even = length * inverse * thetaSin;
+			const odd = inverse * (even - length * thetaCos);
+			evenRe[k] = even * cos;
+			evenIm[k] = -even * sin;
+			oddRe[k] = -odd * sin;
+			oddIm[k] = -odd * cos;
+			const next = cos * turnCos - sin * turnSin;
+			sin = sin * turnCos + cos * turnSin;
+			cos = next;
+			const nextTheta = thetaCos * halfCos - thetaSin * halfSin;
+			thetaSin = thetaSin * halfCos + thetaCos * halfSin;
+			thetaCos = nextTheta;
+		}
 	}
 }
 

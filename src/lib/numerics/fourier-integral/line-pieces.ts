@@ -102,3 +102,27 @@ export function productIntegral(pieces: LinePieces, x: PieceValues, y: PieceValu
 	}
 	return sum;
 }
+
+/**
+ * The function read off its straight lines on an even grid.
+ * times, values  [n ≥ 2] instants, strictly ascending, and values there; NaN = missing
+ * start, step    of the grid; it must lie within the instants
+ * returns        [count]
+ */
+export function readOnGrid(
+	times: Float64Array,
+	values: Float64Array,
+	start: number,
+	step: number,
+	count: number
+): Float64Array {
+	const read = new Float64Array(count);
+	let point = lastAtOrBefore(times, start);
+	for (let i = 0; i < count; i++) {
+		const time = start + i * step;
+		while (point < times.length - 2 && times[point + 1]! <= time) point++;
+		const left = values[point]!;
+		read[i] = left + shareAt(times, point, time) * (values[point + 1]! - left);
+	}
+	return read;
+}
