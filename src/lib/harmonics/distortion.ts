@@ -52,3 +52,44 @@ export function thd_pctOfRms(onFundamental_pct: number): number {
 	const ratio = onFundamental_pct / 100;
 	return (100 * ratio) / Math.sqrt(1 + ratio * ratio);
 }
+
+/**
+ * Partial weighted harmonic distortion in percent of the fundamental: √Σ h·(Y_h/Y_1)². The weight is h, not h².
+ * source  IEC 61000-4-7:2002+A1:2008, 3.3, and IEC 61000-3-12 with orders 14 … 40 (from memory)
+ */
+export function pwhd_pctOfFundamental(row: Float64Array, fromOrder = 14, toOrder = 40): number {
+	const fundamental = row[1]!;
+	if (!(fundamental > 0)) return NaN;
+	let sum = 0;
+	for (let order = fromOrder; order <= toOrder; order++) sum += order * row[order]! ** 2;
+	return (100 * Math.sqrt(sum)) / fundamental;
+}
+
+/** Orders above the fundamental of one kind: odd, even, or triplen (every multiple of three). */
+export type OrderFamily = 'odd' | 'even' | 'triplen';
+
+const BELONGS: Record<OrderFamily, (order: number) => boolean> = {
+	odd: (order) => order % 2 === 1,
+	even: (order) => order % 2 === 0,
+	triplen: (order) => order % 3 === 0
+};
+
+/**
+ * Root-sum-square of the orders of one family from 2 to `toOrder`, unit of the row; NaN when one of them is missing.
+ * The families overlap: order 9 is odd and triplen.
+ */
+export function familyContent(row: Float64Array, family: OrderFamily, toOrder: number): number {
+	let sum = 0;
+	for (let order = 2; order <= toOrder; order++) if (BELONGS[family](order)) sum += row[order]! ** 2;
+	return Math.sqrt(sum);
+}
+
+/**
+ * Partial odd harmonic current: odd orders 21 … 39, unit of the row; NaN when one is missing.
+ * source  IEC 61000-3-2 (from memory)
+ */
+export function partialOddCurrent(row: Float64Array): number {
+	let sum = 0;
+	for (let order = 21; order <= 39; order += 2) sum += row[order]! ** 2;
+	return Math.sqrt(sum);
+}

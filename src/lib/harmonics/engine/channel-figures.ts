@@ -20,7 +20,11 @@ const MATRICES = [
 const COLUMNS = ['rms', 'dc', 'peak', 'thd_pctOfFundamental'] as const;
 
 /** Room for `count` windows of one channel, everything "no data". */
-export function emptyChannel(channel: SourceChannel, mapping: ChannelMapping, count: number): ChannelAnalysis {
+export function emptyChannel(
+	channel: SourceChannel,
+	mapping: ChannelMapping,
+	count: number
+): ChannelAnalysis {
 	const rows = (length: number) => new Float64Array(length).fill(NaN);
 	return {
 		mapping,

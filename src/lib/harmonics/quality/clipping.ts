@@ -1,4 +1,4 @@
-import type { ChannelFacts } from '../../recording/sample-source';
+import type { SourceChannel } from '../../recording/sample-source';
 import type { FlatTops } from '../engine/flat-tops';
 import type { QualityRemark } from '../waveform-analysis';
 
@@ -7,7 +7,7 @@ import type { QualityRemark } from '../waveform-analysis';
  * Where the file tells the recorder's range, a cut at the range is certain; without it a flat top is only suspect.
  */
 export function findClipping(
-	channel: ChannelFacts,
+	channel: SourceChannel,
 	tops: FlatTops,
 	samplesPerCycle: number
 ): QualityRemark[] {

@@ -1,5 +1,5 @@
 import { formatPhase, type Phase, type PhaseNames } from '../../recording/phase';
-import type { ChannelFacts } from '../../recording/sample-source';
+import type { SourceChannel } from '../../recording/sample-source';
 import type { ChannelAnalysis, QualityRemark } from '../waveform-analysis';
 import { meanFundamental } from './fundamental-phasors';
 
@@ -9,7 +9,7 @@ const DC_SHARE = { voltage: 0.01, current: 0.03 };
 
 /** Voltages whose fundamental is nowhere near the point's nominal voltage. */
 export function findImplausibleVoltages(
-	sources: readonly ChannelFacts[],
+	sources: readonly SourceChannel[],
 	channels: readonly ChannelAnalysis[],
 	nominal_V: Partial<Record<Phase, number>>,
 	names: PhaseNames
@@ -34,7 +34,7 @@ export function findImplausibleVoltages(
 	return remarks;
 }
 
-function likelyCause(source: ChannelFacts, share: number): string {
+function likelyCause(source: SourceChannel, share: number): string {
 	const root3 = Math.sqrt(3);
 	if (near(share, root3) || near(share, 1 / root3)) {
 		return 'The factor is √3: a line-to-line voltage is mapped as line-to-neutral or the other way round. Correct the phase in the mapping.';

@@ -1,4 +1,4 @@
-import type { ChannelFacts } from '../../recording/sample-source';
+import type { SourceChannel } from '../../recording/sample-source';
 import { MAX_ORDER } from '../intervals';
 import type { ChannelMapping, QualityRemark } from '../waveform-analysis';
 
@@ -89,7 +89,7 @@ export function findFrequencyFaults(
 }
 
 export function findMissingSamples(
-	sources: readonly ChannelFacts[],
+	sources: readonly SourceChannel[],
 	mappings: readonly ChannelMapping[],
 	missing: readonly number[],
 	sampleCount: number,
