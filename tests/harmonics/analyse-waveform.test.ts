@@ -62,8 +62,8 @@ describe('a four-wire point with known truth', () => {
 	const recording = synthesiseRecording(point());
 	const analysis = analyse(recording);
 
-	it('has nine windows of ten cycles, referred to the first voltage', () => {
-		expect(analysis.windowCount).toBe(9);
+	it('has ten windows of ten cycles in two seconds, referred to the first voltage', () => {
+		expect(analysis.windowCount).toBe(10);
 		expect(analysis.cyclesPerWindow).toBe(10);
 		expect(analysis.referenceChannelIndex).toBe(0);
 	});
@@ -111,7 +111,7 @@ describe('a four-wire point with known truth', () => {
 			seen.push(step.value.done);
 			step = steps.next();
 		}
-		expect(seen).toEqual([9]);
+		expect(seen).toEqual([10]);
 		expect(step.value).toEqual({ ok: true, value: analysis });
 	});
 
@@ -253,7 +253,7 @@ describe('flagged windows', () => {
 		truth.channels[1] = { ...truth.channels[1]!, events: [{ from_s: 0.95, to_s: 1.05, factor: 0.7 }] };
 		const analysis = analyse(synthesiseRecording(truth));
 		// Windows of about 0.2 s: the dip lies in those that start at 0.8 s and 1.0 s.
-		expect([...analysis.flagged]).toEqual([0, 0, 0, 0, 1, 1, 0, 0, 0]);
+		expect([...analysis.flagged]).toEqual([0, 0, 0, 0, 1, 1, 0, 0, 0, 0]);
 		const dip = analysis.quality.find((q) => q.code === 'dip')!;
 		// 70 % of 230 V with its 5th and 7th, on 400/√3 V: 69.8 %.
 		expect(dip.sentence).toMatch(/^L2: dip to 69\.8 %/);
@@ -269,7 +269,7 @@ describe('flagged windows', () => {
 			]
 		};
 		const analysis = analyse(synthesiseRecording(truth));
-		expect([...analysis.flagged]).toEqual([0, 0, 1, 0, 0, 0, 0, 1, 0]);
+		expect([...analysis.flagged]).toEqual([0, 0, 1, 0, 0, 0, 0, 1, 0, 0]);
 		// One conductor without voltage is a dip of the system; an interruption takes all of them.
 		expect(codes(analysis)).toEqual(expect.arrayContaining(['swell', 'dip']));
 		expect(codes(analysis)).not.toContain('interruption');
@@ -277,7 +277,7 @@ describe('flagged windows', () => {
 			truth.channels[c] = { ...truth.channels[c]!, events: [{ from_s: 1.5, to_s: 1.55, factor: 0 }] };
 		const interrupted = analyse(synthesiseRecording(truth));
 		expect(codes(interrupted)).toContain('interruption');
-		expect([...interrupted.flagged]).toEqual([0, 0, 0, 0, 0, 0, 0, 1, 0]);
+		expect([...interrupted.flagged]).toEqual([0, 0, 0, 0, 0, 0, 0, 1, 0, 0]);
 	});
 
 	it('without a nominal voltage nothing is flagged, and that is said', () => {

@@ -1,11 +1,15 @@
 import { ORDER_STRIDE } from './intervals';
 import type { ChannelAnalysis, PhasePower } from './waveform-analysis';
 
-/** Mean of the products of two windows sampled at the same instants; W for volts and amperes. */
-export function meanProduct(a: Float64Array, b: Float64Array, count: number): number {
-	let sum = 0;
-	for (let m = 0; m < count; m++) sum += a[m]! * b[m]!;
-	return sum / count;
+/**
+ * Mean of u·i over a window from the spectra of both, dc and every line that was kept: W for volts and amperes.
+ * a, b       [≥ 2·lineCount] interleaved, convention of numerics/dft/convention.md, on the same window
+ * points     length of the transform
+ */
+export function meanProduct(a: Float64Array, b: Float64Array, lineCount: number, points: number): number {
+	let sum = (a[0]! * b[0]!) / 2;
+	for (let k = 2; k < 2 * lineCount; k += 2) sum += a[k]! * b[k]! + a[k + 1]! * b[k + 1]!;
+	return (2 * sum) / (points * points);
 }
 
 /**

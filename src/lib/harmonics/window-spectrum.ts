@@ -1,4 +1,4 @@
-import { designKaiserKernel, type KaiserKernel } from '../numerics/resample/kaiser-kernel';
+import { designKaiserKernel, designTaperKernel, type KaiserKernel } from '../numerics/resample/kaiser-kernel';
 import { MAX_ORDER } from './intervals';
 
 /** Ripple and rejection of the interpolation: a millionth, two tens below what class I asks for. */
@@ -37,7 +37,8 @@ export function highestUsableOrder(
 
 /**
  * Chooses points and kernel so that nothing folds onto a line that is read: content from (points/window − highest line)
- * or from (sampling rate − highest line) upwards is suppressed by 120 dB, the lines read pass within 1e-6.
+ * or from (sampling rate − highest line) upwards is suppressed by 120 dB. A bare taper does so with half the points of a
+ * flat kernel where its droop stays moderate; the kernels divide the droop out line by line, which leaves less than 1e-7.
  * Among the powers of two that do so the cheapest is taken.
  */
 export function designWindowSpectrum(
@@ -51,14 +52,16 @@ export function designWindowSpectrum(
 	const top = reachesBeyondHighest ? highestOrder + 1 : highestOrder + 1 / cyclesPerWindow;
 	const passband = Math.min(top * frequency * WANDER, 0.46);
 	const lineCount = cyclesPerWindow * (highestOrder + 1) + 1;
-	let best: { points: number; cost: number; stopband: number } | null = null;
+	let best: { points: number; cost: number; kernel: KaiserKernel } | null = null;
 	for (let points = 1024; points <= 16384; points *= 2) {
 		const outputRate = (points * frequency) / (WANDER * cyclesPerWindow);
 		const stopband = Math.min(1, outputRate) - passband;
 		if (stopband < 1.15 * passband || points < 2 * lineCount) continue;
-		const taps = ATTENUATION_DB / (14.36 * (stopband - passband));
-		const cost = points * (taps + 12);
-		if (!best || cost < best.cost) best = { points, cost, stopband };
+		const kernel =
+			designTaperKernel(passband, stopband, ATTENUATION_DB) ??
+			designKaiserKernel(passband, stopband, ATTENUATION_DB);
+		const cost = points * (2 * kernel.halfWidth + 12);
+		if (!best || cost < best.cost) best = { points, cost, kernel };
 	}
 	if (!best) throw new Error(`No window length fits ${samplingRate_Hz} Hz at ${fundamental_Hz} Hz`);
 	return {
@@ -66,6 +69,6 @@ export function designWindowSpectrum(
 		highestOrder,
 		reachesBeyondHighest,
 		lineCount,
-		kernel: designKaiserKernel(passband, best.stopband, ATTENUATION_DB)
+		kernel: best.kernel
 	};
 }

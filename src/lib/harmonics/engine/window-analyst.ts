@@ -105,7 +105,12 @@ export class WindowAnalyst {
 		});
 		pairs.forEach(({ voltage, current }, p) => {
 			if (!complete[voltage] || !complete[current]) return;
-			const product = meanProduct(kernels.windows[voltage]!, kernels.windows[current]!, spectrum.points);
+			const product = meanProduct(
+				kernels.spectra[voltage]!,
+				kernels.spectra[current]!,
+				spectrum.lineCount,
+				spectrum.points
+			);
 			block.products_W[p]![row] = product * mappings[voltage]!.toPrimary * mappings[current]!.toPrimary;
 		});
 	}

@@ -51,7 +51,10 @@ export interface SignalKernels {
 	readonly samples: readonly Float64Array[];
 	/** [channelCount][points] the window of the last `transformWindow`. */
 	readonly windows: readonly Float64Array[];
-	/** [channelCount][2·lineCount] its spectrum, interleaved re, im; convention as in dft/convention.md, without any factor. */
+	/**
+	 * [channelCount][2·lineCount] its spectrum, interleaved re, im; convention as in dft/convention.md, without any factor.
+	 * With a bare taper (cutoff 0) the taper's droop is divided out here, and stays in `windows`.
+	 */
 	readonly spectra: readonly Float64Array[];
 	/**
 	 * Decodes `count` rows from the start of `raw` into the samples of every channel from position `at`.
