@@ -16,6 +16,7 @@ const ROOMS = [
 	['harmonics', 'src/lib/harmonics/**'],
 	['synthesis', 'src/lib/synthesis/**'],
 	['limits', 'src/lib/limits/**'],
+	['uncertainty', 'src/lib/uncertainty/**'],
 	['assessment', 'src/lib/assessment/**'],
 	['register', 'src/lib/register/**'],
 	['report', 'src/lib/report/**'],
@@ -32,6 +33,7 @@ const DOMAIN = [
 	'recording',
 	'harmonics',
 	'limits',
+	'uncertainty',
 	'assessment',
 	'register',
 	'report',
@@ -49,7 +51,17 @@ const MAY_ENTER = {
 	harmonics: ['harmonics', 'recording', 'numerics', 'units', 'result'],
 	synthesis: ['synthesis', 'recording', 'harmonics', 'numerics', 'units', 'result'],
 	limits: ['limits', 'units', 'result'],
-	assessment: ['assessment', 'limits', 'harmonics', 'recording', 'numerics', 'units', 'result'],
+	uncertainty: ['uncertainty', 'numerics'],
+	assessment: [
+		'assessment',
+		'uncertainty',
+		'limits',
+		'harmonics',
+		'recording',
+		'numerics',
+		'units',
+		'result'
+	],
 	register: ['register', 'assessment', 'limits', 'recording', 'units', 'result'],
 	report: [
 		'report',
@@ -129,7 +141,7 @@ export default ts.config(
 	{
 		// Domain rooms know neither the framework nor the machine they run on.
 		files: [
-			'src/lib/{numerics,units,recording,harmonics,synthesis,limits,assessment,register,report,access,charts}/**/*.ts'
+			'src/lib/{numerics,units,recording,harmonics,synthesis,limits,uncertainty,assessment,register,report,access,charts}/**/*.ts'
 		],
 		rules: {
 			'no-restricted-imports': [

@@ -181,8 +181,8 @@ describe('exceedances', () => {
 		expect(inside(6.9)?.verdict).toBe('compliant-inside-uncertainty');
 		expect(inside(7.2)?.verdict).toBe('exceeds-inside-uncertainty');
 		expect(inside(7.4)?.verdict).toBe('exceeds');
-		expect(inside(6.9)?.uncertainty_pct).toBeCloseTo(0.345, 12);
-		expect(inside(6.9)?.reason).toContain('less than the uncertainty of 0.34');
+		expect(inside(6.92)?.uncertainty_pct).toBeCloseTo(0.346, 12);
+		expect(inside(6.92)?.reason).toContain('less than the uncertainty of 0.35');
 	});
 
 	it('of a total that lacks orders are proven by what was recorded; compliance never is', () => {

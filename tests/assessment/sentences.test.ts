@@ -1,8 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { assess } from '$lib/assessment/assess';
 import { engineerSentence, portalSentence, rowSentence } from '$lib/assessment/verdict-sentence';
-import { classUncertainty, expandedFromBounds } from '$lib/assessment/uncertainty-statement';
-import { valueUncertainty_pct } from '$lib/assessment/value-uncertainty';
 import type { Assessment, AssessedPoint, UncertaintyStatement } from '$lib/assessment/assessment';
 import { limitSet } from '../limits/load-limit-files';
 import { EXACT, FIVE_PERCENT, makeSeries, POINT, spectrum } from './series-builder';
@@ -115,60 +113,6 @@ describe('for the reader who is not an engineer', () => {
 	it('admits when nothing could be assessed', () => {
 		expect(portalSentence(snapshot(5, { demandCurrent_A: null }), NAMES)).toContain(
 			'could not be fully assessed'
-		);
-	});
-});
-
-// Class limits: IEC 61000-4-7:2002+A1:2008, table 1 (from memory); u = a/√3: JCGM 100:2008, 4.3.7.
-describe('uncertainty of the measuring chain', () => {
-	const chain = {
-		instrumentClass: 'I',
-		voltageTransformerClass_pct: null,
-		currentTransformerClass_pct: 1,
-		currentRange_A: 2000
-	} as const;
-
-	it('combines class bounds as rectangular and expands with k = 2', () => {
-		expect(expandedFromBounds([5])).toBeCloseTo(10 / Math.sqrt(3), 12);
-		const statement = classUncertainty(chain);
-		expect(statement.voltage_pctOfReading(5)).toBeCloseTo(5.7735, 4);
-		expect(statement.current_pctOfReading(5)).toBeCloseTo(2 * Math.sqrt(26 / 3), 12);
-		expect(statement.text).toContain('class I');
-		expect(statement.text).toContain('from memory');
-	});
-
-	it('does not fall below the class’s floor for small readings', () => {
-		const statement = classUncertainty(chain);
-		const order = { kind: 'order', order: 5 } as const;
-		const at = (quantity: 'voltage' | 'current', value_pct: number) =>
-			valueUncertainty_pct(
-				statement,
-				quantity,
-				order,
-				{ from: 5, to: 5 },
-				value_pct,
-				quantity === 'current' ? 1000 : null
-			);
-		expect(at('voltage', 0.1)).toBeCloseTo(0.1 / Math.sqrt(3), 12);
-		expect(at('voltage', 4)).toBeCloseTo(4 * 0.057735, 4);
-		// 0.15 % of 2000 A is 3 A, 0.3 % of a demand current of 1000 A.
-		expect(at('current', 1)).toBeCloseTo((2 * 0.3) / Math.sqrt(3), 12);
-	});
-
-	it('states no floor of current when the range is not known', () => {
-		expect(classUncertainty({ ...chain, currentRange_A: null }).currentFloor_A).toBeUndefined();
-		expect(classUncertainty({ ...chain, instrumentClass: 'II' }).voltageFloor_pctOfNominal).toBeCloseTo(
-			(2 * 0.15) / Math.sqrt(3),
-			12
-		);
-	});
-
-	it('bounds a total by its worst order', () => {
-		const rising = { ...EXACT, current_pctOfReading: (order: number) => order / 10 };
-		const total = { kind: 'total', index: 'TDD' } as const;
-		expect(valueUncertainty_pct(rising, 'current', total, { from: 2, to: 50 }, 10, 1000)).toBeCloseTo(
-			0.5,
-			12
 		);
 	});
 });

@@ -1,6 +1,8 @@
 import { ORDER_STRIDE, type IntervalKind, type IntervalSeries } from '$lib/harmonics/intervals';
 import type { AssessedPoint, UncertaintyStatement } from '$lib/assessment/assessment';
 import type { Phase } from '$lib/recording/phase';
+import { combine } from '$lib/uncertainty/budget';
+import { certified } from '$lib/uncertainty/contribution';
 
 const SECONDS: Record<IntervalKind, number> = { window: 0.2, '3s': 3, '10min': 600, '2h': 7200 };
 
@@ -64,14 +66,26 @@ export const POINT: AssessedPoint = {
 	shortCircuitCurrent_A: 35_000
 };
 
-export const EXACT: UncertaintyStatement = {
-	text: 'none counted',
-	voltage_pctOfReading: () => 0,
-	current_pctOfReading: () => 0
-};
+/** U = the same share of every reading. */
+function shareOfReading(text: string, share_pct: number): UncertaintyStatement {
+	return {
+		text,
+		voltage_pctOfReading: () => share_pct,
+		current_pctOfReading: () => share_pct,
+		budgetOf: ({ value_pct }) =>
+			combine([
+				certified(
+					{
+						source: 'instrument-certificate',
+						stated: share_pct,
+						statedIn: 'percent of reading',
+						sensitivity: value_pct / 100
+					},
+					2
+				)
+			])
+	};
+}
 
-export const FIVE_PERCENT: UncertaintyStatement = {
-	text: 'five percent of reading',
-	voltage_pctOfReading: () => 5,
-	current_pctOfReading: () => 5
-};
+export const EXACT = shareOfReading('none counted', 0);
+export const FIVE_PERCENT = shareOfReading('five percent of reading', 5);

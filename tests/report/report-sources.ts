@@ -1,11 +1,12 @@
 import { assess } from '$lib/assessment/assess';
 import type { DecisionRule } from '$lib/assessment/assessment';
-import { classUncertainty } from '$lib/assessment/uncertainty-statement';
+import { chainUncertainty } from '$lib/assessment/uncertainty-statement';
 import type { Phase } from '$lib/recording/phase';
 import { toAssessedPoint } from '$lib/register/assessed-point';
 import type { PointFacts } from '$lib/register/point-facts';
 import { buildReportModel, type ReportSources } from '$lib/report/build-report-model';
 import type { ReportModel } from '$lib/report/report-model';
+import { chainOf } from '$lib/uncertainty/survey-chain';
 import { makeSeries, spectrum, WEEK_10MIN } from '../assessment/series-builder';
 import { limitSet } from '../limits/load-limit-files';
 
@@ -91,12 +92,16 @@ export function reportSources(change: SourcesChange = {}): ReportSources {
 			})
 		];
 	});
-	const uncertainty = classUncertainty({
-		instrumentClass: 'I',
-		voltageTransformerClass_pct: null,
-		currentTransformerClass_pct: 0.5,
-		currentRange_A: 1600
-	});
+	const uncertainty = chainUncertainty(
+		chainOf({
+			nominalFrequency_Hz: facts.nominalFrequency_Hz,
+			instrumentClass: 'I',
+			voltageSensorError_pct: null,
+			currentSensorError_pct: 0.5,
+			voltageTransformerPrimary_V: facts.voltageTransformer?.primary ?? null,
+			currentTransformerPrimary_A: facts.currentTransformer?.primary ?? null
+		})
+	);
 	const set = limitSet('ieee-519-2022');
 	const assessment = assess({
 		point: toAssessedPoint(facts),

@@ -1,23 +1,22 @@
 import type { IntervalSeries } from '../harmonics/intervals';
 import type { LimitTable, StatisticRule } from '../limits/limit-set';
 import type { LimitAnswer } from '../limits/look-up-limit';
+import type { FigureEvidence } from '../uncertainty/figure-budget';
 import type { DecisionRule, UncertaintyStatement, VerdictRow } from './assessment';
 import { judge } from './decision-rule';
 import { rulePeriods } from './evidence';
+import { figureOf, percentileEvidence, snapshotEvidence, type FigureSource } from './figure-evidence';
 import { intervalLevels, type LevelBase, type LevelItem } from './interval-levels';
 import { seriesForInterval, snapshotSeries, type PhaseData } from './phase-data';
-import { assessedReason, notAssessedReason } from './row-reason';
+import { assessedReason, notAssessedReason, unknownUncertaintyRemark } from './row-reason';
 import { ruleOutcome, type PeriodPercentile, type RuleOutcome } from './rule-outcome';
 import { snapshotValue, type SnapshotValue } from './snapshot';
-import { valueUncertainty_pct } from './value-uncertainty';
 
 /** Everything that stays the same for all items of one table on one phase. */
 export interface ItemContext {
 	table: LimitTable;
 	data: PhaseData;
 	base: LevelBase;
-	/** What 100 % of a current level is, A; null for voltage. */
-	fullScale_A: number | null;
 	siteTimeZone: string;
 	uncertainty: UncertaintyStatement;
 	decisionRule: DecisionRule;
@@ -36,6 +35,8 @@ interface Measured {
 	/** How the value came about, in words. */
 	origin: string;
 	remark: string;
+	/** What its uncertainty budget is made from. */
+	figure: FigureEvidence;
 }
 
 export function levelItemOf(item: VerdictRow['item'], orders: { from: number; to: number }): LevelItem {
@@ -115,17 +116,19 @@ function measure(context: ItemContext, item: LevelItem, lowerBound: boolean): Me
 		const series = seriesForInterval(data, rule.interval_s);
 		if (series === null) continue;
 		const { levels_pct, isLowerBound } = levelsOf(series);
+		const source = { series, levels_pct, item, base: context.base };
 		const outcome = ruleOutcome(series, levels_pct, rule, rulePeriods(series, rule, context.siteTimeZone));
 		outcomes.set(rule.key, outcome);
-		if (outcome.kind === 'evaluated') measured.push(fromRule(rule, outcome, isLowerBound));
+		if (outcome.kind === 'evaluated') measured.push(fromRule(rule, outcome, isLowerBound, source));
 	}
 	const base = baseRuleOf(table);
 	if (base === null || !measured.some((one) => one.statisticKey === base.key)) {
 		const series = snapshotSeries(data);
 		const known = series === null ? null : levelsOf(series);
 		const value = series === null || known === null ? null : snapshotValue(series, known.levels_pct);
-		if (value !== null && known !== null) {
-			measured.push(fromSnapshot(value, known.isLowerBound, base));
+		if (series !== null && value !== null && known !== null) {
+			const source = { series, levels_pct: known.levels_pct, item, base: context.base };
+			measured.push(fromSnapshot(value, known.isLowerBound, base, source));
 			return { measured, unmet: [], outcomes };
 		}
 	}
@@ -136,7 +139,8 @@ function measure(context: ItemContext, item: LevelItem, lowerBound: boolean): Me
 function fromRule(
 	rule: StatisticRule,
 	outcome: Extract<RuleOutcome, { kind: 'evaluated' }>,
-	isLowerBound: boolean
+	isLowerBound: boolean,
+	source: FigureSource
 ): Measured {
 	const { governing } = outcome;
 	return {
@@ -150,7 +154,8 @@ function fromRule(
 		worstPeriod: rule.period === 'day' ? governing.date : null,
 		isLowerBound,
 		origin: periodOrigin(rule, governing),
-		remark: incompleteRemark(rule, outcome.greaterIncomplete)
+		remark: incompleteRemark(rule, outcome.greaterIncomplete),
+		figure: percentileEvidence(source, governing, rule)
 	};
 }
 
@@ -170,7 +175,12 @@ function incompleteRemark(rule: StatisticRule, period: PeriodPercentile | null):
 	);
 }
 
-function fromSnapshot(value: SnapshotValue, isLowerBound: boolean, base: StatisticRule | null): Measured {
+function fromSnapshot(
+	value: SnapshotValue,
+	isLowerBound: boolean,
+	base: StatisticRule | null,
+	source: FigureSource
+): Measured {
 	const kind = value.interval === '3s' ? '3-second value' : '10/12-cycle value';
 	return {
 		value_pct: value.value_pct,
@@ -186,7 +196,8 @@ function fromSnapshot(value: SnapshotValue, isLowerBound: boolean, base: Statist
 		remark:
 			base === null
 				? 'This edition states no percentile rule, so the comparison is indicative.'
-				: 'Indicative only: the capture is too short for the percentile that the rule asks for.'
+				: 'Indicative only: the capture is too short for the percentile that the rule asks for.',
+		figure: snapshotEvidence(source, value.value_pct)
 	};
 }
 
@@ -201,15 +212,9 @@ function judgedRow(
 	const limit_pct = limit.limit_pct * measured.multiplier;
 	const comparator = comparatorOf(table);
 	const { value_pct } = measured;
-	const uncertainty_pct = valueUncertainty_pct(
-		context.uncertainty,
-		table.quantity,
-		item,
-		orders,
-		value_pct,
-		context.fullScale_A
-	);
-	const verdict = judge(value_pct, limit_pct, uncertainty_pct, comparator, decisionRule);
+	const figure = figureOf(table.quantity, orders, value_pct, table.basis, measured.figure);
+	const budget = context.uncertainty.budgetOf(figure);
+	const verdict = judge(value_pct, limit_pct, budget.knownPart, comparator, decisionRule);
 	const row: Omit<VerdictRow, 'reason'> = {
 		tableKey: table.key,
 		quantity: table.quantity,
@@ -222,7 +227,8 @@ function judgedRow(
 		limitRowId: limit.rowId,
 		comparator,
 		utilisation: value_pct / limit_pct,
-		uncertainty_pct,
+		uncertainty_pct: budget.U,
+		figure: { ...measured.figure, orders },
 		evidence: measured.evidence,
 		coverage: measured.coverage,
 		intervalCount: measured.intervalCount,
@@ -234,9 +240,13 @@ function judgedRow(
 		measured.isLowerBound
 			? `Orders above the ${data.highestOrder}th or missing ones are not counted and could only add to it.`
 			: '',
-		measured.remark
+		measured.remark,
+		budget.U === null ? unknownUncertaintyRemark(table.quantity, budget.knownPart) : ''
 	];
-	return { ...row, reason: assessedReason(table, row, measured.origin, limit.why, remarks) };
+	return {
+		...row,
+		reason: assessedReason(table, row, measured.origin, limit.why, remarks, budget.knownPart)
+	};
 }
 
 function missingRow(

@@ -149,8 +149,7 @@ export function assessTable(context: TableContext, selection: TableSelection): A
 			absent.push(phase);
 			continue;
 		}
-		const fullScale_A = table.quantity === 'current' ? demandCurrent_A : null;
-		const itemContext = { ...context, table, data, base, fullScale_A };
+		const itemContext = { ...context, table, data, base };
 		for (const { item, orders, limit } of items) rows.push(...assessItem(itemContext, item, orders, limit));
 	}
 	const classWhy = items.find((one) => one.limit.why !== '')?.limit.why ?? '';

@@ -56,7 +56,7 @@ export function assess(input: AssessmentInput): Assessment {
 		tables,
 		rows,
 		missing,
-		notes: notesOf(point, phases),
+		notes: notesOf(point, phases, rows),
 		headline: headlineOf(point, phases, voltageTable?.basis ?? 'fundamental')
 	};
 }

@@ -1,5 +1,7 @@
 import type { Phase } from '../recording/phase';
 import type { LimitBasis } from '../limits/limit-set';
+import type { Budget } from '../uncertainty/budget';
+import type { Figure, FigureEvidence } from '../uncertainty/figure-budget';
 
 export const VERDICTS = [
 	'compliant',
@@ -29,16 +31,18 @@ export interface AssessedPoint {
 	shortCircuitCurrent_A: number | null;
 }
 
-/** Expanded uncertainty (k = 2) of a percentage, percent of reading, by quantity and order. */
+/** How well the levels of a survey are known: a budget for each, and words and figures for print. */
 export interface UncertaintyStatement {
 	/** In words, as printed: where the figures come from. */
 	text: string;
-	voltage_pctOfReading: (order: number) => number;
-	current_pctOfReading: (order: number) => number;
-	/** Least expanded uncertainty of a voltage, percent of nominal voltage; absent = none stated. */
-	voltageFloor_pctOfNominal?: number;
-	/** Least expanded uncertainty of a current, A on the primary side; absent = none stated. */
-	currentFloor_A?: number;
+	/**
+	 * Expanded uncertainty (k = 2) of a single order well above the recorder's floor and at rated load, percent of reading;
+	 * null where it is not known.
+	 */
+	voltage_pctOfReading: (order: number) => number | null;
+	current_pctOfReading: (order: number) => number | null;
+	/** The budget of one level, percentage points of its basis. */
+	budgetOf: (figure: Figure) => Budget;
 }
 
 export interface VerdictRow {
@@ -59,8 +63,13 @@ export interface VerdictRow {
 	comparator: '<' | '<=';
 	/** value ÷ limit; null when not assessed. */
 	utilisation: number | null;
-	/** Expanded uncertainty U of the value, percentage points of the basis; null when not assessed. */
+	/**
+	 * Expanded uncertainty U of the value, percentage points of the basis; null when not assessed, and where a source of
+	 * error is not known (the verdict then counts the known part).
+	 */
 	uncertainty_pct: number | null;
+	/** What the budget of the value was made from; absent when there is no value. */
+	figure?: FigureEvidence & { orders: { from: number; to: number } };
 	evidence: Evidence;
 	/** Share of the rule's period that valid intervals cover, 0…1. */
 	coverage: number;

@@ -1,6 +1,6 @@
 import { ORDER_STRIDE } from '../harmonics/intervals';
-import { formatCurrent, formatPct } from '../units/format';
-import type { AssessedPoint } from './assessment';
+import { formatCurrent, formatOrdinal, formatPct } from '../units/format';
+import type { AssessedPoint, VerdictRow } from './assessment';
 import { snapshotSeries, type PhaseData } from './phase-data';
 
 /** Greatest |dc| over the valid short intervals of a phase, in V or A; null when none was recorded. */
@@ -56,7 +56,28 @@ function neutralNotes(phases: PhaseData[]): string[] {
 	];
 }
 
+/** Which judged values passed through a transducer that is not known to carry them. */
+function unknownNotes(rows: readonly VerdictRow[]): string[] {
+	return (['voltage', 'current'] as const).flatMap((quantity) => {
+		const unknown = rows.filter(
+			(row) => row.quantity === quantity && row.value_pct !== null && row.uncertainty_pct === null
+		);
+		const orders = unknown.flatMap(({ item }) => (item.kind === 'order' ? [item.order] : []));
+		const total = unknown.some(({ item }) => item.kind === 'total');
+		if (unknown.length === 0) return [];
+		const what = [
+			...(orders.length === 0 ? [] : [`from the ${formatOrdinal(Math.min(...orders))} order on`]),
+			...(total ? ['of the total'] : [])
+		].join(' and ');
+		return [
+			`The uncertainty of the ${quantity} ${what} is not known, because it passed through a transformer that nobody has ` +
+				'tested there; its verdict counts the known part only. Before money is spent on it, measure with a divider or ' +
+				'sensor made for harmonics.'
+		];
+	});
+}
+
 /** Facts that a reader should know beside the verdict, each a sentence. */
-export function notesOf(point: AssessedPoint, phases: PhaseData[]): string[] {
-	return [...neutralNotes(phases), ...dcNotes(point, phases), ...flaggedNotes(phases)];
+export function notesOf(point: AssessedPoint, phases: PhaseData[], rows: readonly VerdictRow[]): string[] {
+	return [...neutralNotes(phases), ...dcNotes(point, phases), ...flaggedNotes(phases), ...unknownNotes(rows)];
 }

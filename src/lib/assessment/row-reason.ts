@@ -17,13 +17,17 @@ function sentenceCase(text: string): string {
 	return text.charAt(0).toUpperCase() + text.slice(1);
 }
 
-/** Why a row has its verdict: clause, statistic, value, limit, class of the table, remarks. */
+/**
+ * Why a row has its verdict: clause, statistic, value, limit, class of the table, remarks.
+ * counted_pct  the uncertainty that the verdict counts, percentage points
+ */
 export function assessedReason(
 	table: LimitTable,
 	row: Omit<VerdictRow, 'reason'>,
 	origin: string,
 	classWhy: string,
-	remarks: string[]
+	remarks: string[],
+	counted_pct: number
 ): string {
 	const { value, reference } = formatPctPair(row.value_pct, row.limit_pct);
 	const rule = table.statistics.find((candidate) => candidate.key === row.statisticKey);
@@ -31,7 +35,7 @@ export function assessedReason(
 	const times =
 		rule !== undefined && rule.multiplier !== 1 ? ` (${rule.multiplier} times the table’s value)` : '';
 	const allowed = row.comparator === '<' ? 'must stay below' : 'may reach';
-	const verdict = row.verdict === 'not-assessed' ? '' : WHY[row.verdict](formatUncertainty(row));
+	const verdict = row.verdict === 'not-assessed' ? '' : WHY[row.verdict](formatUncertainty(counted_pct));
 	return [
 		`${clauseWords(table.clause, table.title)}: ${what} is ${value} ${BASIS_WORDS[row.basis]};`,
 		`it ${allowed} ${reference}${times} and ${verdict}.`,
@@ -43,9 +47,16 @@ export function assessedReason(
 }
 
 /** Uncertainties are printed to two decimals, or to two significant figures where that would read as zero. */
-function formatUncertainty(row: Omit<VerdictRow, 'reason'>): string {
-	const U = row.uncertainty_pct ?? 0;
+function formatUncertainty(U: number): string {
 	return U >= 0.01 || U === 0 ? U.toFixed(2) : U.toPrecision(2);
+}
+
+/** Beside a verdict whose value passed through a transformer that nobody knows at this order. */
+export function unknownUncertaintyRemark(quantity: VerdictRow['quantity'], counted_pct: number): string {
+	return (
+		`How the ${quantity} transformer transmits this is not known, so no expanded uncertainty can be stated; ` +
+		`the comparison counts the known part of ${formatUncertainty(counted_pct)} points only.`
+	);
 }
 
 /** Why there is no verdict: the item out of reach, not recorded, or too few intervals of the rule's kind. */

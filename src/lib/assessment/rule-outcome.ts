@@ -6,6 +6,9 @@ import { fewestForPercentile, isComplete, type RulePeriod } from './evidence';
 /** One period's percentile and what stands behind it. */
 export interface PeriodPercentile {
 	date: string;
+	/** Its intervals, [from, to) of the series. */
+	from: number;
+	to: number;
 	value_pct: number;
 	validCount: number;
 	flaggedCount: number;
@@ -46,6 +49,8 @@ export function periodPercentile(
 	}
 	return {
 		date: period.date,
+		from: period.from,
+		to: period.to,
 		value_pct: selectPercentileNearestRank(valid.subarray(0, validCount), percentile / 100),
 		validCount,
 		flaggedCount,

@@ -1,73 +1,100 @@
+import { coverageOf, INTENDED_COVERAGE, type Budget } from '../uncertainty/budget';
+import { figureBudget, type Figure } from '../uncertainty/figure-budget';
+import { certificateBand } from '../uncertainty/instrument-limits';
+import {
+	transducersOf,
+	type MeasuringChain,
+	type Quantity,
+	type Transducer,
+	type TransducerKind
+} from '../uncertainty/measuring-chain';
+import { RESPONSE } from '../uncertainty/transducer-limits';
+import { formatNumber, formatOrdinal } from '../units/format';
 import type { UncertaintyStatement } from './assessment';
 
-/** Harmonic accuracy class of the recorder (IEC 61000-4-7:2002+A1:2008, table 1). */
-export type InstrumentClass = 'I' | 'II';
+/** The order that the statement speaks for. */
+const TYPICAL_ORDER = 5;
+/** From so much above 95 % on, the coverage is told: the bound of one source then dominates. */
+const TOLD_FROM = INTENDED_COVERAGE + 0.015;
 
-/** What is known about the measuring chain of a survey. */
-export interface MeasuringChain {
-	instrumentClass: InstrumentClass;
-	/** Accuracy class of the voltage transformers, percent; null when voltage is measured directly. */
-	voltageTransformerClass_pct: number | null;
-	/** Accuracy class of the current transformers or clamps, percent; null when current is measured directly. */
-	currentTransformerClass_pct: number | null;
-	/** Nominal primary current of the measuring range, A; null when not known (no floor is then stated). */
-	currentRange_A: number | null;
-}
-
-/**
- * Greatest permitted error: 5 % of the reading, or the floor for small readings. The two meet at the threshold
- * (1 % and 3 % of nominal in class I; 3 % and 10 % in class II). From memory; the publication is named above.
- */
-const CLASS_LIMITS: Record<
-	InstrumentClass,
-	{ reading_pct: number; voltageFloor_pctOfNominal: number; currentFloor_pctOfNominal: number }
-> = {
-	I: { reading_pct: 5, voltageFloor_pctOfNominal: 0.05, currentFloor_pctOfNominal: 0.15 },
-	II: { reading_pct: 5, voltageFloor_pctOfNominal: 0.15, currentFloor_pctOfNominal: 0.5 }
+const KIND_WORDS: Record<TransducerKind, string> = {
+	'inductive-voltage-transformer': 'inductive voltage transformers',
+	'capacitive-voltage-transformer': 'capacitive voltage transformers',
+	'low-voltage-transformer': 'low-voltage transformers',
+	'voltage-divider': 'voltage dividers',
+	'current-transformer': 'current transformers',
+	'current-clamp': 'current clamps',
+	'flexible-coil': 'flexible coils',
+	'not-known': 'sensors'
 };
 
-/**
- * Expanded uncertainty (k = 2) of independent errors that are each only known by a bound: rectangular
- * distributions, u = a/√3 (JCGM 100:2008, 4.3.7).
- */
-export function expandedFromBounds(bounds: number[]): number {
-	return 2 * Math.sqrt(bounds.reduce((sum, bound) => sum + (bound * bound) / 3, 0));
+function transducerWords({ kind, error_pct, errorAssumed }: Transducer): string {
+	const { at50th_pct } = RESPONSE[kind];
+	const error = `${KIND_WORDS[kind]} of ${error_pct} %${errorAssumed ? ' (not stated, assumed)' : ''}`;
+	return at50th_pct === 0 ? error : `${error}, growing by ${at50th_pct} % to the 50th order`;
 }
 
-function chainWords(chain: MeasuringChain): string {
-	const transformer = (name: string, class_pct: number | null) =>
-		class_pct === null ? `${name} measured directly` : `${name} transformers of class ${class_pct}`;
-	return [
-		transformer('voltage', chain.voltageTransformerClass_pct),
-		transformer('current', chain.currentTransformerClass_pct)
-	].join(', ');
+function quantityWords(chain: MeasuringChain, quantity: Quantity): string {
+	const transducers = transducersOf(chain, quantity);
+	if (transducers.length === 0) return `${quantity} measured directly`;
+	return `${quantity} through ${transducers.map(transducerWords).join(' and ')}`;
 }
 
-/** The uncertainty that is counted when a survey states none of its own: the class limits of its measuring chain. */
-export function classUncertainty(chain: MeasuringChain): UncertaintyStatement {
-	const limits = CLASS_LIMITS[chain.instrumentClass];
-	const of = (transformerClass_pct: number | null) =>
-		expandedFromBounds([
-			limits.reading_pct,
-			...(transformerClass_pct === null ? [] : [transformerClass_pct])
-		]);
-	const voltage_pct = of(chain.voltageTransformerClass_pct);
-	const current_pct = of(chain.currentTransformerClass_pct);
-	const statement: UncertaintyStatement = {
-		text:
-			`Expanded uncertainty (k = 2) from class limits taken as rectangular: recorder of class ${chain.instrumentClass} ` +
-			`after IEC 61000-4-7:2002+A1:2008, table 1 (values from memory), ${chainWords(chain)}: ` +
-			`${voltage_pct.toFixed(1)} % of reading for voltage and ${current_pct.toFixed(1)} % for current at every order, ` +
-			`not less than the class’s floor. Transformer classes hold at power frequency only; their errors at ` +
-			`higher orders are not known and not counted.`,
-		voltage_pctOfReading: () => voltage_pct,
-		current_pctOfReading: () => current_pct,
-		voltageFloor_pctOfNominal: expandedFromBounds([limits.voltageFloor_pctOfNominal])
+function recorderWords(chain: MeasuringChain): string {
+	const byClass = `limits of class ${chain.instrumentClass} after IEC 61000-4-7:2002+A1:2008, table 1 (values from memory), taken as rectangular`;
+	if (chain.certificate.length === 0) return `recorder by the ${byClass}`;
+	return `recorder by its calibration certificate, and where that is silent by the ${byClass}`;
+}
+
+/** A single order well above the recorder's floor, at rated load, with nothing seen of its spread. */
+function typicalFigure(quantity: Quantity, order: number): Figure {
+	return {
+		quantity,
+		orders: { from: order, to: order },
+		value_pct: 100,
+		basis: 'agreed',
+		evidence: { fullScale: null, load_A: Infinity, spread: null, composition_pct: null }
 	};
-	if (chain.currentRange_A !== null) {
-		statement.currentFloor_A = expandedFromBounds([
-			(limits.currentFloor_pctOfNominal / 100) * chain.currentRange_A
-		]);
-	}
-	return statement;
+}
+
+function reachWords(chain: MeasuringChain, quantity: Quantity): string {
+	const reach_Hz = Math.min(
+		...transducersOf(chain, quantity).map((transducer) => RESPONSE[transducer.kind].reach_Hz)
+	);
+	if (!Number.isFinite(reach_Hz)) return '';
+	const order = Math.max(1, Math.floor(reach_Hz / chain.nominalFrequency_Hz));
+	return ` Above the ${formatOrdinal(order)} order the errors of the ${quantity} transformers are not known: no uncertainty is stated there, and verdicts count the known part only.`;
+}
+
+function coverageWords(chain: MeasuringChain): string {
+	const coverages = (['voltage', 'current'] as const).map((quantity) =>
+		coverageOf(figureBudget(chain, typicalFigure(quantity, TYPICAL_ORDER)))
+	);
+	const least = Math.min(...coverages);
+	if (!(least > TOLD_FROM)) return '';
+	const share = least > 0.999 ? 'practically all' : `about ${formatNumber(100 * least, { decimals: 1 })} %`;
+	const dominating =
+		certificateBand(chain, 'voltage', TYPICAL_ORDER) && certificateBand(chain, 'current', TYPICAL_ORDER)
+			? 'A bound'
+			: 'The recorder’s bound';
+	return ` ${dominating} dominates, so that ±U holds ${share} of the true values and not only the 95 % that k = 2 stands for otherwise.`;
+}
+
+/** The uncertainty that is counted when a survey states none of its own: a budget of its measuring chain for each figure. */
+export function chainUncertainty(chain: MeasuringChain): UncertaintyStatement {
+	const stated = (quantity: Quantity) => (order: number) =>
+		figureBudget(chain, typicalFigure(quantity, order)).U;
+	const budgetOf = (figure: Figure): Budget => figureBudget(chain, figure);
+	return {
+		text:
+			`Expanded uncertainty U = 2·u from a budget for each figure, combined after JCGM 100:2008: ` +
+			`${recorderWords(chain)}; ${quantityWords(chain, 'voltage')}; ${quantityWords(chain, 'current')}; ` +
+			`spread and gaps as the measurement shows them. Classes hold at power frequency; their growth with the order is common practice and an assumption.` +
+			reachWords(chain, 'voltage') +
+			reachWords(chain, 'current') +
+			coverageWords(chain),
+		voltage_pctOfReading: stated('voltage'),
+		current_pctOfReading: stated('current'),
+		budgetOf
+	};
 }

@@ -168,8 +168,8 @@ export interface ReportMethod {
 	edition: string;
 	decisionRule: DecisionRule;
 	uncertaintyText: string;
-	/** Expanded uncertainty at a few orders, percent of reading. */
-	uncertaintyAtOrders: { order: number; voltage_pct: number; current_pct: number }[];
+	/** Expanded uncertainty at a few orders, percent of reading; null where it is not known. */
+	uncertaintyAtOrders: { order: number; voltage_pct: number | null; current_pct: number | null }[];
 	statistics: {
 		quantity: 'voltage' | 'current';
 		key: string;

@@ -9,6 +9,7 @@ import type { ReportSpectrum } from '../../report/report-model';
 import { statisticText } from '../../report/rule-words';
 import { tableSpectrum } from '../../report/table-spectrum';
 import { isNotable, overLimit, worstByItem } from '../../report/verdict-table';
+import type { MeasuringChain } from '../../uncertainty/measuring-chain';
 import type { Db } from '../db/database';
 import type { RevisionStatus } from '../../report/revision-status';
 import { assessmentsRepository, type StoredAssessment } from '../repositories/assessments.repository';
@@ -50,6 +51,8 @@ export interface VerdictPage {
 				limitSetReason: string;
 				overLimit: string[];
 				totalLimits: { index: 'THD' | 'TDD'; quantity: 'voltage' | 'current'; limit_pct: number }[];
+				/** What the rows' uncertainty budgets are made from; null on assessments made before there were any. */
+				measuringChain: MeasuringChain | null;
 		  })
 		| null;
 	/** Why there is no verdict yet. */
@@ -179,7 +182,8 @@ function assessmentView(
 		coverage: whole.worst?.evidence === 'partial' ? (counts?.coverage ?? null) : null,
 		limitSetReason: input.limitSet.reason,
 		overLimit: overLimit(rows),
-		totalLimits: totalLimits(rows)
+		totalLimits: totalLimits(rows),
+		measuringChain: input.measuringChain ?? null
 	};
 }
 

@@ -1,4 +1,5 @@
 import type { AssessedPoint, Assessment, VerdictRow } from '../../assessment/assessment';
+import type { MeasuringChain } from '../../uncertainty/measuring-chain';
 import type { Db } from '../db/database';
 import { newId } from '../db/ids';
 import type { AssessmentRow, VerdictRow as VerdictRowRow } from '../db/rows';
@@ -9,7 +10,9 @@ export interface AssessmentInputRecord {
 	point: AssessedPoint;
 	siteTimeZone: string;
 	limitSet: { id: number; key: string; title: string; sourceSha256: string; reason: string };
-	uncertaintyAtOrders: { order: number; voltage_pct: number; current_pct: number }[];
+	uncertaintyAtOrders: { order: number; voltage_pct: number | null; current_pct: number | null }[];
+	/** What the budgets were made from; absent on assessments made before budgets were. */
+	measuringChain?: MeasuringChain;
 	instrumentId: string | null;
 	analysisIds: string[];
 	captures: { id: string; name: string; startedAt: string | null; duration_s: number; sha256s: string[] }[];
@@ -22,6 +25,9 @@ export interface StoredAssessment {
 }
 
 const CHUNK = 100;
+
+/** Result as it is stored: what the rows' budgets were made from stands beside it, one entry a row, null = none. */
+type StoredResult = Omit<Assessment, 'rows'> & { rowFigures?: (NonNullable<VerdictRow['figure']> | null)[] };
 
 function toRowRow(
 	row: VerdictRow,
@@ -91,11 +97,17 @@ export function assessmentsRepository(db: Db, scope: Scope) {
 		const rows: VerdictRowRow[] = await db('verdict_rows')
 			.where({ practice_id: scope.practiceId, assessment_id: row.id })
 			.orderBy('id');
-		const result = JSON.parse(row.result_json) as Omit<Assessment, 'rows'>;
+		const { rowFigures = [], ...result } = JSON.parse(row.result_json) as StoredResult;
 		return {
 			row,
 			input: JSON.parse(row.input_json) as AssessmentInputRecord,
-			assessment: { ...result, rows: rows.map(fromRowRow) }
+			assessment: {
+				...result,
+				rows: rows.map((one, i) => {
+					const figure = rowFigures[i];
+					return figure ? { ...fromRowRow(one), figure } : fromRowRow(one);
+				})
+			}
 		};
 	}
 
@@ -143,7 +155,10 @@ export function assessmentsRepository(db: Db, scope: Scope) {
 				advisory: result.advisory ? 1 : 0,
 				engine_version: entry.engineVersion,
 				input_json: JSON.stringify(entry.input),
-				result_json: JSON.stringify(result),
+				result_json: JSON.stringify({
+					...result,
+					rowFigures: rows.map((row) => row.figure ?? null)
+				} satisfies StoredResult),
 				is_current: 1,
 				created_by: entry.createdBy,
 				created_at: entry.at

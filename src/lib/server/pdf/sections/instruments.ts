@@ -31,12 +31,14 @@ export function instrumentsSection(context: SheetContext): Content[] {
 						],
 						method.uncertaintyAtOrders.map((row) => [
 							String(row.order),
-							formatNumber(row.voltage_pct),
-							formatNumber(row.current_pct),
+							row.voltage_pct === null ? 'not known' : formatNumber(row.voltage_pct),
+							row.current_pct === null ? 'not known' : formatNumber(row.current_pct),
 							''
 						])
 					),
-					soft('Expanded uncertainty, coverage factor k = 2.')
+					soft(
+						'Expanded uncertainty, coverage factor k = 2, of a single order well above the recorder’s floor and at rated load.'
+					)
 				])
 	];
 	if (instrument === null)

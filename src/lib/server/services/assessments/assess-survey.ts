@@ -21,7 +21,7 @@ import { pointsRepository } from '../../repositories/points.repository';
 import type { Scope } from '../../repositories/scope';
 import { sitesRepository } from '../../repositories/sites.repository';
 import { surveysRepository } from '../../repositories/surveys.repository';
-import { STATED_ORDERS, surveyUncertainty } from './survey-uncertainty';
+import { STATED_ORDERS, surveyChain, surveyUncertainty } from './survey-uncertainty';
 
 /** Who asked for it; the worker acts for nobody in particular after an analysis. */
 export interface Assessor {
@@ -77,7 +77,8 @@ export async function prepareAssessment(
 		survey.instrument_id === null
 			? null
 			: ((await instrumentsRepository(db, scope).byId(survey.instrument_id)) ?? null);
-	const uncertainty = surveyUncertainty(instrument, pointRow.ct_primary_a);
+	const measuringChain = surveyChain(instrument, pointRow);
+	const uncertainty = surveyUncertainty(instrument, measuringChain);
 	const point = toAssessedPoint(facts);
 	const assessment = assess({
 		point,
@@ -106,6 +107,7 @@ export async function prepareAssessment(
 				voltage_pct: uncertainty.voltage_pctOfReading(order),
 				current_pct: uncertainty.current_pctOfReading(order)
 			})),
+			measuringChain,
 			instrumentId: survey.instrument_id,
 			analysisIds: gathered.analysisIds,
 			captures: gathered.captures
