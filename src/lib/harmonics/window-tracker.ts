@@ -67,6 +67,8 @@ export class WindowTracker {
 	private frequency: number;
 	private mark: PhaseMark | null = null;
 	private resync = false;
+	/** Samples that were found without a gap. */
+	private clean = { from: 1, to: 0 };
 	private tick: number;
 	private readonly usualAmplitude: number;
 
@@ -160,13 +162,19 @@ export class WindowTracker {
 		const reach = Math.ceil(cyclesPerWindow / this.frequency);
 		const first = Math.floor(from);
 		const last = Math.ceil(to);
-		for (let i = first; i <= last; i++) if (Number.isNaN(samples[i - base])) return null;
-		let low = first;
 		const lowest = Math.max(firstSample, first - reach);
-		while (low > lowest && !Number.isNaN(samples[low - 1 - base])) low--;
-		let high = last;
 		const highest = Math.min(lastSample, last + reach);
+		// Most of it was looked through for the window before.
+		const { clean } = this;
+		const isNext = first >= clean.from && first <= clean.to;
+		for (let i = isNext ? clean.to + 1 : first; i <= last; i++)
+			if (Number.isNaN(samples[i - base])) return null;
+		let low = isNext ? Math.max(clean.from, lowest) : first;
+		while (low > lowest && !Number.isNaN(samples[low - 1 - base])) low--;
+		let high = isNext ? Math.max(clean.to, last) : last;
 		while (high < highest && !Number.isNaN(samples[high + 1 - base])) high++;
+		this.clean = { from: low, to: high };
+		high = Math.min(high, highest);
 		return (high - low) * this.frequency > 2 * LEAST_HALF_CYCLES + 1 ? { from: low, to: high } : null;
 	}
 

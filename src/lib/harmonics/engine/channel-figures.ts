@@ -71,7 +71,7 @@ export interface WindowLevels {
 /**
  * Turns the spectrum of one window into the figures of its row.
  * spectrum  [≥ 2·lineCount] interleaved, convention of numerics/dft; of the recorded values
- * lines     [lineCount] work space
+ * squares   [lineCount] work space
  * row       index of the window in the channel's arrays
  * returns   nothing; phases stay those of the first point of the window until `referPhases`
  */
@@ -79,7 +79,7 @@ export function fillWindow(
 	channel: ChannelAnalysis,
 	row: number,
 	spectrum: Float64Array,
-	lines: Float64Array,
+	squares: Float64Array,
 	design: WindowSpectrumDesign,
 	cyclesPerWindow: 10 | 12,
 	levels: WindowLevels
@@ -88,33 +88,34 @@ export function fillWindow(
 	const size = Math.abs(toPrimary);
 	const turned = toPrimary < 0 ? Math.PI : 0;
 	const { points, highestOrder, lineCount } = design;
-	const scale = (Math.SQRT2 / points) * size;
+	const scale = 2 * (size / points) ** 2;
 	for (let k = 1; k < lineCount; k++) {
 		const re = spectrum[2 * k]!;
 		const im = spectrum[2 * k + 1]!;
-		lines[k] = Math.sqrt(re * re + im * im) * scale;
+		squares[k] = (re * re + im * im) * scale;
 	}
 	const mean = (spectrum[0]! / points) * toPrimary;
-	lines[0] = Math.abs(mean);
+	squares[0] = mean * mean;
 	const at = row * ORDER_STRIDE;
 	channel.rms[row] = levels.rms * size;
 	channel.peak[row] = levels.peak * size;
 	channel.dc[row] = mean;
-	channel.components[at] = lines[0];
-	channel.subgroups[at] = lines[0];
-	channel.interharmonicSubgroups[at] = interharmonicCentredSubgroup(lines, 0, cyclesPerWindow);
-	channel.interharmonicGroups[at] = interharmonicGroup(lines, 0, cyclesPerWindow);
+	channel.components[at] = Math.abs(mean);
+	channel.subgroups[at] = Math.abs(mean);
+	channel.interharmonicSubgroups[at] = interharmonicCentredSubgroup(squares, 0, cyclesPerWindow);
+	channel.interharmonicGroups[at] = interharmonicGroup(squares, 0, cyclesPerWindow);
+	const { components, subgroups, groups, interharmonicSubgroups, interharmonicGroups, phases_deg } = channel;
 	for (let order = 1; order <= highestOrder; order++) {
 		const line = order * cyclesPerWindow;
-		channel.components[at + order] = lines[line]!;
-		channel.subgroups[at + order] = harmonicSubgroup(lines, line);
+		components[at + order] = Math.sqrt(squares[line]!);
+		subgroups[at + order] = harmonicSubgroup(squares, line);
 		const angle_rad = Math.atan2(spectrum[2 * line + 1]!, spectrum[2 * line]!) + turned;
-		channel.phases_deg[at + order] = (angle_rad * 180) / Math.PI;
+		phases_deg[at + order] = (angle_rad * 180) / Math.PI;
 		// Lines half an order up, and all up to the next order, have to be inside the usable band as well.
 		if (order === highestOrder && !design.reachesBeyondHighest) break;
-		channel.groups[at + order] = harmonicGroup(lines, line, cyclesPerWindow);
-		channel.interharmonicSubgroups[at + order] = interharmonicCentredSubgroup(lines, line, cyclesPerWindow);
-		channel.interharmonicGroups[at + order] = interharmonicGroup(lines, line, cyclesPerWindow);
+		groups[at + order] = harmonicGroup(squares, line, cyclesPerWindow);
+		interharmonicSubgroups[at + order] = interharmonicCentredSubgroup(squares, line, cyclesPerWindow);
+		interharmonicGroups[at + order] = interharmonicGroup(squares, line, cyclesPerWindow);
 	}
 	channel.thd_pctOfFundamental[row] = thd_pctOfFundamental(
 		channel.subgroups.subarray(at, at + ORDER_STRIDE),

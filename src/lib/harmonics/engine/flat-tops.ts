@@ -8,8 +8,8 @@ interface EndRuns {
 	pieces: number;
 }
 
-/** Pieces at one extreme value that are looked through; what they do not show, more of them would not. */
-const ENOUGH_PIECES = 40;
+/** Pieces of one block at one extreme value that are looked through; what they do not show, more of them would not. */
+const ENOUGH_PIECES = 6;
 
 /** What is needed to tell cut-off crests, gathered piece by piece. */
 export interface FlatTops {

@@ -2,9 +2,9 @@ import type { AggregationRule } from '../aggregation/column-sums';
 import type { Phase } from '../../recording/phase';
 import { LINE_PHASES } from '../../recording/phase';
 import { ORDER_STRIDE } from '../intervals';
-import { phaseCurrents, phaseVoltages } from '../quality/fundamental-phasors';
+import type { Phasor } from '../phasor';
 import { sequenceComponents, unbalance } from '../sequence/sequence-components';
-import type { ChannelAnalysis, ChannelMapping, WaveformWindows } from '../waveform-analysis';
+import type { ChannelMapping, WaveformWindows } from '../waveform-analysis';
 
 /** One figure per interval that is followed over time, beside the levels by order. */
 export type ScalarMeasure =
@@ -89,45 +89,50 @@ function powerColumns(
 
 function unbalanceColumns(mappings: readonly ChannelMapping[]): ScalarColumn[] {
 	const columns: ScalarColumn[] = [];
-	const has = (quantity: 'voltage' | 'current', phases: readonly Phase[]) =>
-		phases.every((phase) => mappings.some((m) => m.quantity === quantity && m.phase === phase));
-	const toNeutral = has('voltage', LINE_PHASES);
-	const voltage = { phase: 'total', quantity: 'voltage', unit: '%', rule: 'rms' } as const;
-	if (toNeutral || has('voltage', ['L1L2', 'L2L3', 'L3L1'])) {
+	const positions = (quantity: 'voltage' | 'current', phases: readonly Phase[]) => {
+		const found = phases.map((phase) =>
+			mappings.findIndex((m) => m.quantity === quantity && m.phase === phase)
+		);
+		return found.includes(-1) ? null : found;
+	};
+	const toNeutral = positions('voltage', LINE_PHASES);
+	const lineToLine = positions('voltage', ['L1L2', 'L2L3', 'L3L1']);
+	const currents = positions('current', LINE_PHASES);
+	const common = { phase: 'total', unit: '%', rule: 'rms' } as const;
+	const voltages = toNeutral ?? lineToLine;
+	if (voltages) {
 		columns.push({
-			...voltage,
+			...common,
+			quantity: 'voltage',
 			measure: 'negative-sequence-voltage',
-			of: (span, w) => unbalanceOf(phaseVoltages(span.channels.map((c) => oneWindow(c, w)))).u2_pct
+			// Line-to-line voltages turn with those to neutral: the ratio of the sequences is the same.
+			of: (span, w) => unbalanceOf(span, voltages, w).u2_pct
 		});
 	}
 	if (toNeutral) {
 		columns.push({
-			...voltage,
+			...common,
+			quantity: 'voltage',
 			measure: 'zero-sequence-voltage',
-			of: (span, w) => unbalanceOf(phaseVoltages(span.channels.map((c) => oneWindow(c, w)))).u0_pct
+			of: (span, w) => unbalanceOf(span, toNeutral, w).u0_pct
 		});
 	}
-	if (has('current', LINE_PHASES)) {
+	if (currents) {
 		columns.push({
-			...voltage,
+			...common,
 			quantity: 'current',
 			measure: 'negative-sequence-current',
-			of: (span, w) => unbalanceOf(phaseCurrents(span.channels.map((c) => oneWindow(c, w)))).u2_pct
+			of: (span, w) => unbalanceOf(span, currents, w).u2_pct
 		});
 	}
 	return columns;
 }
 
-function unbalanceOf(phasors: ReturnType<typeof phaseVoltages>): { u2_pct: number; u0_pct: number } {
-	const { L1, L2, L3 } = phasors;
-	return L1 && L2 && L3 ? unbalance(sequenceComponents(L1, L2, L3)) : { u2_pct: NaN, u0_pct: NaN };
-}
-
-function oneWindow(channel: ChannelAnalysis, w: number): ChannelAnalysis {
-	return {
-		...channel,
-		rms: channel.rms.subarray(w, w + 1),
-		components: channel.components.subarray(w * ORDER_STRIDE, (w + 1) * ORDER_STRIDE),
-		phases_deg: channel.phases_deg.subarray(w * ORDER_STRIDE, (w + 1) * ORDER_STRIDE)
-	};
+function unbalanceOf(span: WaveformWindows, positions: readonly number[], w: number) {
+	const at = w * ORDER_STRIDE + 1;
+	const phasors = positions.map((m): Phasor => {
+		const { components, phases_deg } = span.channels[m]!;
+		return { rms: components[at]!, phase_deg: phases_deg[at]! };
+	});
+	return unbalance(sequenceComponents(phasors[0]!, phasors[1]!, phasors[2]!));
 }
