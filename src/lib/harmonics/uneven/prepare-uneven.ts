@@ -6,6 +6,7 @@ import { nominalFor, pairChannels, type PreparedCapture } from '../engine/prepar
 import { readStretch } from '../engine/read-stretch';
 import type { SegmentPlan } from '../engine/segment-plan';
 import { stretchDuration_s, type Stretch } from '../engine/stretches';
+import { MAX_ORDER } from '../intervals';
 import { chooseReferenceChannel, type ReferenceChannel } from '../reference-channel';
 import type { ChannelMapping, QualityRemark } from '../waveform-analysis';
 import { faithfulOrders, LEAST_RESPONSE, unevenSpectrumDesign, type FaithfulOrders } from './faithful-order';
@@ -151,11 +152,10 @@ function describeJoining(
 			`${microseconds(steps.longest_s)} µs, ${microseconds(steps.median_s)} µs at the median. Its samples are joined by ` +
 			`straight lines and the Fourier integral of these is taken exactly; nothing is corrected for what the lines cut ` +
 			`off. They take up to ${percent(lostOfFundamental)} % of the fundamental and ${percent(lostOfHighest)} % of order ` +
-			`${lowest < highest ? `${lowest} to ${highest}` : highest}, the highest given: above it more than ` +
-			`${percent(1 - LEAST_RESPONSE)} % of the reading could be lost` +
-			(highest === lowest && kept.every((k) => k.highest > highest)
-				? ', or no order is looked for.'
-				: ', and distortion is summed no further.')
+			(lowest === MAX_ORDER
+				? `${MAX_ORDER}, the highest that is looked for.`
+				: `${lowest < highest ? `${lowest} to ${highest}` : highest}, the highest given: above it more than ` +
+					`${percent(1 - LEAST_RESPONSE)} % of the reading could be lost. Distortion is summed no further.`)
 	};
 }
 
