@@ -185,8 +185,8 @@ describe('what cannot be analysed is said in a sentence', () => {
 		expect(outcome.ok).toBe(false);
 	});
 
-	it('no rate and uneven stamps', () => {
-		const recording = withStamps((n) => (n < 9000 ? n / 12800 : (n + 3) / 12800));
+	it('no rate, and stamps that stand still', () => {
+		const recording = withStamps(() => 0);
 		const outcome = analyseWaveform(recording, mapAll(recording), OPTIONS);
 		expect(outcome).toMatchObject({ ok: false, problem: { code: 'rate-not-known' } });
 	});
@@ -200,6 +200,26 @@ function withStamps(stamp_s: (n: number) => number): Recording {
 }
 
 describe('time bases', () => {
+	it('samples with uneven time stamps are analysed as they lie, not as if they were even', () => {
+		const stamp_s = (n: number) => (n + 0.3 * Math.sin(n)) / 12800 + (n < 9000 ? 0 : 3 / 12800);
+		const recording = withStamps(stamp_s);
+		const current = recording.channels[3]!.samples;
+		const turn = 2 * Math.PI * 50.03;
+		for (let n = 0; n < current.length; n++) {
+			const t = stamp_s(n);
+			current[n] = Math.SQRT2 * (100 * Math.cos(turn * t) + 20 * Math.cos(5 * turn * t + 1));
+		}
+		for (let n = 0; n < current.length; n++)
+			recording.channels[0]!.samples[n] = Math.SQRT2 * 230 * Math.cos(turn * stamp_s(n));
+		const analysis = analyse(recording, [mapAll(recording)[0]!, mapAll(recording)[3]!]);
+		expect(codes(analysis)).toContain('uneven-sampling');
+		for (let w = 0; w < analysis.windowCount; w++) {
+			// Straight lines between samples lower the fifth order by about 0.15 %.
+			const fifth = analysis.channels[1]!.subgroups[w * ORDER_STRIDE + 5]!;
+			expect(Math.abs(fifth - 20)).toBeLessThan(0.05);
+		}
+	});
+
 	it('takes the rate from even stamps, rounded to microseconds as they are', () => {
 		const analysis = analyse(withStamps((n) => Math.round((n / 12800) * 1e6) / 1e6));
 		expect(codes(analysis)).toContain('rate-inferred');

@@ -2,12 +2,14 @@ import { WindowAnalyst, type KernelFactory, type WindowBlock } from './engine/wi
 import { CaptureAssembly } from './engine/capture-assembly';
 import { joinSpans } from './engine/join-spans';
 import { prepareCapture, tooShortProblem, type PreparedCapture } from './engine/prepare-capture';
+import { isUnevenlySampled } from './engine/stretches';
 import { expectedWindowCount, windowTasks, type WindowTask } from './engine/window-tasks';
 import type { Phase, PhaseNames } from '../recording/phase';
 import type { Recording } from '../recording/recording';
 import { sourceOf, type CaptureSource } from '../recording/sample-source';
 import { err, ok, type Result } from '../result';
 import type { AnalysisProblem } from './analysis-problem';
+import { analyseUnevenCapture } from './uneven/analyse-uneven';
 import type { CaptureFindings, ChannelMapping, WaveformAnalysis, WaveformWindows } from './waveform-analysis';
 
 export interface AnalysisOptions {
@@ -70,7 +72,8 @@ export function* analyseWaveformSteps(
  *
  * Adjoining windows of N = 10 or 12 cycles of the measured fundamental; each is interpolated onto a power of two points
  * over exactly N cycles and transformed without a taper; lines are joined to subgroups and groups. Stretches of one rate
- * are analysed one by one, and the train of windows starts anew at every ten-minute tick of UTC.
+ * are analysed one by one, and the train of windows starts anew at every ten-minute tick of UTC. Captures whose time
+ * stamps do not lie on an even grid go the way of analyseUnevenCapture.
  *
  * onSpan   receives at most ten minutes of windows at a time, in order of time
  * returns  what holds for the whole capture, or a problem whose sentence says what is needed
@@ -83,6 +86,7 @@ export function* analyseCapture(
 	options: AnalysisOptions,
 	onSpan: (span: WaveformWindows) => void
 ): Generator<AnalysisStep, Result<CaptureFindings, AnalysisProblem>, void> {
+	if (isUnevenlySampled(source)) return yield* analyseUnevenCapture(source, mappings, options, onSpan);
 	const started = analysisRun(source, mappings, options, onSpan);
 	if (!started.ok) return started;
 	const run = started.value;
