@@ -2,6 +2,7 @@ import { WindowAnalyst, type KernelFactory, type WindowBlock } from './engine/wi
 import { CaptureAssembly } from './engine/capture-assembly';
 import { joinSpans } from './engine/join-spans';
 import { prepareCapture, tooShortProblem, type PreparedCapture } from './engine/prepare-capture';
+import { canMeasureFlicker, FlickerFollower, type ChannelFlicker } from './flicker/follow-flicker';
 import { isUnevenlySampled } from './engine/stretches';
 import { expectedWindowCount, windowTasks, type WindowTask } from './engine/window-tasks';
 import type { Phase, PhaseNames } from '../recording/phase';
@@ -122,9 +123,10 @@ export function analysisRun(
 	const prepared = preparation.value;
 	const total = expectedWindowCount(prepared);
 	const assembly = new CaptureAssembly(source, prepared, options);
+	const flicker: ChannelFlicker[] = [];
 	return ok({
 		prepared,
-		tasks: windowTasks(source, prepared, options.start_ms ?? null),
+		tasks: withFlicker(source, prepared, options, flicker),
 		accept(planIndex, block) {
 			const span = assembly.accept(planIndex, block);
 			if (span) onSpan(span);
@@ -133,11 +135,44 @@ export function analysisRun(
 		finish() {
 			const rest = assembly.takeSpan();
 			if (rest) onSpan(rest);
-			if (assembly.windowCount > 0) return ok(assembly.findings());
+			if (assembly.windowCount > 0) return ok(assembly.findings(flicker));
 			const { stretch } = prepared.plans[0]!;
 			return err(tooShortProblem(stretch, prepared.reference, prepared.cyclesPerWindow));
 		}
 	});
+}
+
+/** The tasks; between them the flicker of what they cover is followed, while others may be working on the windows. */
+function* withFlicker(
+	source: CaptureSource,
+	prepared: PreparedCapture,
+	{ start_ms, nominalVoltages_V }: AnalysisOptions,
+	found: ChannelFlicker[]
+): Generator<WindowTask, void, void> {
+	let at = -1;
+	let follower: FlickerFollower | null = null;
+	for (const task of windowTasks(source, prepared, start_ms ?? null)) {
+		if (task.planIndex !== at) {
+			found.push(...(follower?.finish() ?? []));
+			at = task.planIndex;
+			const { stretch } = prepared.plans[at]!;
+			follower =
+				start_ms !== undefined && canMeasureFlicker(stretch, start_ms)
+					? new FlickerFollower(
+							source,
+							prepared.mappings,
+							stretch,
+							prepared.nominalFrequency_Hz,
+							nominalVoltages_V ?? {},
+							start_ms
+						)
+					: null;
+		}
+		yield task;
+		const last = task.windows.at(-1)!;
+		follower?.advance(Math.floor(last.start + last.length));
+	}
+	found.push(...(follower?.finish() ?? []));
 }
 
 /** What an analyst of one stretch needs to know. */

@@ -1,5 +1,6 @@
 import type { Phase } from '../recording/phase';
 import type { CaptureEvent } from './flag-windows';
+import type { ChannelFlicker } from './flicker/follow-flicker';
 
 /** A channel as the engineer confirmed it: what it measures, on which conductor, and how to reach primary values. */
 export interface ChannelMapping {
@@ -101,6 +102,8 @@ export interface CaptureFindings {
 	whole: ChannelAnalysis[];
 	/** Dips, swells and interruptions; null when no nominal voltage was given and nothing could be looked for. */
 	events: CaptureEvent[] | null;
+	/** Voltages for which a ten-minute interval of the clock was filled; empty when there is none. */
+	flicker: ChannelFlicker[];
 	quality: QualityRemark[];
 }
 

@@ -3,6 +3,7 @@ import type { CaptureSource } from '../../recording/sample-source';
 import { inspectCapture } from '../capture-quality';
 import { ENGINE_VERSION } from '../engine-version';
 import { EventFlagging } from '../flag-windows';
+import type { ChannelFlicker } from '../flicker/follow-flicker';
 import { phasePower } from '../powers';
 import type { CaptureFindings, PhasePower, WaveformWindows } from '../waveform-analysis';
 import { joinChannels } from './channel-figures';
@@ -103,7 +104,7 @@ export class CaptureAssembly {
 	}
 
 	/** What holds for the capture as a whole, once every block was accepted. */
-	findings(): CaptureFindings {
+	findings(flicker: ChannelFlicker[] = []): CaptureFindings {
 		const { prepared, options } = this;
 		const whole = this.overall.channels();
 		const events = this.flagging.finish();
@@ -117,6 +118,7 @@ export class CaptureAssembly {
 			meanFrequency_Hz,
 			whole,
 			events,
+			flicker,
 			quality: [
 				...prepared.remarks,
 				...inspectCapture(this.source, {

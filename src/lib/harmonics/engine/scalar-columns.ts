@@ -16,7 +16,11 @@ export type ScalarMeasure =
 	| 'zero-sequence-voltage'
 	| 'negative-sequence-current'
 	| 'peak'
-	| 'dc';
+	| 'dc'
+	| FlickerMeasure;
+
+/** Flicker is not made of windows: it comes from a meter of its own, ten minutes and two hours at a time. */
+export type FlickerMeasure = 'short-term-flicker' | 'long-term-flicker' | 'greatest-flicker';
 
 export type ScalarPhase = Phase | 'total';
 
@@ -24,7 +28,7 @@ export interface ScalarColumn {
 	measure: ScalarMeasure;
 	phase: ScalarPhase;
 	quantity: 'voltage' | 'current' | 'power';
-	unit: 'W' | 'var' | 'VA' | '%' | 'V' | 'A';
+	unit: 'W' | 'var' | 'VA' | '%' | 'V' | 'A' | '1';
 	rule: AggregationRule;
 	/** Value of one window; NaN = no data. */
 	of: (span: WaveformWindows, window: number) => number;

@@ -103,7 +103,7 @@ export async function prepareWaveform(
 			quality: findings.quality,
 			samples: { sha256: samples.sha256, ...layOutSamples(source, mappings) }
 		},
-		last: aggregatePart(collector, findings.whole, {
+		last: aggregatePart(collector, findings, {
 			start_ms: start_ms + 1000 * seen.start_s,
 			length_s: seen.end_s - seen.start_s,
 			frequency_Hz: findings.meanFrequency_Hz

@@ -1,7 +1,9 @@
 import type { IntervalCollector, ScalarSeries } from '../../harmonics/engine/interval-collector';
 import { toWindowSeries } from '../../harmonics/interval-series';
 import type { IntervalSeries } from '../../harmonics/intervals';
-import type { ChannelAnalysis, WaveformWindows } from '../../harmonics/waveform-analysis';
+import type { FlickerMeasure } from '../../harmonics/engine/scalar-columns';
+import type { ChannelFlicker } from '../../harmonics/flicker/follow-flicker';
+import type { CaptureFindings, ChannelAnalysis, WaveformWindows } from '../../harmonics/waveform-analysis';
 import type { AnalysisPart, NewScalarRow, NewSeriesRow } from '../repositories/analyses.repository';
 import { encodeSeries, float32Buffer, float64ToBuffer } from './series-codec';
 
@@ -64,14 +66,60 @@ export function windowPart(
 	};
 }
 
+/** Pst and the greatest P_inst over ten minutes, Plt over two hours, per voltage. */
+function flickerRows(flicker: readonly ChannelFlicker[]): NewScalarRow[] {
+	const row = (
+		phase: ChannelFlicker['phase'],
+		measure: FlickerMeasure,
+		interval: '10min' | '2h',
+		values: readonly { start_ms: number; value: number }[]
+	) =>
+		scalarRow(
+			{
+				measure,
+				quantity: 'voltage',
+				phase,
+				unit: '1',
+				interval,
+				starts_ms: Float64Array.from(values, (one) => one.start_ms),
+				values: Float64Array.from(values, (one) => one.value)
+			},
+			0
+		);
+	return flicker.flatMap(({ phase, shortTerm, longTerm }) => [
+		row(
+			phase,
+			'short-term-flicker',
+			'10min',
+			shortTerm.map(({ start_ms, pst }) => ({ start_ms, value: pst }))
+		),
+		row(
+			phase,
+			'greatest-flicker',
+			'10min',
+			shortTerm.map(({ start_ms, pInstMax }) => ({ start_ms, value: pInstMax }))
+		),
+		...(longTerm.length > 0
+			? [
+					row(
+						phase,
+						'long-term-flicker',
+						'2h',
+						longTerm.map(({ start_ms, plt }) => ({ start_ms, value: plt }))
+					)
+				]
+			: [])
+	]);
+}
+
 /** The aggregates of a capture, as far as it fills any, and the capture as one row. */
 export function aggregatePart(
 	collector: IntervalCollector,
-	whole: readonly ChannelAnalysis[],
+	{ whole, flicker }: Pick<CaptureFindings, 'whole' | 'flicker'>,
 	span: { start_ms: number; length_s: number; frequency_Hz: number }
 ): AnalysisPart {
 	const series: NewSeriesRow[] = [];
-	const scalars: NewScalarRow[] = [];
+	const scalars: NewScalarRow[] = flickerRows(flicker);
 	for (const interval of ['3s', '10min', '2h'] as const) {
 		collector.series(interval).forEach((one, i) => {
 			if (one.starts_ms.length === 0) return;

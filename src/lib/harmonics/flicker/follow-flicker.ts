@@ -1,0 +1,104 @@
+import type { Phase } from '../../recording/phase';
+import type { CaptureSource } from '../../recording/sample-source';
+import { viewChannel, type ChannelView } from '../engine/channel-view';
+import type { Stretch } from '../engine/stretches';
+import type { ChannelMapping } from '../waveform-analysis';
+import { Flickermeter, longTermIntervals, SETTLING_S, type FlickerInterval } from './flickermeter';
+import type { Lamp } from './perception-filters';
+
+/** Flicker of one voltage of a capture. */
+export interface ChannelFlicker {
+	channelIndex: number;
+	phase: Phase;
+	shortTerm: FlickerInterval[];
+	longTerm: { start_ms: number; plt: number }[];
+}
+
+/** Lowest sampling rate that carries what the meter looks at (common practice). */
+const LEAST_RATE_HZ = 2000;
+const TEN_MINUTES_S = 600;
+/** Samples taken at a time. */
+const PIECE = 1 << 16;
+/** Between these two the lamp of 120 V is the nearer one; a point of another level takes that of its frequency. */
+const LOW_VOLTAGE_V = { lamp120: [90, 170], lamp230: [180, 280] } as const;
+
+/** Runs a flickermeter over every voltage of one stretch, as far as somebody asks. */
+export class FlickerFollower {
+	private readonly meters: {
+		mapping: ChannelMapping;
+		meter: Flickermeter;
+		view: ChannelView;
+		out: ChannelFlicker;
+	}[];
+	private done: number;
+
+	constructor(
+		source: CaptureSource,
+		mappings: readonly ChannelMapping[],
+		private readonly stretch: Stretch,
+		nominalFrequency_Hz: 50 | 60,
+		nominalVoltages_V: Partial<Record<Phase, number>>,
+		start_ms: number
+	) {
+		this.done = stretch.fromSample;
+		this.meters = mappings
+			.filter((mapping) => mapping.quantity === 'voltage' && mapping.phase !== 'N')
+			.map((mapping) => {
+				const { channelIndex, phase } = mapping;
+				const out: ChannelFlicker = { channelIndex, phase, shortTerm: [], longTerm: [] };
+				const meter = new Flickermeter({
+					samplingRate_Hz: stretch.samplingRate_Hz,
+					nominalFrequency_Hz,
+					lamp: lampFor(nominalFrequency_Hz, nominalVoltages_V.L1 ?? nominalVoltages_V[phase] ?? null),
+					start_ms: start_ms + 1000 * stretch.offset_s,
+					onInterval: (interval) => out.shortTerm.push(interval)
+				});
+				return { mapping, meter, view: viewChannel(source, channelIndex, PIECE), out };
+			});
+	}
+
+	/** Takes the samples up to `sample`, exclusive. */
+	advance(sample: number): void {
+		const to = Math.min(sample, this.stretch.toSample);
+		for (let from = this.done; from < to; from += PIECE) {
+			const end = Math.min(to, from + PIECE);
+			for (const { meter, view } of this.meters) {
+				view.cover(from, end);
+				meter.push(view.samples, from - view.base, end - view.base);
+			}
+		}
+		this.done = Math.max(this.done, to);
+	}
+
+	/** Takes what is left, and tells the voltages that have a value. */
+	finish(): ChannelFlicker[] {
+		this.advance(this.stretch.toSample);
+		return this.meters.flatMap(({ meter, out }) => {
+			meter.finish();
+			return out.shortTerm.length > 0 ? [{ ...out, longTerm: longTermIntervals(out.shortTerm) }] : [];
+		});
+	}
+}
+
+/** Whether a stretch may fill a ten-minute interval of the clock, what the meter needs to settle left aside. */
+export function canMeasureFlicker(
+	{ samplingRate_Hz, fromSample, toSample, offset_s }: Stretch,
+	start_ms: number
+): boolean {
+	if (samplingRate_Hz < LEAST_RATE_HZ) return false;
+	const start_s = start_ms / 1000 + offset_s + SETTLING_S;
+	const end_s = start_ms / 1000 + offset_s + (toSample - fromSample) / samplingRate_Hz;
+	const tick_s = Math.floor(start_s / TEN_MINUTES_S) * TEN_MINUTES_S;
+	// The interval that the start lies in, or the one after it; the meter itself decides how much of it is enough.
+	return [tick_s, tick_s + TEN_MINUTES_S].some(
+		(from_s) => Math.min(end_s, from_s + TEN_MINUTES_S) - Math.max(start_s, from_s) >= 0.95 * TEN_MINUTES_S
+	);
+}
+
+function lampFor(nominalFrequency_Hz: 50 | 60, lineToNeutral_V: number | null): Lamp {
+	const within = ([from, to]: readonly [number, number]) =>
+		lineToNeutral_V !== null && lineToNeutral_V >= from && lineToNeutral_V <= to;
+	if (within(LOW_VOLTAGE_V.lamp120)) return '120 V';
+	if (within(LOW_VOLTAGE_V.lamp230)) return '230 V';
+	return nominalFrequency_Hz === 60 ? '120 V' : '230 V';
+}
