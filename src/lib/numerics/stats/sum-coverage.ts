@@ -6,7 +6,7 @@ export type SumPart =
 
 /** Terms of the series; the slowest sum, a lone rectangle, is then right to 1e-4. */
 const TERMS = 4000;
-/** Terms whose characteristic function has fallen below this change nothing any more. */
+/** Once a characteristic function that only falls is below this, no further term changes anything. */
 const NEGLIGIBLE = 1e-12;
 /** Nodes over the spread of a sample variance. */
 const VARIANCE_NODES = 160;
@@ -82,12 +82,15 @@ export function coverageOfSum(parts: readonly SumPart[], bound: number): number 
 	const reach = counted.reduce((sum, part) => sum + reachOf(part), 0);
 	if (bound >= reach) return 1;
 	const functions = counted.map(characteristicOf);
+	const falling = functions.filter(
+		(_, i) => counted[i]!.shape === 'normal' || counted[i]!.shape === 'student'
+	);
 	let sum = bound / reach;
 	for (let n = 1; n <= TERMS; n++) {
 		const t = (n * Math.PI) / reach;
 		const product = functions.reduce((value, characteristic) => value * characteristic(t), 1);
 		sum += (2 / (n * Math.PI)) * product * Math.sin(t * bound);
-		if (functions.every((characteristic) => Math.abs(characteristic(t)) < NEGLIGIBLE)) break;
+		if (falling.some((characteristic) => characteristic(t) < NEGLIGIBLE)) break;
 	}
 	return Math.min(1, Math.max(0, sum));
 }
