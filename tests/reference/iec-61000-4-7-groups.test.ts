@@ -1,7 +1,6 @@
 import { describe, expect, it } from 'vitest';
-import { harmonicGroup } from '$lib/harmonics/harmonic-group';
-import { harmonicSubgroup } from '$lib/harmonics/harmonic-subgroup';
-import { interharmonicCentredSubgroup, interharmonicGroup } from '$lib/harmonics/interharmonics';
+import { joinLines, type GroupRows } from '$lib/harmonics/line-groups';
+import { ORDER_STRIDE } from '$lib/harmonics/intervals';
 import { executeRealDft, planRealDft } from '$lib/numerics/dft/real-dft';
 import { readLineRms } from '$lib/numerics/dft/spectral-lines';
 
@@ -27,7 +26,19 @@ function linesOf(tones: [number, number, number][]): Float64Array {
 	return lines;
 }
 
-const squaresOf = (lines: Float64Array) => lines.map((line) => line * line);
+function rowsOf(lines: Float64Array, cycles: 10 | 12): GroupRows {
+	const row = () => new Float64Array(ORDER_STRIDE).fill(NaN);
+	const rows = {
+		components: row(),
+		subgroups: row(),
+		groups: row(),
+		interharmonicSubgroups: row(),
+		interharmonicGroups: row()
+	};
+	const squares = lines.map((line) => line * line);
+	joinLines(squares, cycles, 50, true, rows, 0);
+	return rows;
+}
 
 interface Figures {
 	component: number;
@@ -38,13 +49,13 @@ interface Figures {
 }
 
 function expectFigures(lines: Float64Array, order: number, cycles: 10 | 12, expected: Figures): void {
-	const line = order * cycles;
+	const rows = rowsOf(lines, cycles);
 	const close = (actual: number, figure: number) => expect(Math.abs(actual - figure)).toBeLessThan(1e-8);
-	close(lines[line]!, expected.component);
-	close(harmonicSubgroup(squaresOf(lines), line), expected.subgroup);
-	close(harmonicGroup(squaresOf(lines), line, cycles), expected.group);
-	close(interharmonicGroup(squaresOf(lines), line, cycles), expected.interharmonicGroup);
-	close(interharmonicCentredSubgroup(squaresOf(lines), line, cycles), expected.centredSubgroup);
+	close(rows.components[order]!, expected.component);
+	close(rows.subgroups[order]!, expected.subgroup);
+	close(rows.groups[order]!, expected.group);
+	close(rows.interharmonicGroups[order]!, expected.interharmonicGroup);
+	close(rows.interharmonicSubgroups[order]!, expected.centredSubgroup);
 }
 
 describe('groups and subgroups of IEC 61000-4-7', () => {
@@ -116,6 +127,20 @@ describe('groups and subgroups of IEC 61000-4-7', () => {
 		});
 	});
 
+	it('tiles the axis with subgroups and centred subgroups, and ends where the band does', () => {
+		const squares = Float64Array.from({ length: 511 }, (_, k) => 1 + ((k * 7919) % 101));
+		const rows = rowsOf(squares.map(Math.sqrt), 10);
+		const sum = (values: Float64Array, from: number, to: number) =>
+			values.slice(from, to + 1).reduce((total, value) => total + value * value, 0);
+		const lines = squares.slice(2, 500).reduce((total, square) => total + square, 0);
+		const tiled = sum(rows.subgroups, 1, 49) + sum(rows.interharmonicSubgroups, 0, 49) + squares[499]!;
+		expect(Math.abs(tiled / lines - 1)).toBeLessThan(1e-12);
+		const short = rowsOf(squares.map(Math.sqrt), 10);
+		joinLines(squares, 10, 20, false, { ...short, groups: short.groups.fill(NaN) }, 0);
+		expect(short.groups[19]).not.toBeNaN();
+		expect(short.groups[20]).toBeNaN();
+	});
+
 	// What happens without synchronisation; a pure sine has to read zero distortion (leakage of the DFT, computed).
 	it.each([
 		[50.015, 229.962097692, 0.0557680871422, 0.0970106098888],
@@ -123,15 +148,16 @@ describe('groups and subgroups of IEC 61000-4-7', () => {
 		[49.5, 227.135507191, 1.76009336476, 3.03138304067]
 	])('a fixed window on %d Hz reads false distortion', (frequency_Hz, fundamental, thd_pct, thds_pct) => {
 		const lines = linesOf([[frequency_Hz, 230, 0]]);
+		const rows = rowsOf(lines, 10);
 		let components = 0;
 		let subgroups = 0;
 		for (let order = 2; order <= 40; order++) {
-			components += lines[order * 10]! ** 2;
-			subgroups += harmonicSubgroup(squaresOf(lines), order * 10) ** 2;
+			components += rows.components[order]! ** 2;
+			subgroups += rows.subgroups[order]! ** 2;
 		}
 		expect(Math.abs(lines[10]! - fundamental)).toBeLessThan(1e-6);
 		expect(Math.abs((100 * Math.sqrt(components)) / lines[10]! - thd_pct)).toBeLessThan(1e-8);
-		const false_pct = (100 * Math.sqrt(subgroups)) / harmonicSubgroup(squaresOf(lines), 10);
+		const false_pct = (100 * Math.sqrt(subgroups)) / rows.subgroups[1]!;
 		expect(Math.abs(false_pct - thds_pct)).toBeLessThan(1e-8);
 	});
 });

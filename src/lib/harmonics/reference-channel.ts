@@ -41,17 +41,11 @@ export function chooseReferenceChannel(
 	mappings: readonly ChannelMapping[],
 	stretch: Stretch
 ): Result<ReferenceChannel, AnalysisProblem> {
-	const loudest = loudestPlaces(
-		source,
-		mappings.map((m) => m.channelIndex),
-		stretch
-	);
-	const candidates: Candidate[] = [];
-	mappings.forEach((mapping, m) => {
-		const peak = fundamentalPeak(loudest[m] ?? null, stretch.samplingRate_Hz);
-		if (peak) candidates.push({ mapping, peak, strength: peak.rms * Math.abs(mapping.toPrimary) });
-	});
-	const chosen = chooseVoltage(candidates) ?? strongest(candidates);
+	const voltages = mappings.filter((m) => m.quantity === 'voltage');
+	const currents = mappings.filter((m) => m.quantity === 'current');
+	const chosen =
+		chooseVoltage(candidatesAmong(source, voltages, stretch)) ??
+		strongest(candidatesAmong(source, currents, stretch));
 	if (!chosen) {
 		return err({
 			code: 'no-fundamental',
@@ -64,8 +58,21 @@ export function chooseReferenceChannel(
 	return ok({ channelIndex: chosen.mapping.channelIndex, frequency_Hz: chosen.peak.frequency_Hz });
 }
 
-function chooseVoltage(candidates: readonly Candidate[]): Candidate | null {
-	const voltages = candidates.filter((c) => c.mapping.quantity === 'voltage');
+/** Those of some channels that carry a fundamental. */
+function candidatesAmong(
+	source: CaptureSource,
+	mappings: readonly ChannelMapping[],
+	stretch: Stretch
+): Candidate[] {
+	const indexes = mappings.map((m) => m.channelIndex);
+	const loudest = indexes.length > 0 ? loudestPlaces(source, indexes, stretch) : [];
+	return mappings.flatMap((mapping, m) => {
+		const peak = fundamentalPeak(loudest[m] ?? null, stretch.samplingRate_Hz);
+		return peak ? [{ mapping, peak, strength: peak.rms * Math.abs(mapping.toPrimary) }] : [];
+	});
+}
+
+function chooseVoltage(voltages: readonly Candidate[]): Candidate | null {
 	const best = strongest(voltages);
 	if (!best) return null;
 	const strongEnough = voltages.filter((c) => c.strength >= LEAST_OF_STRONGEST * best.strength);

@@ -4,8 +4,7 @@ import { inspectCapture } from '../capture-quality';
 import { ENGINE_VERSION } from '../engine-version';
 import { EventFlagging } from '../flag-windows';
 import type { ChannelFlicker } from '../flicker/follow-flicker';
-import { phasePower } from '../powers';
-import type { CaptureFindings, PhasePower, WaveformWindows } from '../waveform-analysis';
+import type { CaptureFindings, WaveformWindows } from '../waveform-analysis';
 import { joinChannels } from './channel-figures';
 import { joinPowers } from './join-spans';
 import { joinFlatTops, noFlatTops } from './flat-tops';
@@ -25,7 +24,7 @@ const MOST_WINDOWS_PER_SPAN = 3100;
 /** Collects blocks in order of time and hands on spans of windows; what holds for the whole capture stays. */
 export class CaptureAssembly {
 	windowCount = 0;
-	private blocks: (WindowBlock & { planIndex: number; powers: PhasePower[]; flagged: Uint8Array })[] = [];
+	private blocks: (WindowBlock & { planIndex: number; flagged: Uint8Array })[] = [];
 	private readonly overall: OverallFigures;
 	private readonly flagging: EventFlagging;
 	private readonly flatTops;
@@ -49,7 +48,6 @@ export class CaptureAssembly {
 
 	/** Takes the next block; returns a span when one is full. */
 	accept(planIndex: number, block: WindowBlock): WaveformWindows | null {
-		const { pairs } = this.prepared;
 		const before = this.blocks;
 		const full =
 			before.length > 0 &&
@@ -57,9 +55,6 @@ export class CaptureAssembly {
 		const span = full ? this.takeSpan() : null;
 		const { stretch } = this.prepared.plans[planIndex]!;
 		const flagged = this.flagging.accept(block, stretch);
-		const powers = pairs.map(({ voltage, current }, p) =>
-			phasePower(block.channels[voltage]!, block.channels[current]!, block.products_W[p]!)
-		);
 		this.overall.accept(block, flagged, stretch.samplingRate_Hz);
 		block.channels.forEach((channel, m) => {
 			this.flatTops[m] = joinFlatTops(this.flatTops[m]!, block.flatTops[m]!);
@@ -71,7 +66,7 @@ export class CaptureAssembly {
 			this.used_s += window.length / stretch.samplingRate_Hz;
 		}
 		this.windowCount += block.windows.length;
-		this.blocks.push({ ...block, planIndex, powers, flagged });
+		this.blocks.push({ ...block, planIndex, flagged });
 		return span;
 	}
 

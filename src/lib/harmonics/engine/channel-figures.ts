@@ -1,8 +1,6 @@
 import type { SourceChannel } from '../../recording/sample-source';
 import { thd_pctOfFundamental } from '../distortion';
-import { harmonicGroup } from '../harmonic-group';
-import { harmonicSubgroup } from '../harmonic-subgroup';
-import { interharmonicCentredSubgroup, interharmonicGroup } from '../interharmonics';
+import { joinLines } from '../line-groups';
 import { ORDER_STRIDE } from '../intervals';
 import { wrapDegrees } from '../phasor';
 import type { ChannelAnalysis, ChannelMapping } from '../waveform-analysis';
@@ -100,22 +98,11 @@ export function fillWindow(
 	channel.rms[row] = levels.rms * size;
 	channel.peak[row] = levels.peak * size;
 	channel.dc[row] = mean;
-	channel.components[at] = Math.abs(mean);
-	channel.subgroups[at] = Math.abs(mean);
-	channel.interharmonicSubgroups[at] = interharmonicCentredSubgroup(squares, 0, cyclesPerWindow);
-	channel.interharmonicGroups[at] = interharmonicGroup(squares, 0, cyclesPerWindow);
-	const { components, subgroups, groups, interharmonicSubgroups, interharmonicGroups, phases_deg } = channel;
+	joinLines(squares, cyclesPerWindow, highestOrder, design.reachesBeyondHighest, channel, at);
+	const { phases_deg } = channel;
 	for (let order = 1; order <= highestOrder; order++) {
-		const line = order * cyclesPerWindow;
-		components[at + order] = Math.sqrt(squares[line]!);
-		subgroups[at + order] = harmonicSubgroup(squares, line);
-		const angle_rad = Math.atan2(spectrum[2 * line + 1]!, spectrum[2 * line]!) + turned;
-		phases_deg[at + order] = (angle_rad * 180) / Math.PI;
-		// Lines half an order up, and all up to the next order, have to be inside the usable band as well.
-		if (order === highestOrder && !design.reachesBeyondHighest) break;
-		groups[at + order] = harmonicGroup(squares, line, cyclesPerWindow);
-		interharmonicSubgroups[at + order] = interharmonicCentredSubgroup(squares, line, cyclesPerWindow);
-		interharmonicGroups[at + order] = interharmonicGroup(squares, line, cyclesPerWindow);
+		const line = 2 * order * cyclesPerWindow;
+		phases_deg[at + order] = ((Math.atan2(spectrum[line + 1]!, spectrum[line]!) + turned) * 180) / Math.PI;
 	}
 	channel.thd_pctOfFundamental[row] = thd_pctOfFundamental(
 		channel.subgroups.subarray(at, at + ORDER_STRIDE),

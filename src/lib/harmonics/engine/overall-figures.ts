@@ -1,4 +1,4 @@
-import type { CaptureSource } from '../../recording/sample-source';
+import type { RecordingFrame } from '../../recording/sample-source';
 import { thd_pctOfFundamental } from '../distortion';
 import { MAX_ORDER, ORDER_STRIDE } from '../intervals';
 import type { ChannelAnalysis, ChannelMapping } from '../waveform-analysis';
@@ -16,43 +16,72 @@ const LEVELS = [
 
 type Level = (typeof LEVELS)[number];
 
-/** Running sums of one channel. */
-class ChannelSums {
-	count = 0;
-	square = 0;
-	dc = 0;
-	peak = 0;
+/** Running sums of one channel over windows with data. Plain data: it crosses to other threads. */
+export interface ChannelSums {
+	count: number;
+	square: number;
+	dc: number;
+	peak: number;
 	/** Per level and order: sum of squares, and number of windows that had the order. */
-	readonly squares = sumsFor(LEVELS);
-	readonly counts = sumsFor(LEVELS);
+	squares: Record<Level, Float64Array>;
+	counts: Record<Level, Float64Array>;
 	/** Per order: sum of the phasors. */
-	readonly re = new Float64Array(ORDER_STRIDE);
-	readonly im = new Float64Array(ORDER_STRIDE);
+	re: Float64Array;
+	im: Float64Array;
+}
 
-	add(channel: ChannelAnalysis, w: number): void {
-		const rms = channel.rms[w]!;
-		if (Number.isNaN(rms)) return;
-		this.count++;
-		this.square += rms * rms;
-		this.dc += channel.dc[w]!;
-		this.peak = Math.max(this.peak, channel.peak[w]!);
-		const at = w * ORDER_STRIDE;
-		for (const level of LEVELS) addSquares(this.squares[level], this.counts[level], channel[level], at);
-		for (let order = 1; order < ORDER_STRIDE; order++) {
-			const value = channel.components[at + order]!;
-			const angle = (channel.phases_deg[at + order]! * Math.PI) / 180;
-			if (Number.isNaN(value) || Number.isNaN(angle)) continue;
-			this.re[order]! += value * Math.cos(angle);
-			this.im[order]! += value * Math.sin(angle);
-		}
+export function noSums(): ChannelSums {
+	const rows = () =>
+		Object.fromEntries(LEVELS.map((level) => [level, new Float64Array(ORDER_STRIDE)])) as Record<
+			Level,
+			Float64Array
+		>;
+	return {
+		count: 0,
+		square: 0,
+		dc: 0,
+		peak: 0,
+		squares: rows(),
+		counts: rows(),
+		re: new Float64Array(ORDER_STRIDE),
+		im: new Float64Array(ORDER_STRIDE)
+	};
+}
+
+/** Adds window `w` of a channel; one without data adds nothing. */
+export function addWindow(sums: ChannelSums, channel: ChannelAnalysis, w: number): void {
+	const rms = channel.rms[w]!;
+	if (Number.isNaN(rms)) return;
+	sums.count++;
+	sums.square += rms * rms;
+	sums.dc += channel.dc[w]!;
+	sums.peak = Math.max(sums.peak, channel.peak[w]!);
+	const at = w * ORDER_STRIDE;
+	for (const level of LEVELS) addSquares(sums.squares[level], sums.counts[level], channel[level], at);
+	for (let order = 1; order < ORDER_STRIDE; order++) {
+		const value = channel.components[at + order]!;
+		const angle = (channel.phases_deg[at + order]! * Math.PI) / 180;
+		if (Number.isNaN(value) || Number.isNaN(angle)) continue;
+		sums.re[order]! += value * Math.cos(angle);
+		sums.im[order]! += value * Math.sin(angle);
 	}
 }
 
-function sumsFor(levels: readonly Level[]): Record<Level, Float64Array> {
-	return Object.fromEntries(levels.map((level) => [level, new Float64Array(ORDER_STRIDE)])) as Record<
-		Level,
-		Float64Array
-	>;
+function addSums(sums: ChannelSums, more: ChannelSums): void {
+	sums.count += more.count;
+	sums.square += more.square;
+	sums.dc += more.dc;
+	sums.peak = Math.max(sums.peak, more.peak);
+	for (const level of LEVELS) {
+		addRow(sums.squares[level], more.squares[level]);
+		addRow(sums.counts[level], more.counts[level]);
+	}
+	addRow(sums.re, more.re);
+	addRow(sums.im, more.im);
+}
+
+function addRow(row: Float64Array, more: Float64Array): void {
+	for (let order = 0; order < ORDER_STRIDE; order++) row[order]! += more[order]!;
 }
 
 function addSquares(squares: Float64Array, counts: Float64Array, values: Float64Array, at: number): void {
@@ -75,21 +104,27 @@ export class OverallFigures {
 	private frequencyCount = 0;
 
 	constructor(
-		private readonly source: CaptureSource,
+		private readonly source: RecordingFrame,
 		private readonly mappings: readonly ChannelMapping[]
 	) {
-		this.unflagged = mappings.map(() => new ChannelSums());
-		this.flagged = mappings.map(() => new ChannelSums());
+		this.unflagged = mappings.map(noSums);
+		this.flagged = mappings.map(noSums);
 	}
 
+	/** A block without flags, as most are, brings its sums with it; in others each window goes where its flag says. */
 	accept(block: WindowBlock, flagged: Uint8Array, samplingRate_Hz: number): void {
-		block.windows.forEach((window, w) => {
-			const sums = flagged[w] ? this.flagged : this.unflagged;
-			block.channels.forEach((channel, m) => sums[m]!.add(channel, w));
-			if (!window.measured) return;
+		if (!flagged.includes(1)) block.sums.forEach((sums, m) => addSums(this.unflagged[m]!, sums));
+		else {
+			block.windows.forEach((_, w) => {
+				const sums = flagged[w] ? this.flagged : this.unflagged;
+				block.channels.forEach((channel, m) => addWindow(sums[m]!, channel, w));
+			});
+		}
+		for (const window of block.windows) {
+			if (!window.measured) continue;
 			this.frequencySum += window.frequency * samplingRate_Hz;
 			this.frequencyCount++;
-		});
+		}
 	}
 
 	meanFrequency_Hz(): number | null {

@@ -4,11 +4,12 @@ import { squaresAtEnds } from '../../numerics/stats/windowed-rms';
 import type { CaptureSource } from '../../recording/sample-source';
 import { createHalfCycles, measureHalfCycles, type HalfCycles } from '../events/half-cycle-rms';
 import { ORDER_STRIDE } from '../intervals';
-import { meanProduct } from '../powers';
-import type { ChannelAnalysis, ChannelMapping } from '../waveform-analysis';
+import { meanProduct, phasePower } from '../powers';
+import type { ChannelAnalysis, ChannelMapping, PhasePower } from '../waveform-analysis';
 import type { TrackedWindow } from '../window-tracker';
 import { emptyChannel, fillWindow, referPhases } from './channel-figures';
 import { addPiece, addResolution, noFlatTops, type FlatTops } from './flat-tops';
+import { addWindow, noSums, type ChannelSums } from './overall-figures';
 import { SampleFeed } from './sample-feed';
 import { kernelShapeFor, type SegmentPlan } from './segment-plan';
 
@@ -17,8 +18,10 @@ export interface WindowBlock {
 	windows: TrackedWindow[];
 	/** One per mapping, in its order. */
 	channels: ChannelAnalysis[];
-	/** Per pair of voltage and current: mean of u·i of each window, W; NaN where either has no data. */
-	products_W: Float64Array[];
+	/** Per pair of voltage and current. */
+	powers: PhasePower[];
+	/** Per mapping: sums over all windows of the block. */
+	sums: ChannelSums[];
 	/** Per mapping: Urms(1/2) of voltages in primary volts; null for currents. */
 	halfCycles: (HalfCycleRows | null)[];
 	/** Per mapping. */
@@ -71,18 +74,26 @@ export class WindowAnalyst {
 		const block: WindowBlock = {
 			windows: [...windows],
 			channels: mappings.map((m) => emptyChannel(this.source.channels[m.channelIndex]!, m, windows.length)),
-			products_W: pairs.map(() => new Float64Array(windows.length).fill(NaN)),
+			powers: [],
+			sums: mappings.map(noSums),
 			halfCycles: mappings.map((m) =>
 				m.quantity === 'voltage' ? emptyHalfCycles(windows.length, plan.cyclesPerWindow) : null
 			),
 			flatTops: mappings.map(noFlatTops),
 			missingSamples: mappings.map(() => 0)
 		};
-		windows.forEach((window, row) => this.addWindow(block, window, row));
+		const products_W = pairs.map(() => new Float64Array(windows.length).fill(NaN));
+		windows.forEach((window, row) => this.addWindow(block, products_W, window, row));
+		completeBlock(block, pairs, products_W);
 		return block;
 	}
 
-	private addWindow(block: WindowBlock, window: TrackedWindow, row: number): void {
+	private addWindow(
+		block: WindowBlock,
+		products_W: Float64Array[],
+		window: TrackedWindow,
+		row: number
+	): void {
 		const { plan, mappings, reference, pairs } = this.setup;
 		const { spectrum, cyclesPerWindow, stretch } = plan;
 		const { kernels, feed } = this;
@@ -111,7 +122,7 @@ export class WindowAnalyst {
 				spectrum.lineCount,
 				spectrum.points
 			);
-			block.products_W[p]![row] = product * mappings[voltage]!.toPrimary * mappings[current]!.toPrimary;
+			products_W[p]![row] = product * mappings[voltage]!.toPrimary * mappings[current]!.toPrimary;
 		});
 	}
 
@@ -155,6 +166,20 @@ export class WindowAnalyst {
 		rows.first[row] = half.first;
 		for (let k = 0; k < half.rms.length; k++) rows.rms[row * half.rms.length + k] = half.rms[k]! * size;
 	}
+}
+
+/** What follows from the channels of a block once all their windows are there: powers of the pairs, and sums. */
+export function completeBlock(
+	block: WindowBlock,
+	pairs: readonly { voltage: number; current: number }[],
+	products_W: readonly Float64Array[]
+): void {
+	block.powers = pairs.map(({ voltage, current }, p) =>
+		phasePower(block.channels[voltage]!, block.channels[current]!, products_W[p]!)
+	);
+	block.channels.forEach((channel, m) => {
+		for (let w = 0; w < block.windows.length; w++) addWindow(block.sums[m]!, channel, w);
+	});
 }
 
 function countMissing(samples: Float64Array, from: number, to: number): number {

@@ -10,8 +10,8 @@ export interface WindowTask {
 	windows: TrackedWindow[];
 }
 
-/** Windows in one task: about fifteen seconds. */
-const WINDOWS_PER_TASK = 75;
+/** Windows in one task: about ten seconds. */
+const WINDOWS_PER_TASK = 50;
 const TEN_MINUTES_MS = 600_000;
 
 /**

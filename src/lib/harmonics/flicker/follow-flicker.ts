@@ -1,6 +1,6 @@
 import type { Phase } from '../../recording/phase';
 import type { CaptureSource } from '../../recording/sample-source';
-import { viewChannel, type ChannelView } from '../engine/channel-view';
+import { viewChannels, type ChannelsView } from '../engine/channel-view';
 import type { Stretch } from '../engine/stretches';
 import type { ChannelMapping } from '../waveform-analysis';
 import { Flickermeter, longTermIntervals, SETTLING_S, type FlickerInterval } from './flickermeter';
@@ -18,18 +18,14 @@ export interface ChannelFlicker {
 const LEAST_RATE_HZ = 2000;
 const TEN_MINUTES_S = 600;
 /** Samples taken at a time. */
-const PIECE = 1 << 16;
+const PIECE = 1 << 14;
 /** Between these two the lamp of 120 V is the nearer one; a point of another level takes that of its frequency. */
 const LOW_VOLTAGE_V = { lamp120: [90, 170], lamp230: [180, 280] } as const;
 
 /** Runs a flickermeter over every voltage of one stretch, as far as somebody asks. */
 export class FlickerFollower {
-	private readonly meters: {
-		mapping: ChannelMapping;
-		meter: Flickermeter;
-		view: ChannelView;
-		out: ChannelFlicker;
-	}[];
+	private readonly meters: { meter: Flickermeter; out: ChannelFlicker }[];
+	private readonly view: ChannelsView;
 	private done: number;
 
 	constructor(
@@ -41,20 +37,23 @@ export class FlickerFollower {
 		start_ms: number
 	) {
 		this.done = stretch.fromSample;
-		this.meters = mappings
-			.filter((mapping) => mapping.quantity === 'voltage' && mapping.phase !== 'N')
-			.map((mapping) => {
-				const { channelIndex, phase } = mapping;
-				const out: ChannelFlicker = { channelIndex, phase, shortTerm: [], longTerm: [] };
-				const meter = new Flickermeter({
-					samplingRate_Hz: stretch.samplingRate_Hz,
-					nominalFrequency_Hz,
-					lamp: lampFor(nominalFrequency_Hz, nominalVoltages_V.L1 ?? nominalVoltages_V[phase] ?? null),
-					start_ms: start_ms + 1000 * stretch.offset_s,
-					onInterval: (interval) => out.shortTerm.push(interval)
-				});
-				return { mapping, meter, view: viewChannel(source, channelIndex, PIECE), out };
+		const voltages = mappings.filter(({ quantity, phase }) => quantity === 'voltage' && phase !== 'N');
+		this.view = viewChannels(
+			source,
+			voltages.map(({ channelIndex }) => channelIndex),
+			PIECE
+		);
+		this.meters = voltages.map(({ channelIndex, phase }) => {
+			const out: ChannelFlicker = { channelIndex, phase, shortTerm: [], longTerm: [] };
+			const meter = new Flickermeter({
+				samplingRate_Hz: stretch.samplingRate_Hz,
+				nominalFrequency_Hz,
+				lamp: lampFor(nominalFrequency_Hz, nominalVoltages_V.L1 ?? nominalVoltages_V[phase] ?? null),
+				start_ms: start_ms + 1000 * stretch.offset_s,
+				onInterval: (interval) => out.shortTerm.push(interval)
 			});
+			return { meter, out };
+		});
 	}
 
 	/** Takes the samples up to `sample`, exclusive. */
@@ -62,10 +61,9 @@ export class FlickerFollower {
 		const to = Math.min(sample, this.stretch.toSample);
 		for (let from = this.done; from < to; from += PIECE) {
 			const end = Math.min(to, from + PIECE);
-			for (const { meter, view } of this.meters) {
-				view.cover(from, end);
-				meter.push(view.samples, from - view.base, end - view.base);
-			}
+			this.view.cover(from, end);
+			const { samples, base } = this.view;
+			this.meters.forEach(({ meter }, c) => meter.push(samples[c]!, from - base, end - base));
 		}
 		this.done = Math.max(this.done, to);
 	}

@@ -10,7 +10,8 @@ import type { CaptureSource } from '../../recording/sample-source';
 import { emptyChannel, fillWindow, referPhases } from '../engine/channel-figures';
 import { addPiece, addResolution, noFlatTops } from '../engine/flat-tops';
 import { readStretch } from '../engine/read-stretch';
-import type { AnalystSetup, WindowBlock } from '../engine/window-analyst';
+import { noSums } from '../engine/overall-figures';
+import { completeBlock, type AnalystSetup, type WindowBlock } from '../engine/window-analyst';
 import { createHalfCycles, halfCyclesOf, type HalfCycles } from '../events/half-cycle-rms';
 import { ORDER_STRIDE } from '../intervals';
 import type { TrackedWindow } from '../window-tracker';
@@ -53,7 +54,8 @@ export class UnevenAnalyst {
 		const block: WindowBlock = {
 			windows: [...windows],
 			channels: mappings.map((m) => emptyChannel(this.source.channels[m.channelIndex]!, m, windows.length)),
-			products_W: pairs.map(() => empty(windows.length)),
+			powers: [],
+			sums: mappings.map(noSums),
 			halfCycles: mappings.map((m) =>
 				m.quantity === 'voltage'
 					? { first: empty(windows.length), rms: empty(windows.length * 2 * plan.cyclesPerWindow) }
@@ -63,7 +65,9 @@ export class UnevenAnalyst {
 			missingSamples: mappings.map(() => 0)
 		};
 		const samples = this.samplesFor(windows);
-		windows.forEach((window, row) => this.addWindow(block, samples, window, row));
+		const products_W = pairs.map(() => empty(windows.length));
+		windows.forEach((window, row) => this.addWindow(block, products_W, samples, window, row));
+		completeBlock(block, pairs, products_W);
 		return block;
 	}
 
@@ -88,7 +92,13 @@ export class UnevenAnalyst {
 		};
 	}
 
-	private addWindow(block: WindowBlock, samples: BlockSamples, window: TrackedWindow, row: number): void {
+	private addWindow(
+		block: WindowBlock,
+		products_W: Float64Array[],
+		samples: BlockSamples,
+		window: TrackedWindow,
+		row: number
+	): void {
 		const { plan, mappings, reference, pairs } = this.setup;
 		const { stretch, spectrum } = plan;
 		const { times, values } = samples;
@@ -114,7 +124,7 @@ export class UnevenAnalyst {
 		});
 		pairs.forEach(({ voltage, current }, p) => {
 			const product = productIntegral(pieces, onPieces[voltage]!, onPieces[current]!) / length_s;
-			block.products_W[p]![row] = product * mappings[voltage]!.toPrimary * mappings[current]!.toPrimary;
+			products_W[p]![row] = product * mappings[voltage]!.toPrimary * mappings[current]!.toPrimary;
 		});
 	}
 

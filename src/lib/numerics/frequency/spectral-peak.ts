@@ -1,7 +1,15 @@
-import { executeRealDft, planRealDft } from '../dft/real-dft';
+import { executeRealDft, planRealDft, type RealDftPlan } from '../dft/real-dft';
 
 /** Longest stretch looked at, in points after thinning; enough for 1 s at 8 kHz. */
 const MAX_POINTS = 8192;
+
+/** The plan of the last length: channels of one capture are looked at one after the other. */
+let lastPlan: RealDftPlan | null = null;
+
+function plannedFor(length: number): RealDftPlan {
+	if (lastPlan?.length !== length) lastPlan = planRealDft(length);
+	return lastPlan;
+}
 
 export interface SpectralPeak {
 	/** cycles per second. */
@@ -50,7 +58,7 @@ export function taperedSpectrum(
 		squares += value * value;
 		block[i] = value * (1 - Math.cos((2 * Math.PI * (i + 0.5)) / points));
 	}
-	const plan = planRealDft(padded);
+	const plan = plannedFor(padded);
 	executeRealDft(plan, block);
 	const rmsLines = new Float64Array(plan.lineCount);
 	for (let k = 0; k < plan.lineCount; k++) {

@@ -53,6 +53,8 @@ export interface ComtradeHeader {
 export interface StampColumn {
 	readonly length: number;
 	at(sample: number): number | undefined;
+	/** Stamps [from, to), for reading many of them; a view or a copy, not to be written to. */
+	subarray(from: number, to: number): Float64Array;
 }
 
 /** What the data tell beside the values of the channels. */

@@ -10,7 +10,7 @@ import { binaryHeadBytes, binaryRowBytes, binaryShape, stampIn, type BinaryForma
 
 const RAW_FORMAT = { BINARY: 'int16', BINARY32: 'int32', FLOAT32: 'float32' } as const;
 /** Rows of time stamps read at a time, bytes. */
-const STAMP_BLOCK_BYTES = 1 << 20;
+const STAMP_BLOCK_BYTES = 1 << 17;
 
 /**
  * Binary data that stay in their file: only their head and their time stamps are read now, samples when they are analysed.
@@ -84,6 +84,16 @@ function stampsOf(data: CaptureHandle, rowBytes: number, sampleCount: number): S
 			const stamp = stampIn(view, (sample - wanted * rowsAtOnce) * rowBytes);
 			last = { sample, stamp };
 			return stamp;
+		},
+		subarray(from, to) {
+			const stamps = new Float64Array(to - from);
+			held = -1;
+			for (let row = from; row < to; row += rowsAtOnce) {
+				const count = Math.min(rowsAtOnce, to - row);
+				data.read(row * rowBytes, block.subarray(0, count * rowBytes));
+				for (let i = 0; i < count; i++) stamps[row - from + i] = stampIn(view, i * rowBytes);
+			}
+			return stamps;
 		}
 	};
 }

@@ -8,6 +8,9 @@ export type TimeBase = Pick<Recording, 'segments' | 'timeStamps_s'>;
 /** Stamps count 32-bit units and start again from 0 after the last one. */
 const STAMP_WRAP = 2 ** 32;
 
+/** Stamps compared at a time. */
+const STAMPS_AT_ONCE = 8192;
+
 /** A stated rate governs; without one the time stamps are all there is. */
 export function timeBaseOf(
 	dataFile: string,
@@ -46,25 +49,34 @@ function splitAtGaps(
 	let elapsedByRate_s = 0;
 	for (const { samplingRate_Hz, fromSample, toSample } of segments) {
 		const step_s = 1 / samplingRate_Hz;
-		for (let sample = Math.max(1, fromSample); sample < toSample; sample++) {
-			const rise = (data.stamps.at(sample) as number) - (data.stamps.at(sample - 1) as number);
-			const stampStep_s = rise * header.stampUnit_s;
-			if (!(stampStep_s > 0)) {
-				if (Number.isFinite(rise) && hasStamps(data))
-					remarks.push(
-						note(
-							'stamps-not-rising',
-							`${dataFile}: the time stamps do not rise at sample ${sample + 1}, so they were not used; the sampling rate that ${header.file} states was.`
-						)
-					);
-				return segments;
+		const tolerance_s = Math.max(0.5 * step_s, 2 * header.stampUnit_s);
+		for (let from = Math.max(1, fromSample); from < toSample; from += STAMPS_AT_ONCE) {
+			const to = Math.min(toSample, from + STAMPS_AT_ONCE);
+			const stamps = data.stamps.subarray(from - 1, to);
+			let evenCount = 0;
+			let evenRise = 0;
+			for (let i = 1; i < stamps.length; i++) {
+				const rise = stamps[i]! - stamps[i - 1]!;
+				const stampStep_s = rise * header.stampUnit_s;
+				if (!(stampStep_s > 0)) {
+					if (Number.isFinite(rise) && hasStamps(data))
+						remarks.push(
+							note(
+								'stamps-not-rising',
+								`${dataFile}: the time stamps do not rise at sample ${from + i}, so they were not used; the sampling rate that ${header.file} states was.`
+							)
+						);
+					return segments;
+				}
+				const gap_s = stampStep_s - step_s;
+				if (gap_s > tolerance_s) gaps.push({ sample: from + i - 1, gap_s });
+				else {
+					evenCount++;
+					evenRise += rise;
+				}
 			}
-			const gap_s = stampStep_s - step_s;
-			if (gap_s > Math.max(0.5 * step_s, 2 * header.stampUnit_s)) gaps.push({ sample, gap_s });
-			else {
-				elapsedByStamps_s += stampStep_s;
-				elapsedByRate_s += step_s;
-			}
+			elapsedByStamps_s += evenRise * header.stampUnit_s;
+			elapsedByRate_s += evenCount * step_s;
 		}
 	}
 	const disagreement = elapsedByStamps_s / elapsedByRate_s - 1;

@@ -1,4 +1,5 @@
 /** What runs in each thread of the window pool: decodes, interpolates and transforms the windows it is given. */
+import { move, transferableSymbol, valueSymbol } from 'piscina';
 import { WindowAnalyst, type WindowBlock } from '../../../harmonics/engine/window-analyst';
 import { openFileHandle, type FileHandle } from '../../storage/file-handle';
 import type { ThreadCapture, ThreadTask } from './window-pool';
@@ -33,6 +34,24 @@ function sourceIn({ frame, layout }: ThreadCapture, file: FileHandle) {
 	};
 }
 
+/** Buffers of all typed arrays in a block: they are handed over, not copied. */
+function buffersOf(value: unknown, found: Set<ArrayBuffer> = new Set()): Set<ArrayBuffer> {
+	if (ArrayBuffer.isView(value)) found.add(value.buffer as ArrayBuffer);
+	else if (typeof value === 'object' && value !== null)
+		for (const member of Object.values(value)) buffersOf(member, found);
+	return found;
+}
+
+/** What the pool calls with each task. */
 export default function analyseWindows(task: ThreadTask): WindowBlock {
-	return hold(task).analyst.analyse(task.windows);
+	const block = hold(task).analyst.analyse(task.windows);
+	const handedOver = {
+		get [transferableSymbol]() {
+			return [...buffersOf(block.channels), ...buffersOf(block.powers), ...buffersOf(block.halfCycles)];
+		},
+		get [valueSymbol]() {
+			return block;
+		}
+	};
+	return move(handedOver as never) as never;
 }
