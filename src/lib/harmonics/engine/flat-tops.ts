@@ -9,7 +9,7 @@ interface EndRuns {
 }
 
 /** Pieces of one block at one extreme value that are looked through; what they do not show, more of them would not. */
-const ENOUGH_PIECES = 6;
+const ENOUGH_PIECES = 3;
 
 /** What is needed to tell cut-off crests, gathered piece by piece. */
 export interface FlatTops {

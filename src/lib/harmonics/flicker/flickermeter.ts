@@ -94,16 +94,19 @@ export class Flickermeter {
 	}
 
 	private pushPiece(samples: Float64Array, from: number, to: number): void {
-		const { work, thin } = this;
+		const { work, thin, index } = this;
+		let { sum, inSum } = this;
 		let count = 0;
 		for (let i = from; i < to; i++) {
-			this.sum += samples[i]! * samples[i]!;
-			if (++this.inSum < thin) continue;
-			const scaled = this.scale(this.sum / thin, this.index + count);
-			work[count++] = scaled;
-			this.sum = 0;
-			this.inSum = 0;
+			sum += samples[i]! * samples[i]!;
+			if (++inSum < thin) continue;
+			work[count] = this.scale(sum / thin, index + count);
+			count++;
+			sum = 0;
+			inSum = 0;
 		}
+		this.sum = sum;
+		this.inSum = inSum;
 		this.weighting.run(work, count);
 		for (let i = 0; i < count; i++) work[i] = work[i]! * work[i]! * this.gain;
 		this.memory.run(work, count);

@@ -50,6 +50,7 @@ function splitAtGaps(
 	for (const { samplingRate_Hz, fromSample, toSample } of segments) {
 		const step_s = 1 / samplingRate_Hz;
 		const tolerance_s = Math.max(0.5 * step_s, 2 * header.stampUnit_s);
+		const greatestRise = (step_s + tolerance_s) / header.stampUnit_s;
 		for (let from = Math.max(1, fromSample); from < toSample; from += STAMPS_AT_ONCE) {
 			const to = Math.min(toSample, from + STAMPS_AT_ONCE);
 			const stamps = data.stamps.subarray(from - 1, to);
@@ -57,6 +58,11 @@ function splitAtGaps(
 			let evenRise = 0;
 			for (let i = 1; i < stamps.length; i++) {
 				const rise = stamps[i]! - stamps[i - 1]!;
+				if (rise > 0 && rise <= greatestRise) {
+					evenCount++;
+					evenRise += rise;
+					continue;
+				}
 				const stampStep_s = rise * header.stampUnit_s;
 				if (!(stampStep_s > 0)) {
 					if (Number.isFinite(rise) && hasStamps(data))
@@ -68,12 +74,7 @@ function splitAtGaps(
 						);
 					return segments;
 				}
-				const gap_s = stampStep_s - step_s;
-				if (gap_s > tolerance_s) gaps.push({ sample: from + i - 1, gap_s });
-				else {
-					evenCount++;
-					evenRise += rise;
-				}
+				gaps.push({ sample: from + i - 1, gap_s: stampStep_s - step_s });
 			}
 			elapsedByStamps_s += evenRise * header.stampUnit_s;
 			elapsedByRate_s += evenCount * step_s;
