@@ -29,7 +29,7 @@ const tables = new Map<string, Float64Array>();
 const MOST_TABLES = 8;
 
 function tableOf(kernel: KaiserKernel): Float64Array {
-	const key = `${kernel.cutoff}/${kernel.halfWidth}/${kernel.beta}`;
+	const key = JSON.stringify(kernel);
 	const known = tables.get(key);
 	if (known) return known;
 	const taps = 2 * kernel.halfWidth;

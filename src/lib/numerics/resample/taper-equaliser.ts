@@ -1,11 +1,11 @@
 import { ROWS_PER_SAMPLE } from './interpolator';
-import { type KaiserKernel, taperResponse } from './kaiser-kernel';
+import { type KaiserKernel, taperResponse, taperStopband } from './kaiser-kernel';
 
 /** Steps of the table from 0 to the kernel's stopband; cubics run between them. */
 const STEPS = 8192;
 
 /**
- * Plans the factors that undo the droop of a bare taper on the lines of a window.
+ * Plans the factors that undo the droop of a taper on the lines of a window.
  * kernel   from designTaperKernel; any other needs no factors: they are 1
  * points   of a window
  * gains    [lineCount] receives the factor of each line; NaN for lines in the stopband
@@ -19,7 +19,7 @@ export function planEqualiser(
 ): (step: number) => void {
 	gains.fill(1);
 	if (kernel.cutoff !== 0) return () => undefined;
-	const stopband = kernel.beta / (2 * Math.PI * kernel.halfWidth);
+	const stopband = taperStopband(kernel);
 	// Entry i belongs to frequency (i − 1)·stopband/STEPS.
 	const table = Float64Array.from({ length: STEPS + 3 }, (_, i) => {
 		const f = ((i - 1) * stopband) / STEPS;
