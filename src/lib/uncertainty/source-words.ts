@@ -54,8 +54,10 @@ export const SOURCE_WORDS: Record<ContributionSource, { name: string; note: stri
 
 /** "normal, k = 2", "rectangular", "observed, 14 degrees of freedom". */
 export function distributionWords({ type, distribution, divisor, degreesOfFreedom }: Contribution): string {
-	if (type === 'A')
-		return `type A, ${degreesOfFreedom === null ? '∞' : Math.floor(degreesOfFreedom)} degrees of freedom`;
+	if (type === 'A') {
+		const whole = Math.floor(degreesOfFreedom ?? Infinity);
+		return `type A, ${whole} ${whole === 1 ? 'degree' : 'degrees'} of freedom`;
+	}
 	return distribution === 'normal' && divisor !== 1
 		? `normal, k = ${Number(divisor.toFixed(2))}`
 		: distribution;

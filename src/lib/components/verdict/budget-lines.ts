@@ -18,7 +18,8 @@ export interface BudgetLine {
 	note: string;
 	distribution: string;
 	stated: string;
-	sensitivity: string;
+	/** Its unit, and what the figure changes by for one of it. */
+	unit: string;
 	u: string;
 	share: string;
 }
@@ -52,8 +53,8 @@ export function budgetLines(budget: Budget): BudgetLine[] {
 		.map((one) => ({
 			...SOURCE_WORDS[one.source],
 			distribution: distributionWords(one),
-			stated: `${figures(one.stated)}${one.statedIn === 'percent of reading' ? ' % of reading' : ' points'}`,
-			sensitivity: figures(one.sensitivity),
+			stated: figures(one.stated),
+			unit: `${one.statedIn === 'percent of reading' ? '% of reading' : 'points'} · ${figures(one.sensitivity)}`,
 			u: figures(one.u),
 			share: formatShare(shareOfVariance(budget, one))
 		}));
