@@ -50,7 +50,7 @@ function network(extra: Partial<ExactChannel>): ExactChannel {
 }
 
 /** Offsets of the interharmonic from the order, as multiples of the line spacing of five hertz. */
-const OFFSETS_HZ = [-22.5, -12, -7.5, -5, 5, 7.5, 12, 17, 22.5];
+const OFFSETS_HZ = [-22.5, -17, -12, -9, -7.5, -6, -5, 5, 6, 7.5, 9, 12, 17, 22.5];
 const BESIDE = [1, 3, 11, 49];
 
 export function movingCases(): MovingCase[] {

@@ -31,17 +31,24 @@ export interface TrackerSetup {
 	phasorAt?: (centre: number, frequency: number, halfCycles: number) => TaperedPhasor;
 }
 
-/** Samples that the tracker may look at together, in cycles: a window, and as much again on either side of it. */
+/** Windows' worth of samples on one side of an edge from which the course of the phase there is taken. */
+const EDGE_WINDOWS = 4;
+
+/** Samples that the tracker may look at together: EDGE_WINDOWS, a window between its neighbours is less. */
 export function trackerReach(cyclesPerWindow: number, frequency: number): number {
-	return Math.ceil((3.2 * cyclesPerWindow) / frequency) + 16;
+	return Math.ceil(((EDGE_WINDOWS + 0.2) * cyclesPerWindow) / frequency) + 16;
 }
 
+/** Longest taper between neighbours: its half as a share of a window. */
+const WIDEST_SHARE = 0.7;
 /** Shortest taper, in cycles on either side of its middle. */
 const LEAST_HALF_CYCLES = 2;
 /** The frequency of one window may differ by this much from the one before; more is a jump of phase, not a frequency. */
 const MOST_CHANGE = 0.05;
 /** A window that ends within this many samples of the tick ends on it. */
 const ON_TICK = 0.01;
+/** The course of the phase beside an edge is believed where it agrees so well with what its nearest part says. */
+const MOST_DISAGREEMENT = 3e-4;
 /** Below this share of the usual amplitude there is no fundamental to follow. */
 const LEAST_AMPLITUDE = 0.05;
 
@@ -54,13 +61,14 @@ interface PhaseMark {
 /**
  * Places adjoining windows of N cycles of the measured fundamental.
  *
- * At each border the phase of the fundamental is taken through a Hann taper of up to N cycles; the frequency of a window
+ * At each border the phase of the fundamental is taken through a Hann taper of up to 1.4·N cycles; the frequency of a window
  * is the advance of phase between its borders over their distance, and the window's length follows from it. Near the
- * ends of the record (and beside missing samples) the taper is shortened and moved inwards, so nothing outside is used.
+ * ends of the record (and beside missing samples) the taper is shortened and moved inwards, so nothing outside is used;
+ * the frequency is then that of a parabola through the phases of three wide tapers further inside, at the window's middle.
  * At a tick the window that straddles it is completed, and the next starts at the tick itself (IEC 61000-4-30:2015,
  * 4.5.3, from memory).
  *
- * error   steady signals: below 1e-6 of the length; the tolerance is 0.03 % (IEC 61000-4-7:2002+A1:2008, 4.4.1, from memory)
+ * error   steady signals: below 1e-6 of the length, moving ones: docs/accuracy.md; the tolerance is 0.03 % (IEC 61000-4-7:2002+A1:2008, 4.4.1, from memory)
  */
 export class WindowTracker {
 	private position: number;
@@ -95,6 +103,11 @@ export class WindowTracker {
 			this.tick = this.tickAfter(this.tick + 1);
 		} else this.position = start + length;
 		return { start, length, frequency: this.frequency, measured: refined !== null, resync };
+	}
+
+	/** Interharmonics from 6 Hz off the fundamental are then damped to less than an eighth in its phase. */
+	private get widestHalfCycles(): number {
+		return Math.floor(WIDEST_SHARE * this.setup.cyclesPerWindow);
 	}
 
 	private tickAfter(position: number): number {
@@ -133,8 +146,62 @@ export class WindowTracker {
 			if (change < 2e-5) break;
 			if (begin !== this.mark) begin = this.markAt(start, frequency, run);
 		}
-		this.mark = end;
+		const half = this.widestHalfCycles / frequency;
+		if (start - run.from > half && run.to - start > half + cycles / frequency) {
+			this.mark = end;
+			return frequency;
+		}
+		this.mark = null;
+		return this.frequencyAtEdge(start, run, (begin.centre + end!.centre) / 2, frequency);
+	}
+
+	/**
+	 * Frequency of a window beside an edge, from a parabola through the phases of three tapers of equal length.
+	 * middle    where `nearest`, the frequency by the shifted tapers of the window itself, holds
+	 * returns   `nearest` where the record beside the edge is too short or does not move evenly
+	 */
+	private frequencyAtEdge(
+		start: number,
+		run: { from: number; to: number },
+		middle: number,
+		nearest: number
+	): number {
+		const { from, to } = this.widened(start, run);
+		const { cyclesPerWindow } = this.setup;
+		const room = (to - from) * nearest;
+		const halfCycles = Math.min(cyclesPerWindow, Math.floor(room / EDGE_WINDOWS));
+		if (halfCycles < LEAST_HALF_CYCLES || room < 2 * cyclesPerWindow) return nearest;
+		let frequency = nearest;
+		for (let pass = 0; pass < 5; pass++) {
+			const reach = halfCycles / frequency;
+			const marks = [from + reach, (from + to) / 2, to - reach].map((centre) => ({
+				centre,
+				...this.phasorAt(centre, frequency, halfCycles)
+			}));
+			if (marks.some(({ amplitude }) => !(amplitude > LEAST_AMPLITUDE * this.usualAmplitude))) return nearest;
+			const slopeAt = parabolaSlope(marks as [PhaseMark, PhaseMark, PhaseMark], frequency);
+			if (!(Math.abs(slopeAt(middle) / nearest - 1) < MOST_DISAGREEMENT)) return nearest;
+			const refined = slopeAt(start + cyclesPerWindow / frequency / 2);
+			const change = Math.abs(refined / frequency - 1);
+			frequency = refined;
+			if (change < 2e-5) break;
+		}
 		return frequency;
+	}
+
+	/** The stretch without missing samples beside the edge, up to EDGE_WINDOWS long. */
+	private widened(start: number, run: { from: number; to: number }): { from: number; to: number } {
+		const { firstSample, lastSample, cyclesPerWindow, reference } = this.setup;
+		const reach = (EDGE_WINDOWS * cyclesPerWindow) / this.frequency;
+		const atStart = start - run.from < run.to - start - cyclesPerWindow / this.frequency;
+		const lowest = atStart ? run.from : Math.max(firstSample, Math.ceil(run.to - reach));
+		const highest = atStart ? Math.min(lastSample, Math.floor(run.from + reach)) : run.to;
+		reference.cover(lowest, highest + 1);
+		const { samples, base } = reference;
+		let { from, to } = run;
+		while (from > lowest && !Number.isNaN(samples[from - 1 - base])) from--;
+		while (to < highest && !Number.isNaN(samples[to + 1 - base])) to++;
+		return { from, to };
 	}
 
 	private markAt(border: number, frequency: number, run: { from: number; to: number }): PhaseMark {
@@ -142,10 +209,7 @@ export class WindowTracker {
 		const reach = LEAST_HALF_CYCLES * cycle;
 		const centre = Math.max(run.from + reach, Math.min(run.to - reach, border));
 		const room = Math.min(centre - run.from, run.to - centre) / cycle;
-		const halfCycles = Math.max(
-			LEAST_HALF_CYCLES,
-			Math.min(this.setup.cyclesPerWindow / 2, Math.floor(room + 1e-9))
-		);
+		const halfCycles = Math.max(LEAST_HALF_CYCLES, Math.min(this.widestHalfCycles, Math.floor(room + 1e-9)));
 		return { centre, ...this.phasorAt(centre, frequency, halfCycles) };
 	}
 
@@ -200,4 +264,15 @@ function advance(begin: PhaseMark, end: PhaseMark, frequency: number): number {
 	const fraction = (end.phase_rad - begin.phase_rad) / (2 * Math.PI);
 	const turns = Math.round(frequency * distance - fraction);
 	return (turns + fraction) / distance;
+}
+
+/** Slope, cycles per sample, of the parabola through three phases whose whole turns `frequency` tells. */
+function parabolaSlope(
+	[first, second, third]: [PhaseMark, PhaseMark, PhaseMark],
+	frequency: number
+): (at: number) => number {
+	const earlier = advance(first, second, frequency);
+	const later = advance(second, third, frequency);
+	const bend = (later - earlier) / (third.centre - first.centre);
+	return (at) => earlier + bend * (2 * at - first.centre - second.centre);
 }
