@@ -57,7 +57,7 @@ export async function verdictPass(
 	).finally(close);
 	const analysed_s = since();
 	const series = prepared.last.series
-		.filter((row) => row.interval === '3s' || row.interval === '10min')
+		.filter((row): row is typeof row & { interval: '3s' | '10min' } => ['3s', '10min'].includes(row.interval))
 		.map(decodeSeries);
 	const uncertainty = chainUncertainty({
 		nominalFrequency_Hz: 50,

@@ -34,6 +34,8 @@ export interface TrendData {
 	flagged: readonly { from_ms: number; to_ms: number }[];
 	/** IANA zone in which the axis counts: the site's. */
 	zone: string;
+	/** False where the axis has to follow the values (a voltage, a frequency); true when left out. */
+	fromZero?: boolean;
 }
 
 /** Values over time with the percentile and the limit drawn; flagged intervals masked. */
@@ -84,7 +86,12 @@ export function buildTrendOption(
 			nameGap: 26,
 			axisLabel: { ...categoryAxisStyle(mode).axisLabel, hideOverlap: true, formatter: time.short }
 		},
-		yAxis: { ...valueAxisStyle(mode), type: 'value', name: room.axisName, min: 0 },
+		yAxis: {
+			...valueAxisStyle(mode),
+			type: 'value',
+			name: room.axisName,
+			...(data.fromZero === false ? { scale: true } : {})
+		},
 		dataZoom: mode === 'print' ? undefined : [{ type: 'inside', filterMode: 'none' }, zoomSlider(mode)],
 		series: [
 			...data.series.map((series, i) => ({

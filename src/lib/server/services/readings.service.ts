@@ -62,7 +62,7 @@ export function createReadingsService({ db, blobs }: ServiceDeps) {
 			captureId: shown?.id ?? null,
 			view: asked.view,
 			views: READING_VIEWS,
-			readings: shown ? await readings(db, scope, survey, shown, asked) : null
+			readings: shown ? await readings(db, blobs, scope, survey, shown, asked) : null
 		};
 	}
 

@@ -5,7 +5,11 @@
 export const READING_VIEWS = [
 	{ view: 'spectrum', label: 'Spectrum' },
 	{ view: 'power', label: 'Power and direction' },
-	{ view: 'sequence', label: 'Sequence and unbalance' }
+	{ view: 'sequence', label: 'Sequence and unbalance' },
+	{ view: 'losses', label: 'Losses and neutral' },
+	{ view: 'over-time', label: 'Over time' },
+	{ view: 'interharmonics', label: 'Interharmonics' },
+	{ view: 'reconstruction', label: 'Wave shape' }
 ] as const;
 
 export type ReadingView = (typeof READING_VIEWS)[number]['view'];
@@ -15,4 +19,9 @@ export const READING_VIEW_NAMES = READING_VIEWS.map(({ view }) => view) as [Read
 /** A view that needs samples, asked of a log of intervals. */
 export interface NoWaveform {
 	kind: 'no-waveform';
+}
+
+/** A view of single samples, asked of a window that cannot be looked at so closely. */
+export interface NoSamples {
+	kind: 'no-samples';
 }

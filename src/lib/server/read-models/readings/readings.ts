@@ -9,14 +9,20 @@ import type { CaptureRow } from '../../db/rows';
 import { analysesRepository } from '../../repositories/analyses.repository';
 import { limitSetsRepository } from '../../repositories/limit-sets.repository';
 import type { Scope } from '../../repositories/scope';
+import type { BlobStore } from '../../storage/blob-store';
 import type { CaptureSurvey } from '../capture-list';
 import { intervalTrend, percentileTable, type IntervalTrend, type PercentileTable } from '../reading-trend';
 import { samplePowers_W } from './point-windows';
 import { powerReadings, type PowerReadings } from './power-view';
-import type { NoWaveform, ReadingView } from './reading-views';
+import { interharmonicReadings, type InterharmonicReadings } from './interharmonics-view';
+import { lossReadings, type LossReadings } from './losses-view';
+import { overTimeReadings, type OverTimeReadings } from './over-time-view';
+import type { NoSamples, NoWaveform, ReadingView } from './reading-views';
+import { reconstructionReadings, type ReconstructionReadings } from './reconstruction-view';
 import { sequenceReadings, type SequenceReadings } from './sequence-view';
 import { waveformReadings, type WaveformReadings } from './spectrum-view';
-import { byPhase, windowRows, type Quantity, type WindowChoice } from './window-rows';
+import { windowSamples } from './window-samples';
+import { byPhase, captureStart_ms, windowRows, type Quantity, type WindowChoice } from './window-rows';
 
 export interface ReadingsQuestion {
 	view: ReadingView;
@@ -48,7 +54,17 @@ export interface Readings {
 	basis: ReadingBasis;
 	/** What the window chooser shows; null for a log of intervals. */
 	choice: WindowChoice | null;
-	detail: WaveformReadings | TrendReadings | PowerReadings | SequenceReadings | NoWaveform;
+	detail:
+		| WaveformReadings
+		| TrendReadings
+		| PowerReadings
+		| SequenceReadings
+		| LossReadings
+		| OverTimeReadings
+		| InterharmonicReadings
+		| ReconstructionReadings
+		| NoWaveform
+		| NoSamples;
 	/** Of the spectrum view only. */
 	trend: IntervalTrend | null;
 }
@@ -56,6 +72,7 @@ export interface Readings {
 /** All that one view of the readings page shows of one analysed capture. Null while the capture has no analysis. */
 export async function readings(
 	db: Db,
+	blobs: BlobStore,
 	scope: Scope,
 	survey: CaptureSurvey,
 	capture: CaptureRow,
@@ -73,7 +90,8 @@ export async function readings(
 			: await limitSetsRepository(db, scope.practiceId).byId(survey.facts.limitSetId);
 	const windows =
 		summary.kind === 'waveform' ? await windowRows(db, scope, analysis, summary, asked.window) : null;
-	const overview = asked.view === 'spectrum' ? await analyses.seriesOf(analysis.id) : [];
+	const overview =
+		asked.view === 'spectrum' || asked.view === 'over-time' ? await analyses.seriesOf(analysis.id) : [];
 	const quantities = (['voltage', 'current'] as const).filter((quantity) =>
 		(windows?.rows ?? overview).some((row) => row.quantity === quantity)
 	);
@@ -87,13 +105,46 @@ export async function readings(
 			? waveformReadings(windows, summary, { point, basis, label, quantity })
 			: { kind: 'trend', percentiles: percentileTable(own, { point, basis, label, highestOrder }) };
 	const other = async (view: Exclude<ReadingView, 'spectrum'>): Promise<Readings['detail']> => {
-		if (!windows) return { kind: 'no-waveform' };
+		if (view === 'over-time')
+			return overTimeReadings(db, scope, analysis.id, overview, {
+				highestOrder,
+				asked: asked.interval,
+				label
+			});
+		if (!windows || summary.kind !== 'waveform') return { kind: 'no-waveform' };
+		const { cyclesPerWindow, nominalFrequency_Hz } = summary;
+		const samples = () => windowSamples(blobs, summary, windows, captureStart_ms(analysis));
 		const context = { system: survey.facts.system, highestOrder, label };
 		switch (view) {
 			case 'power':
 				return powerReadings(windows, context, await samplePowers_W(db, scope, analysis.id, windows.rows));
 			case 'sequence':
 				return sequenceReadings(windows, context);
+			case 'losses':
+				return lossReadings(windows, {
+					...context,
+					frequency_Hz: nominalFrequency_Hz,
+					rated:
+						point.demandCurrent_A === null
+							? null
+							: { current_A: point.demandCurrent_A, from: 'the maximum demand current I_L of the point' }
+				});
+			case 'interharmonics':
+				return interharmonicReadings(windows, await samples(), {
+					quantity,
+					highestOrder,
+					cyclesPerWindow,
+					nominalFrequency_Hz,
+					label
+				});
+			case 'reconstruction': {
+				const found = await samples();
+				const nameOf = (index: number) =>
+					summary.channels.find(({ channelIndex }) => channelIndex === index)?.name ?? '';
+				return found
+					? reconstructionReadings(windows, found, { cyclesPerWindow, label, nameOf })
+					: { kind: 'no-samples' };
+			}
 		}
 	};
 	return {

@@ -152,7 +152,8 @@ function unflaggedWindows(row: AnalysisSeriesRow): number[] {
 	return valid.length > 0 ? valid : all;
 }
 
-function captureStart_ms(analysis: AnalysisRow): number {
+/** Instant of sample 0. */
+export function captureStart_ms(analysis: AnalysisRow): number {
 	return (JSON.parse(analysis.parameters_json) as { start_ms: number }).start_ms;
 }
 
