@@ -17,6 +17,11 @@ export function harmonicContent(row: Float64Array, fromOrder: number, toOrder: n
 /** Below this share of the channel's rms a fundamental is taken for absent. */
 const LEAST_FUNDAMENTAL = 1e-4;
 
+/** Whether one row of levels holds a fundamental that percentages can stand on; false for no data. */
+export function hasFundamental(row: Float64Array, rms: number): boolean {
+	return row[1]! > LEAST_FUNDAMENTAL * rms;
+}
+
 /**
  * Total distortion in percent of the fundamental; of subgroups it is THDS, of lines THD.
  * row        values by order of one window, index = order
@@ -26,9 +31,8 @@ const LEAST_FUNDAMENTAL = 1e-4;
  * source     IEC 61000-4-7:2002+A1:2008, 3.3 (from memory)
  */
 export function thd_pctOfFundamental(row: Float64Array, rms: number, toOrder: number): number {
-	const fundamental = row[1]!;
-	if (!(fundamental > LEAST_FUNDAMENTAL * rms)) return NaN;
-	return (100 * harmonicContent(row, 2, toOrder)) / fundamental;
+	if (!hasFundamental(row, rms)) return NaN;
+	return (100 * harmonicContent(row, 2, toOrder)) / row[1]!;
 }
 
 /**
