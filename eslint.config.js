@@ -15,11 +15,13 @@ const ROOMS = [
 	['recording', 'src/lib/recording/**'],
 	['harmonics', 'src/lib/harmonics/**'],
 	['synthesis', 'src/lib/synthesis/**'],
+	['accuracy', 'src/lib/accuracy/**'],
 	['limits', 'src/lib/limits/**'],
 	['uncertainty', 'src/lib/uncertainty/**'],
 	['assessment', 'src/lib/assessment/**'],
 	['register', 'src/lib/register/**'],
 	['report', 'src/lib/report/**'],
+	['analysis-document', 'src/lib/analysis-document/**'],
 	['charts', 'src/lib/charts/**'],
 	['state', 'src/lib/state/**'],
 	['api-client', 'src/lib/api-client/**'],
@@ -50,6 +52,7 @@ const MAY_ENTER = {
 	recording: ['recording', 'numerics', 'units', 'result'],
 	harmonics: ['harmonics', 'recording', 'numerics', 'units', 'result'],
 	synthesis: ['synthesis', 'recording', 'harmonics', 'numerics', 'units', 'result'],
+	accuracy: ['accuracy', 'synthesis', 'harmonics', 'recording', 'numerics', 'result'],
 	limits: ['limits', 'units', 'result'],
 	uncertainty: ['uncertainty', 'numerics'],
 	assessment: [
@@ -72,6 +75,16 @@ const MAY_ENTER = {
 		'recording',
 		'access',
 		'units',
+		'result'
+	],
+	'analysis-document': [
+		'analysis-document',
+		'register',
+		'assessment',
+		'uncertainty',
+		'limits',
+		'harmonics',
+		'recording',
 		'result'
 	],
 	charts: ['charts', 'units', 'recording', 'harmonics', 'limits', 'assessment', 'report'],
@@ -141,7 +154,7 @@ export default ts.config(
 	{
 		// Domain rooms know neither the framework nor the machine they run on.
 		files: [
-			'src/lib/{numerics,units,recording,harmonics,synthesis,limits,uncertainty,assessment,register,report,access,charts}/**/*.ts'
+			'src/lib/{numerics,units,recording,harmonics,synthesis,accuracy,limits,uncertainty,assessment,register,report,analysis-document,access,charts}/**/*.ts'
 		],
 		rules: {
 			'no-restricted-imports': [

@@ -1,6 +1,7 @@
 import { MAX_ORDER, ORDER_STRIDE } from '../harmonics/intervals';
 import { seededRandom } from '../synthesis/waveform-random';
 import { analyseExact } from './analyse-exact';
+import { tenthOfClassI } from './class-limits';
 import type { ExactChannel, ExactSignal } from './exact-signal';
 import { idealWindow } from './ideal-window';
 
@@ -24,14 +25,6 @@ export interface MovingErrors {
 
 const NOMINAL_V = 230;
 
-/**
- * A tenth of the limit of class I, in the unit of the reading: 5 % of readings from 1 % of nominal on, 0.05 % of nominal below.
- * source  IEC 61000-4-7:2002+A1:2008, table 1 (from memory)
- */
-export function tenthOfClassI(reading: number, nominal: number): number {
-	return reading >= 0.01 * nominal ? 0.005 * reading : 0.00005 * nominal;
-}
-
 /** A voltage with the levels of a badly distorted low-voltage network, orders to 50. */
 function network(extra: Partial<ExactChannel>): ExactChannel {
 	const random = seededRandom(7);
@@ -49,7 +42,7 @@ function network(extra: Partial<ExactChannel>): ExactChannel {
 	};
 }
 
-/** Offsets of the interharmonic from the order, as multiples of the line spacing of five hertz. */
+/** Offsets of the interharmonic from the order; below the line spacing of 5 Hz it is a modulation of the order. */
 const OFFSETS_HZ = [-22.5, -17, -12, -9, -7.5, -6, -5, 5, 6, 7.5, 9, 12, 17, 22.5];
 const BESIDE = [1, 3, 11, 49];
 
@@ -59,11 +52,12 @@ export function movingCases(): MovingCase[] {
 		const make = (
 			title: string,
 			signal: Partial<ExactSignal>,
-			extra: Partial<ExactChannel> = {}
+			extra: Partial<ExactChannel> = {},
+			samplingRate_Hz = 12_800
 		): MovingCase => ({
 			title,
 			nominalFrequency_Hz,
-			samplingRate_Hz: 12_800,
+			samplingRate_Hz,
 			signal: { frequency_Hz, channels: [network(extra)], ...signal }
 		});
 		const tone = (order: number, offset_Hz: number) =>
@@ -74,10 +68,24 @@ export function movingCases(): MovingCase[] {
 					others: [{ frequency_Hz: order * frequency_Hz + offset_Hz, rms: 0.01 * NOMINAL_V, phase_deg: 77 }]
 				}
 			);
+		const moving = (ramp_HzPerSecond: number, rate_Hz: number) =>
+			make(
+				`ramp ${ramp_HzPerSecond < 0 ? '−' : '+'} 1 Hz/s, ${rate_Hz / 1000} kS/s`,
+				{ frequency_Hz: nominalFrequency_Hz - 1.5 * ramp_HzPerSecond, ramp_HzPerSecond },
+				{},
+				rate_Hz
+			);
+		const modulated = (rate_Hz: number) =>
+			make(
+				`amplitude ± 5 % at 8.3 Hz, ${rate_Hz / 1000} kS/s`,
+				{},
+				{ modulation: { frequency_Hz: 8.3, depth: 0.05 } },
+				rate_Hz
+			);
+		// The lowest gives order 50 just so; its interpolation has the steepest task.
+		const rates_Hz = [131 * nominalFrequency_Hz, 10_000, 12_800, 50_000];
 		return [
-			make('ramp + 1 Hz/s', { frequency_Hz: nominalFrequency_Hz - 1.5, ramp_HzPerSecond: 1 }),
-			make('ramp − 1 Hz/s', { frequency_Hz: nominalFrequency_Hz + 1.5, ramp_HzPerSecond: -1 }),
-			make('amplitude ± 5 % at 8.3 Hz', {}, { modulation: { frequency_Hz: 8.3, depth: 0.05 } }),
+			...rates_Hz.flatMap((rate_Hz) => [moving(1, rate_Hz), moving(-1, rate_Hz), modulated(rate_Hz)]),
 			...BESIDE.flatMap((order) => OFFSETS_HZ.map((offset_Hz) => tone(order, offset_Hz)))
 		];
 	});
