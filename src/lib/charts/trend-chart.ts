@@ -51,7 +51,7 @@ export function buildTrendOption(
 	);
 	const palette = CHART_PALETTES[mode];
 	const shift_ms = siteShift_ms(data);
-	const time = timeFormat(data.zone, shift_ms);
+	const time = timeFormat(data, shift_ms);
 	const rules = [
 		...(data.limit ? [rule(data.limit, palette.ink, 'solid' as const, mode)] : []),
 		...(data.percentile ? [rule(data.percentile, palette.copper, [6, 3], mode)] : [])
@@ -227,15 +227,27 @@ function siteShift_ms(data: TrendData): number {
 	return wallClock_ms - Math.floor(first / 1000) * 1000;
 }
 
-function timeFormat(zone: string, shift_ms: number) {
+/** Courses shorter than this are read to the second. */
+const SHORT_COURSE_MS = 900_000;
+
+function isShortCourse(data: TrendData): boolean {
+	const { times_ms } = data.series.find((series) => series.times_ms.length > 1) ?? { times_ms: [] };
+	return times_ms.length > 1 && times_ms[times_ms.length - 1]! - times_ms[0]! < SHORT_COURSE_MS;
+}
+
+function timeFormat(data: TrendData, shift_ms: number) {
+	const { zone } = data;
+	const toTheSecond = isShortCourse(data);
 	const day = new Intl.DateTimeFormat('en-GB', { timeZone: zone, day: 'numeric', month: 'short' });
 	const clock = new Intl.DateTimeFormat('en-GB', {
 		timeZone: zone,
 		hour: '2-digit',
 		minute: '2-digit',
+		...(toTheSecond ? { second: '2-digit' as const } : {}),
 		hourCycle: 'h23'
 	});
 	const full = (value: number) => `${day.format(value - shift_ms)}, ${clock.format(value - shift_ms)}`;
+	if (toTheSecond) return { full, short: (value: number) => clock.format(value - shift_ms) };
 	const short = (value: number) =>
 		clock.format(value - shift_ms) === '00:00' ? day.format(value - shift_ms) : full(value);
 	return { full, short };
@@ -243,7 +255,7 @@ function timeFormat(zone: string, shift_ms: number) {
 
 export function trendTable(data: TrendData): ChartTable {
 	const isFlagged = (time: number) => data.flagged.some((f) => time >= f.from_ms && time < f.to_ms);
-	const { full } = timeFormat(data.zone, 0);
+	const { full } = timeFormat(data, 0);
 	return {
 		columns: [
 			{ label: `Interval start, ${data.zone}` },

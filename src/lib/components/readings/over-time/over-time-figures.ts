@@ -5,6 +5,7 @@ export interface TimePanelFigures {
 	key: string;
 	title: string;
 	valueAxis: string;
+	unit: string;
 	fromZero: boolean;
 	series: { label: string; phase: Phase; times_ms: number[]; values: (number | null)[] }[];
 }

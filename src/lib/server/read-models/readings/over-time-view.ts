@@ -23,6 +23,8 @@ export interface TimePanel {
 	key: string;
 	title: string;
 	valueAxis: string;
+	/** Empty for plain numbers. */
+	unit: string;
 	/** Whether the axis starts at zero: a voltage or a frequency would be a straight line then. */
 	fromZero: boolean;
 	series: PanelSeries[];
@@ -105,6 +107,7 @@ function levelPanels(own: readonly AssessedColumns[], context: Context, step: nu
 		{
 			key: 'voltage',
 			title: 'Voltage',
+			unit: 'V',
 			valueAxis: 'Voltage, V rms',
 			fromZero: false,
 			series: of('voltage', rms)
@@ -112,6 +115,7 @@ function levelPanels(own: readonly AssessedColumns[], context: Context, step: nu
 		{
 			key: 'current',
 			title: 'Current',
+			unit: 'A',
 			valueAxis: 'Current, A rms',
 			fromZero: true,
 			series: of('current', rms)
@@ -119,6 +123,7 @@ function levelPanels(own: readonly AssessedColumns[], context: Context, step: nu
 		{
 			key: 'frequency',
 			title: 'Frequency',
+			unit: 'Hz',
 			valueAxis: 'Frequency, Hz',
 			fromZero: false,
 			series: frequency
@@ -136,6 +141,7 @@ function levelPanels(own: readonly AssessedColumns[], context: Context, step: nu
 		{
 			key: 'voltage-thd',
 			title: 'Voltage distortion',
+			unit: '%',
 			valueAxis: 'THD of voltage, % of the fundamental',
 			fromZero: true,
 			series: of('voltage', thd)
@@ -143,6 +149,7 @@ function levelPanels(own: readonly AssessedColumns[], context: Context, step: nu
 		{
 			key: 'current-thd',
 			title: 'Current distortion',
+			unit: '%',
 			valueAxis: 'THD of current, % of the fundamental',
 			fromZero: true,
 			series: of('current', thd)
@@ -156,6 +163,7 @@ function powerPanels(scalars: readonly AnalysisScalarRow[], context: Context, st
 		{
 			key: 'active-power',
 			title: 'Active power',
+			unit: 'W',
 			valueAxis: 'Active power, W',
 			fromZero: true,
 			series: series('active-power')
@@ -163,6 +171,7 @@ function powerPanels(scalars: readonly AnalysisScalarRow[], context: Context, st
 		{
 			key: 'reactive-power',
 			title: 'Reactive power of the fundamental',
+			unit: 'var',
 			valueAxis: 'Q_1, var (positive: inductive)',
 			fromZero: true,
 			series: series('fundamental-reactive-power')
@@ -170,6 +179,7 @@ function powerPanels(scalars: readonly AnalysisScalarRow[], context: Context, st
 		{
 			key: 'power-factor',
 			title: 'Power factor',
+			unit: '',
 			valueAxis: 'Power factor P/S, true rms',
 			fromZero: false,
 			series: ratio(scalars, 'active-power', 'apparent-power', context, step)
@@ -189,6 +199,7 @@ function otherPanels(
 		{
 			key: 'unbalance',
 			title: 'Unbalance',
+			unit: '%',
 			valueAxis: 'Percent of the positive sequence',
 			fromZero: true,
 			series: [
@@ -200,6 +211,7 @@ function otherPanels(
 		{
 			key: 'crest',
 			title: 'Crest factor of the currents',
+			unit: '',
 			valueAxis: 'Greatest peak over rms',
 			fromZero: false,
 			series: crestFactors(own, scalars, context, step)
@@ -207,6 +219,7 @@ function otherPanels(
 		{
 			key: 'flicker',
 			title: 'Flicker, short term',
+			unit: '',
 			valueAxis: 'P_st',
 			fromZero: true,
 			series: scalarSeries(scalars, 'short-term-flicker', context, step)
@@ -214,6 +227,7 @@ function otherPanels(
 		{
 			key: 'long-flicker',
 			title: 'Flicker, long term',
+			unit: '',
 			valueAxis: 'P_lt',
 			fromZero: true,
 			series: scalarSeries(scalars, 'long-term-flicker', context, step)

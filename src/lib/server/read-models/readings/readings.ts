@@ -127,7 +127,7 @@ export async function readings(
 					rated:
 						point.demandCurrent_A === null
 							? null
-							: { current_A: point.demandCurrent_A, from: 'the maximum demand current I_L of the point' }
+							: { current_A: point.demandCurrent_A, from: 'the maximum demand current of the point' }
 				});
 			case 'interharmonics':
 				return interharmonicReadings(windows, await samples(), {

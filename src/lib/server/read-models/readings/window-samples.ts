@@ -28,20 +28,23 @@ export async function windowSamples(
 	captureStart_ms: number
 ): Promise<WindowSamples | null> {
 	const row = rows[0]!;
-	const index = windows[0]!;
-	const place = placeOf(row, index, summary, captureStart_ms);
-	if (!place) return null;
-	const { segment, start, length } = place;
-	const from = Math.max(segment.fromSample, Math.floor(start) - WHOLE_BAND_MARGIN - 1);
-	const to = Math.min(segment.toSample, Math.ceil(start + length) + WHOLE_BAND_MARGIN + 2);
-	if (start - from < WHOLE_BAND_MARGIN || to - start - length < WHOLE_BAND_MARGIN) return null;
+	// Taken together, the windows are shown by the first that has room for the interpolation on either side.
+	const found = windows
+		.slice(0, MOST_TRIED)
+		.map((index) => ({ index, ...placeOf(row, index, summary, captureStart_ms) }))
+		.find(
+			({ from, to, start, length }) =>
+				start - from >= WHOLE_BAND_MARGIN && to - start - length >= WHOLE_BAND_MARGIN
+		);
+	if (!found) return null;
+	const { index, samplingRate_Hz, from, to, start, length } = found;
 	const byChannel = new Map<number, Float64Array>();
 	for (const { channelIndex, offset_bytes } of summary.samples.channels) {
 		const bytes = await blobs.readSlice(summary.samples.sha256, offset_bytes + 4 * from, 4 * (to - from));
 		byChannel.set(channelIndex, Float64Array.from(bufferToFloat32(bytes)));
 	}
 	return {
-		samplingRate_Hz: segment.samplingRate_Hz,
+		samplingRate_Hz,
 		start: start - from,
 		length,
 		window: choice.window ?? index + 1,
@@ -49,6 +52,10 @@ export async function windowSamples(
 	};
 }
 
+/** Windows that are tried at most. */
+const MOST_TRIED = 5;
+
+/** Window and the samples around it, as far as its stretch holds them; NaN throughout where no stretch holds it. */
 function placeOf(
 	row: AnalysisSeriesRow,
 	index: number,
@@ -61,10 +68,15 @@ function placeOf(
 		({ start_s, fromSample, toSample, samplingRate_Hz }) =>
 			from_s >= start_s - 1e-6 && from_s + length_s <= start_s + (toSample - fromSample) / samplingRate_Hz
 	);
-	if (!segment) return null;
+	if (!segment) return { samplingRate_Hz: NaN, start: NaN, length: NaN, from: NaN, to: NaN };
+	const { samplingRate_Hz, fromSample, toSample, start_s } = segment;
+	const start = fromSample + (from_s - start_s) * samplingRate_Hz;
+	const length = length_s * samplingRate_Hz;
 	return {
-		segment,
-		start: segment.fromSample + (from_s - segment.start_s) * segment.samplingRate_Hz,
-		length: length_s * segment.samplingRate_Hz
+		samplingRate_Hz,
+		start,
+		length,
+		from: Math.max(fromSample, Math.floor(start) - WHOLE_BAND_MARGIN - 1),
+		to: Math.min(toSample, Math.ceil(start + length) + WHOLE_BAND_MARGIN + 2)
 	};
 }
