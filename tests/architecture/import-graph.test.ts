@@ -55,6 +55,8 @@ describe('the house', () => {
 			const lines = (source.get(file) ?? '')
 				.split('\n')
 				.filter((line) => line.trim() !== '' && !line.startsWith('//'));
+			// The compiler makes the module's exports of those of its entry file.
+			if (file.endsWith('/kernels/assembly/kernels.ts')) return false;
 			return file.endsWith('.ts') && lines.length > 0 && lines.every((line) => /^export .* from /.test(line));
 		});
 		expect(barrels).toEqual([]);

@@ -36,6 +36,7 @@ export function createWindowPool(threadFile: string): WindowPool {
 	const threadCount = availableParallelism();
 	const pool = new Piscina<ThreadTask, WindowBlock>({
 		filename: threadFile,
+		name: 'analyseWindows',
 		minThreads: 0,
 		maxThreads: threadCount,
 		idleTimeout: IDLE_MS,

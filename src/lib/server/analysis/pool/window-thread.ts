@@ -43,7 +43,7 @@ function buffersOf(value: unknown, found: Set<ArrayBuffer> = new Set()): Set<Arr
 }
 
 /** What the pool calls with each task. */
-export default function analyseWindows(task: ThreadTask): WindowBlock {
+export function analyseWindows(task: ThreadTask): WindowBlock {
 	const block = hold(task).analyst.analyse(task.windows);
 	const handedOver = {
 		get [transferableSymbol]() {
