@@ -1,9 +1,4 @@
-import {
-	designKaiserKernel,
-	designTaperKernel,
-	taperResponse,
-	type KaiserKernel
-} from '../numerics/resample/kaiser-kernel';
+import { designKaiserKernel, designTaperKernel, type KaiserKernel } from '../numerics/resample/kaiser-kernel';
 import { MAX_ORDER } from './intervals';
 
 /** Ripple and rejection of the interpolation: a millionth, two tens below what class I asks for. */
@@ -13,8 +8,6 @@ const ATTENUATION_DB = 120;
  * what it lets through from beyond half the rate lands there.
  */
 const USABLE_SHARE_OF_RATE = 0.45;
-/** Greatest droop of a bare taper at the highest line, as a factor. */
-const MOST_DROOP = 4;
 /** The fundamental may wander this much from its first estimate without leaving the kernel's passband. */
 const WANDER = 1.04;
 
@@ -64,7 +57,9 @@ export function designWindowSpectrum(
 		const outputRate = (points * frequency) / (WANDER * cyclesPerWindow);
 		const stopband = Math.min(1, outputRate) - passband;
 		if (stopband < 1.15 * passband || points < 2 * lineCount) continue;
-		const kernel = chooseKernel(passband, stopband);
+		const kernel =
+			designTaperKernel(passband, stopband, ATTENUATION_DB) ??
+			designKaiserKernel(passband, stopband, ATTENUATION_DB);
 		const cost = points * (2 * kernel.halfWidth + 12);
 		if (!best || cost < best.cost) best = { points, cost, kernel };
 	}
@@ -76,14 +71,4 @@ export function designWindowSpectrum(
 		lineCount,
 		kernel: best.kernel
 	};
-}
-
-/**
- * A bare taper where it droops little, a flat kernel elsewhere. What leaks from low orders of a wave that is not steady is
- * lifted by as much as the droop at high ones, so it has to stay small.
- */
-function chooseKernel(passband: number, stopband: number): KaiserKernel {
-	const taper = designTaperKernel(passband, stopband, ATTENUATION_DB);
-	const droop = taper ? taperResponse(taper, 0) / taperResponse(taper, passband) : Infinity;
-	return taper && droop <= MOST_DROOP ? taper : designKaiserKernel(passband, stopband, ATTENUATION_DB);
 }
