@@ -92,19 +92,26 @@ function* channelParts(
 	const { sampleCount } = source;
 	const view = viewChannel(source, channelIndex, CHUNK);
 	const blocks = overviewCount(sampleCount, OVERVIEW_BLOCK);
-	const least = new Float32Array(blocks).fill(NaN);
-	const greatest = new Float32Array(blocks).fill(NaN);
+	const least = new Float32Array(blocks);
+	const greatest = new Float32Array(blocks);
 	for (let from = 0; from < sampleCount; from += CHUNK) {
 		const to = Math.min(sampleCount, from + CHUNK);
 		view.cover(from, to);
+		const { samples, base } = view;
 		const out = new Float32Array(to - from);
-		for (let i = from; i < to; i++) {
-			const value = Math.fround(view.samples[i - view.base]! * toPrimary);
-			out[i - from] = value;
-			if (value !== value) continue;
-			const block = Math.floor(i / OVERVIEW_BLOCK);
-			if (!(value >= least[block]!)) least[block] = value;
-			if (!(value <= greatest[block]!)) greatest[block] = value;
+		for (let blockStart = from; blockStart < to; blockStart += OVERVIEW_BLOCK) {
+			const end = Math.min(to, blockStart + OVERVIEW_BLOCK);
+			let low = NaN;
+			let high = NaN;
+			for (let i = blockStart; i < end; i++) {
+				const value = Math.fround(samples[i - base]! * toPrimary);
+				out[i - from] = value;
+				if (value !== value) continue;
+				if (!(value >= low)) low = value;
+				if (!(value <= high)) high = value;
+			}
+			least[blockStart / OVERVIEW_BLOCK] = low;
+			greatest[blockStart / OVERVIEW_BLOCK] = high;
 		}
 		yield bytesOf(out);
 	}
