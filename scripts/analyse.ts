@@ -5,12 +5,12 @@ import { openCapture } from '../src/lib/recording/read-capture';
 import { err, ok, type Result } from '../src/lib/result';
 import { captureFiles, openFiles, sha256Of } from './analyse/capture-files';
 import { readCommandLine, USAGE, type CommandLine } from './analyse/command-line';
-import { judgedPoint, readPointFile } from './analyse/judged-point';
+import { readPointFile } from './analyse/read-point-file';
 
 const BAD_INPUT = 2;
 const OUR_MISTAKE = 1;
 
-function analyse(asked: CommandLine): Result<AnalysisDocument, string> {
+async function analyse(asked: CommandLine): Promise<Result<AnalysisDocument, string>> {
 	const paths = captureFiles(asked.files);
 	if (!paths.ok) return paths;
 	const facts = asked.pointPath === null ? null : readPointFile(asked.pointPath);
@@ -30,8 +30,11 @@ function analyse(asked: CommandLine): Result<AnalysisDocument, string> {
 		);
 		if (!opened.ok) return err(opened.problem.sentence);
 		const content = opened.value;
-		const nominal_Hz = stated_Hz ?? point?.nominalFrequency_Hz ?? frequencyOfFile(content.nominalFrequency_Hz);
-		const judged = point && judgedPoint(point, asked.limitSetName, nominal_Hz, timeZone);
+		const nominal_Hz =
+			stated_Hz ?? point?.nominalFrequency_Hz ?? frequencyOfFile(content.nominalFrequency_Hz);
+		// Limit tables bring a parser of formulas along, which takes seconds to load.
+		const limits = point && (await import('./analyse/judged-point'));
+		const judged = point && limits && limits.judgedPoint(point, asked.limitSetName, nominal_Hz, timeZone);
 		if (judged && !judged.ok) return judged;
 		return analysisDocument({
 			content,
@@ -50,11 +53,11 @@ function frequencyOfFile(stated_Hz: number | null): 50 | 60 | null {
 	return stated_Hz === 50 || stated_Hz === 60 ? stated_Hz : null;
 }
 
-function run(): Result<string, string> {
+async function run(): Promise<Result<string, string>> {
 	const asked = readCommandLine(process.argv.slice(2));
 	if (!asked.ok) return asked;
 	if (asked.value === 'help') return ok(USAGE);
-	const document = analyse(asked.value);
+	const document = await analyse(asked.value);
 	return document.ok ? ok(`${JSON.stringify(document.value, null, '\t')}\n`) : document;
 }
 
@@ -69,11 +72,12 @@ process.stdout.on('error', (cause: NodeJS.ErrnoException) => {
 });
 
 try {
-	const outcome = run();
+	const outcome = await run();
 	if (outcome.ok) process.stdout.write(outcome.value);
 	else fail(outcome.problem, BAD_INPUT);
 } catch (cause) {
 	const { code, message } = cause as NodeJS.ErrnoException;
-	if (code === 'EACCES' || code === 'EPERM') fail(`A file cannot be read (${message}); give yourself the right to.`, BAD_INPUT);
+	if (code === 'EACCES' || code === 'EPERM')
+		fail(`A file cannot be read (${message}); give yourself the right to.`, BAD_INPUT);
 	else fail(`The analysis failed on our side (${message}); report it with the files.`, OUR_MISTAKE);
 }

@@ -33,7 +33,8 @@ export function captureFiles(named: readonly string[]): Result<string[], string>
 		return err(
 			`${named.map((path) => basename(path)).join(', ')} belong to ${groups.length} captures; run the command once for each capture.`
 		);
-	return ok(distinct);
+	const order = groups[0]!;
+	return ok(distinct.sort((a, b) => order.indexOf(basename(a)) - order.indexOf(basename(b))));
 }
 
 function stemOf(path: string): string {

@@ -62,7 +62,9 @@ export function readCommandLine(args: readonly string[]): Result<CommandLine | '
 		return err(`--time-zone is the name of a zone such as Europe/London, not “${timeZone}”.`);
 	const start = values.start === undefined ? null : statedStart(values.start);
 	if (values.start !== undefined && start === null)
-		return err(`--start is a date and time such as 2024-03-05T10:20:30 or 2024-03-05T10:20:30Z, not “${values.start}”.`);
+		return err(
+			`--start is a date and time such as 2024-03-05T10:20:30 or 2024-03-05T10:20:30Z, not “${values.start}”.`
+		);
 	if (values['limit-set'] !== undefined && values.point === undefined)
 		return err('--limit-set needs the facts of a point to judge; add --point point.json.');
 	return ok({

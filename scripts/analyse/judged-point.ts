@@ -1,7 +1,7 @@
 import { readdirSync, readFileSync } from 'node:fs';
-import { basename } from 'node:path';
-import type { JudgedPoint } from '../../src/lib/analysis-document/assessment-entry';
-import { parsePointFile, type PointFile } from '../../src/lib/analysis-document/point-file';
+import type { JudgedPoint } from '../../src/lib/analysis-document/analysis-request';
+import { assessmentEntry, type ChosenLimits } from '../../src/lib/analysis-document/assessment-entry';
+import type { PointFile } from '../../src/lib/analysis-document/point-file';
 import { applicableSets } from '../../src/lib/limits/applicable-sets';
 import { limitSetByName } from '../../src/lib/limits/limit-set-name';
 import type { LimitSet } from '../../src/lib/limits/limit-set';
@@ -19,17 +19,6 @@ function publishedLimitSets(): LimitSet[] {
 		if (!parsed.ok) throw new Error(parsed.problem.sentence);
 		return parsed.value.limitSet;
 	});
-}
-
-/** Reads the facts of a point; a problem is a sentence. */
-export function readPointFile(path: string): Result<PointFile, string> {
-	let text: string;
-	try {
-		text = readFileSync(path, 'utf8');
-	} catch {
-		return err(`${path} cannot be read; name a JSON file with the facts of the point after --point.`);
-	}
-	return parsePointFile(basename(path), text);
 }
 
 /**
@@ -54,10 +43,17 @@ export function judgedPoint(
 			return err(
 				`${limitSet.standard} ${limitSet.edition} has no table “${unknown[0]}”; its tables are ${limitSet.tables.map((table) => table.key).join(', ')}.`
 			);
-		return ok({ facts, limitSet, reason: `Named ${named === null ? 'in the point file' : 'on the command line'}.` });
+		return ok(
+			judgedBy(facts, {
+				limitSet,
+				reason: `Named ${named === null ? 'in the point file' : 'on the command line'}.`
+			})
+		);
 	}
 	if (facts.tables !== null)
-		return err('The point file chooses tables but no limit set; add "limitSet" or name one with --limit-set.');
+		return err(
+			'The point file chooses tables but no limit set; add "limitSet" or name one with --limit-set.'
+		);
 	if (nominalFrequency_Hz === null)
 		return err(
 			'Without a limit set its choice needs the frequency; name one with --limit-set, or add "nominalFrequency_Hz" to the point file.'
@@ -70,6 +66,10 @@ export function judgedPoint(
 	};
 	const best = applicableSets(question, sets)[0];
 	return best
-		? ok({ facts, limitSet: best.limitSet, reason: best.reason })
+		? ok(judgedBy(facts, best))
 		: err('No published limit set suits this point by itself; name one with --limit-set.');
+}
+
+function judgedBy(facts: PointFile, limits: ChosenLimits): JudgedPoint {
+	return { facts, judge: (measured, series) => assessmentEntry(facts, limits, measured, series) };
 }

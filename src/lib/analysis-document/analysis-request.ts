@@ -1,10 +1,26 @@
+import type { IntervalSeries } from '../harmonics/intervals';
 import type { PointSystem } from '../harmonics/nominal-voltages';
 import type { SuggestionPoint } from '../recording/channel-suggestion';
 import { DEFAULT_PHASE_NAMES } from '../recording/phase';
 import type { OpenedCapture } from '../recording/read-capture';
 import type { RecordingStart } from '../recording/recording';
-import type { JudgedPoint } from './assessment-entry';
 import { likelySystem } from './channel-choice';
+import type { AssessmentEntry } from './document-schema';
+import type { PointFile } from './point-file';
+
+/** Facts that a point file may leave open and the measurement tells. */
+export interface MeasuredPointFacts {
+	system: PointSystem;
+	nominalFrequency_Hz: 50 | 60;
+	timeZone: string;
+}
+
+/** A point, and the judgement to be passed on what is measured there. */
+export interface JudgedPoint {
+	facts: PointFile;
+	/** As assessmentEntry does; handed in, because whoever asks for no assessment need not load what it takes. */
+	judge: (measured: MeasuredPointFacts, series: IntervalSeries[]) => AssessmentEntry;
+}
 
 /** All that an analysis document is made from. */
 export interface AnalysisRequest {

@@ -2,27 +2,19 @@ import { assess } from '../assessment/assess';
 import type { AssessedPoint, Assessment, UncertaintyStatement, VerdictRow } from '../assessment/assessment';
 import { chainUncertainty } from '../assessment/uncertainty-statement';
 import type { IntervalSeries } from '../harmonics/intervals';
-import type { PointSystem } from '../harmonics/nominal-voltages';
 import type { LimitSet } from '../limits/limit-set';
 import { toAssessedPoint } from '../register/assessed-point';
 import { chainOf } from '../uncertainty/survey-chain';
+import type { MeasuredPointFacts } from './analysis-request';
 import type { AssessmentEntry } from './document-schema';
 import type { PointFile } from './point-file';
 import { rounded } from './rounded';
 
-/** A point to be judged, with the limits that it is judged by. */
-export interface JudgedPoint {
-	facts: PointFile;
+/** The limits that a point is judged by. */
+export interface ChosenLimits {
 	limitSet: LimitSet;
 	/** Why this limit set. */
 	reason: string;
-}
-
-/** Facts that the file leaves open and the measurement tells. */
-export interface MeasuredPointFacts {
-	system: PointSystem;
-	nominalFrequency_Hz: 50 | 60;
-	timeZone: string;
 }
 
 /** The facts that choose tables and rows, and a sentence for each that was not stated. */
@@ -47,12 +39,17 @@ export function assessedPointOf(
 		nominalVoltage_V: facts.nominalVoltage_V,
 		nominalFrequency_Hz: facts.nominalFrequency_Hz ?? measured.nominalFrequency_Hz,
 		demand: facts.demand ?? entered(facts.demandCurrent_A, 'entered', 'demandCurrent_A'),
-		shortCircuit: facts.shortCircuit ?? entered(facts.shortCircuitCurrent_A, 'current', 'shortCircuitCurrent_A')
+		shortCircuit:
+			facts.shortCircuit ?? entered(facts.shortCircuitCurrent_A, 'current', 'shortCircuitCurrent_A')
 	});
 	return { point, assumptions };
 }
 
-function entered<Method extends string, Key extends string>(current_A: number | null, method: Method, key: Key) {
+function entered<Method extends string, Key extends string>(
+	current_A: number | null,
+	method: Method,
+	key: Key
+) {
 	if (current_A === null) return { method: 'unknown' as const };
 	return { method, [key]: current_A, source: '' } as { method: Method; source: string } & Record<Key, number>;
 }
@@ -77,7 +74,8 @@ function uncertaintyOf(facts: PointFile, nominalFrequency_Hz: 50 | 60): Uncertai
 
 /** Judges the intervals of a capture at a point. */
 export function assessmentEntry(
-	{ facts, limitSet, reason }: JudgedPoint,
+	facts: PointFile,
+	{ limitSet, reason }: ChosenLimits,
 	measured: MeasuredPointFacts,
 	series: IntervalSeries[]
 ): AssessmentEntry {

@@ -1,12 +1,14 @@
 import { captureFacts } from '../recording/capture-facts';
 import type { ReadRemark } from '../recording/recording';
-import { ok, type Result } from '../result';
+import { err, ok, type Result } from '../result';
 import { systemOf, type AnalysisRequest } from './analysis-request';
 import type { AnalysisDocument, RemarkEntry } from './document-schema';
 import { rounded } from './rounded';
 import { startInstant } from './start-instant';
 import { trendPart } from './trend-part';
 import { waveformPart } from './waveform-part';
+
+const ONE_DAY_S = 86_400;
 
 /**
  * Analyses one capture and says everything about it in one document; the same input gives the same document.
@@ -16,12 +18,16 @@ import { waveformPart } from './waveform-part';
 export function analysisDocument(request: AnalysisRequest): Result<AnalysisDocument, string> {
 	const { content, judged } = request;
 	const start = startInstant(content.start, request.start, request.timeZone);
+	const facts = captureFacts(content);
+	if (judged && !start && facts.duration_s >= ONE_DAY_S)
+		return err(
+			'Limits are judged by days of the calendar, and nothing tells when this capture began; add --start.'
+		);
 	const part =
 		content.kind === 'trend'
 			? trendPart(content, request, start!.start_ms)
 			: waveformPart(content, request, start?.start_ms ?? null);
 	if (!part.ok) return part;
-	const facts = captureFacts(content);
 	const { intervals, channels, assessment, ...rest } = part.value;
 	const rates = content.kind === 'trend' ? [] : content.segments.map((segment) => segment.samplingRate_Hz);
 	const remarks = [...content.remarks, ...(start?.remarks ?? []), ...(start ? [] : [withoutStart])];

@@ -2,6 +2,7 @@ import { crestFactor } from '../harmonics/crest-factor';
 import { hasFundamental, thd_pctOfFundamental } from '../harmonics/distortion';
 import { eddyLossFactor } from '../harmonics/losses/loss-factors';
 import { wrapDegrees } from '../harmonics/phasor';
+import { DEAD_SHARE } from '../harmonics/quality/dead-channel';
 import type { CaptureFindings } from '../harmonics/waveform-analysis';
 import type { CaptureSource } from '../recording/sample-source';
 import type { ChannelMeans } from './capture-means';
@@ -49,9 +50,19 @@ export function levelFields(levels: ChannelLevels): LevelFields {
 	};
 }
 
-/** Channels without signal have no frequency, distortion or angles of their own. */
-function silentChannels({ quality }: Pick<CaptureFindings, 'quality'>): Set<number | null> {
-	return new Set(quality.filter(({ code }) => code === 'dead-channel').map((remark) => remark.channelIndex));
+/**
+ * Channels so weak beside the strongest of their quantity that they hold noise: no frequency, distortion or angles of
+ * their own. Neutrals are no exception: what is left of a balanced load has no shape worth a figure.
+ */
+export function silentChannels(means: readonly ChannelMeans[]): Set<number> {
+	const level = ({ rms, dc }: ChannelMeans) => Math.sqrt(Math.max(0, rms * rms - dc * dc));
+	const strongest = { voltage: 0, current: 0 };
+	for (const one of means) {
+		const { quantity } = one.mapping;
+		if (level(one) > strongest[quantity]) strongest[quantity] = level(one);
+	}
+	const silent = means.filter((one) => !(level(one) > DEAD_SHARE * strongest[one.mapping.quantity]));
+	return new Set(silent.map(({ mapping }) => mapping.channelIndex));
 }
 
 /** Angle of the fundamental that all angles of the document are referred to; null where no voltage has one. */
@@ -60,7 +71,7 @@ export function referenceOf(
 	means: readonly ChannelMeans[],
 	findings: CaptureFindings
 ): { channelIndex: number; name: string; angle_deg: number } {
-	const silent = silentChannels(findings);
+	const silent = silentChannels(means);
 	const first = means
 		.filter(({ mapping, firstPhases_deg }) => {
 			if (mapping.quantity !== 'voltage' || mapping.phase === 'N') return false;
@@ -79,11 +90,11 @@ export function channelEntry(
 	source: CaptureSource,
 	means: ChannelMeans,
 	findings: CaptureFindings,
-	reference_deg: number
+	{ isSilent, reference_deg }: { isSilent: boolean; reference_deg: number }
 ): ChannelEntry {
 	const { channelIndex, quantity, toPrimary } = chosen.mapping;
 	const { rms, dc, peak, components, subgroups, firstPhases_deg } = means;
-	const hasSignal = rms > 0 && !silentChannels(findings).has(channelIndex);
+	const hasSignal = rms > 0 && !isSilent;
 	return {
 		name: source.channels[channelIndex]!.name,
 		unit: quantity === 'voltage' ? 'V' : 'A',

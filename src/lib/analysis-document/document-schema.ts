@@ -10,7 +10,9 @@ const quantity = z.enum(['voltage', 'current']);
 const phase = z.enum(PHASES);
 
 const remark = z.object({
-	severity: z.enum(['blocks', 'warns', 'notes']).describe('blocks: do not use the figures before it is mended'),
+	severity: z
+		.enum(['blocks', 'warns', 'notes'])
+		.describe('blocks: do not use the figures before it is mended'),
 	code: z.string().describe('stable name of the finding'),
 	channel: z.string().nullable().describe('name of the channel; null when the whole capture is meant'),
 	sentence: z.string()
@@ -19,7 +21,9 @@ const remark = z.object({
 const recording = z.object({
 	format: z.enum(['COMTRADE', 'delimited text']),
 	startTime: instant.nullable().describe('instant of the first sample, UTC; null where nothing tells it'),
-	samplingRate_Hz: figure.describe('of the first stretch; null for a log and where only time stamps tell the time'),
+	samplingRate_Hz: figure.describe(
+		'of the first stretch; null for a log and where only time stamps tell the time'
+	),
 	duration_s: z.number().describe('from the first sample to the end of the last one, gaps included'),
 	files: z.array(z.object({ name: z.string(), sha256: z.string().regex(/^[0-9a-f]{64}$/) })).min(1),
 	kind: z.enum(['waveform', 'trend']).describe('samples, or a log of values per interval'),
@@ -69,10 +73,14 @@ const channel = z.object({
 	orders: z.array(order),
 	use: z
 		.enum(['point', 'additional'])
-		.describe('point: conductor of the point, judged where a point is given; additional: measured and shown only'),
+		.describe(
+			'point: conductor of the point, judged where a point is given; additional: measured and shown only'
+		),
 	toPrimary: z.number().describe('factor from the recorded value to the primary one; figures are primary'),
 	mapping: z.string().describe('why this quantity, conductor and factor'),
-	kFactor: figure.describe('currents: Σh²I_h²/ΣI_h² over orders 1 to 50 (K at rated current); null for voltages')
+	kFactor: figure.describe(
+		'currents: Σh²I_h²/ΣI_h² over orders 1 to 50 (K at rated current); null for voltages'
+	)
 });
 
 const powers = z.object({
@@ -82,7 +90,9 @@ const powers = z.object({
 	fundamentalReactivePower_var: figure.describe('positive where the current lags'),
 	apparentPower_VA: figure.describe('U·I of a phase; effective apparent power S_e of three phases together'),
 	powerFactor: figure,
-	displacementFactor: figure.describe('of a phase cos φ1; of three phases together that of the positive sequence')
+	displacementFactor: figure.describe(
+		'of a phase cos φ1; of three phases together that of the positive sequence'
+	)
 });
 
 const event = z.object({
@@ -104,7 +114,9 @@ const row = z.object({
 	quantity,
 	order: z.union([z.number().int(), z.enum(['THD', 'TDD'])]).describe('harmonic order, or the total'),
 	phase,
-	statistic: z.string().describe('key of the statistical rule; snapshot where the capture is too short for any'),
+	statistic: z
+		.string()
+		.describe('key of the statistical rule; snapshot where the capture is too short for any'),
 	value_percent: figure,
 	limit_percent: figure,
 	utilisation: figure.describe('value on limit'),
@@ -153,7 +165,11 @@ export const analysisDocumentSchema = z.object({
 	schema: z.literal('analysis/1'),
 	engineVersion: z.string(),
 	nominalFrequency_Hz: z.union([z.literal(50), z.literal(60)]).nullable(),
-	highestOrder: z.number().int().nullable().describe('highest order that the sampling rate supports, at most 50'),
+	highestOrder: z
+		.number()
+		.int()
+		.nullable()
+		.describe('highest order that the sampling rate supports, at most 50'),
 	system: z.enum(['single-phase', 'split-phase', 'three-wire', 'four-wire']),
 	systemFrom: z.enum(['point', 'channels']).describe('channels: told from what was recorded'),
 	phaseReference: z.string().nullable().describe('name of the channel whose fundamental has phase 0'),
@@ -164,7 +180,10 @@ export const analysisDocumentSchema = z.object({
 		u0_percent: figure,
 		i2_percent: figure
 	}),
-	events: z.array(event).nullable().describe('null where no nominal voltage was given and nothing was looked for'),
+	events: z
+		.array(event)
+		.nullable()
+		.describe('null where no nominal voltage was given and nothing was looked for'),
 	flicker: z.array(flicker),
 	remarks: z.array(remark).describe('findings of the reader and of the analysis about the capture itself')
 });

@@ -75,7 +75,9 @@ export function parsePointFile(name: string, text: string): Result<PointFile, st
 	try {
 		json = JSON.parse(text.replace(/^\uFEFF/, ''));
 	} catch (cause) {
-		return err(`${name} is not valid JSON (${(cause as Error).message}); correct it as docs/analyse.md shows.`);
+		return err(
+			`${name} is not valid JSON (${(cause as Error).message}); correct it as docs/analyse.md shows.`
+		);
 	}
 	if (typeof json !== 'object' || json === null || Array.isArray(json))
 		return err(`${name} must hold one JSON object with the facts of the point, as docs/analyse.md shows.`);

@@ -6,9 +6,8 @@ import { suggestMappings, type MappingSuggestion } from '../recording/channel-su
 import type { Trend } from '../recording/recording';
 import { err, ok, type Result } from '../result';
 import { suggestionPointOf, type AnalysisRequest } from './analysis-request';
-import { assessmentEntry } from './assessment-entry';
 import { levelFields } from './channel-entry';
-import type { AnalysisDocument, ChannelEntry, RemarkEntry } from './document-schema';
+import type { ChannelEntry, RemarkEntry } from './document-schema';
 import { rounded } from './rounded';
 import type { CapturePart } from './waveform-part';
 
@@ -31,7 +30,9 @@ export function trendPart(
 	const converted = trendToIntervalSeries(trend, mappings, start_ms);
 	if (!converted.ok) return err(converted.problem.sentence);
 	const { series, sentences } = converted.value;
-	const tenMinute = series.map((one) => (one.interval === '3s' ? aggregateIntervals(one, '10min').series : one));
+	const tenMinute = series.map((one) =>
+		one.interval === '3s' ? aggregateIntervals(one, '10min').series : one
+	);
 	const twoHour = tenMinute.map((one) => aggregateIntervals(one, '2h').series);
 	const frequency_Hz = meanOf(trend.series.find(({ measure }) => measure.kind === 'frequency')?.values);
 	const nominalFrequency_Hz = nominalOf(trend, request, frequency_Hz);
@@ -52,8 +53,7 @@ export function trendPart(
 		channels: series.map((one) => trendChannel(one, trend, suggestions, frequency_Hz)),
 		...(judged &&
 			nominalFrequency_Hz && {
-				assessment: assessmentEntry(
-					judged,
+				assessment: judged.judge(
 					{ system: point.system, nominalFrequency_Hz, timeZone: request.timeZone },
 					all
 				)

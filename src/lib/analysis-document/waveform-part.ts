@@ -3,19 +3,15 @@ import type { QualityRemark } from '../harmonics/waveform-analysis';
 import type { CaptureSource } from '../recording/sample-source';
 import { err, ok, type Result } from '../result';
 import { suggestionPointOf, systemOf, type AnalysisRequest } from './analysis-request';
-import { assessmentEntry } from './assessment-entry';
 import { chooseChannels, type ChannelChoice, type ChosenChannel } from './channel-choice';
-import { channelEntry, referenceOf } from './channel-entry';
+import { channelEntry, referenceOf, silentChannels } from './channel-entry';
 import type { AnalysisDocument, ChannelEntry } from './document-schema';
 import { measureWaveform, type MeasuredWaveform } from './measure-waveform';
 import { powersEntries, unbalanceEntry } from './powers-entry';
 import { rounded } from './rounded';
 
 /** What depends on the kind of capture. */
-export type CapturePart = Omit<
-	AnalysisDocument,
-	'recording' | 'schema' | 'system' | 'systemFrom'
->;
+export type CapturePart = Omit<AnalysisDocument, 'recording' | 'schema' | 'system' | 'systemFrom'>;
 
 /** Remarks that hold for a channel by itself, whatever conductor it may belong to. */
 const OWN_REMARKS = new Set(['clipped', 'dead-channel', 'missing-samples', 'dc-offset', 'half-waves-differ']);
@@ -47,8 +43,7 @@ export function waveformPart(
 		intervals: counts,
 		channels: inFileOrder([...entries, ...(beside?.entries ?? [])]),
 		...(judged && {
-			assessment: assessmentEntry(
-				judged,
+			assessment: judged.judge(
 				{
 					system: point.system,
 					nominalFrequency_Hz: request.nominalFrequency_Hz ?? findings.nominalFrequency_Hz,
@@ -104,10 +99,16 @@ function entriesOf(
 	{ means, findings }: MeasuredWaveform,
 	reference_deg: number
 ): PlacedEntry[] {
-	return channels.map((chosen, c) => ({
-		channelIndex: chosen.mapping.channelIndex,
-		entry: channelEntry(chosen, use, source, means[c]!, findings, reference_deg)
-	}));
+	const silent = silentChannels(means);
+	return channels.map((chosen) => {
+		const { channelIndex } = chosen.mapping;
+		const own = means.find(({ mapping }) => mapping.channelIndex === channelIndex)!;
+		const isSilent = silent.has(channelIndex);
+		return {
+			channelIndex,
+			entry: channelEntry(chosen, use, source, own, findings, { isSilent, reference_deg })
+		};
+	});
 }
 
 function inFileOrder(entries: PlacedEntry[]): ChannelEntry[] {
@@ -140,7 +141,7 @@ function measureBeside(
 			choice.additional,
 			'additional',
 			source,
-			{ ...measured.value, means: means.slice(1) },
+			measured.value,
 			Number.isNaN(angle_deg) ? 0 : angle_deg
 		),
 		quality: findings.quality.filter(
@@ -170,7 +171,10 @@ function flickerEntries({ findings }: MeasuredWaveform): AnalysisDocument['flick
 	}));
 }
 
-function remarkEntries(quality: readonly QualityRemark[], source: CaptureSource): AnalysisDocument['remarks'] {
+function remarkEntries(
+	quality: readonly QualityRemark[],
+	source: CaptureSource
+): AnalysisDocument['remarks'] {
 	return quality.map(({ severity, code, channelIndex, sentence }) => ({
 		severity,
 		code,

@@ -3,7 +3,7 @@ import { rootMeanSquare } from '../../numerics/stats/root-mean-square';
 import type { ChannelAnalysis, QualityRemark } from '../waveform-analysis';
 
 /** A channel this much weaker than the strongest of its kind carries nothing worth a verdict. */
-const DEAD_SHARE = 1e-3;
+export const DEAD_SHARE = 1e-3;
 
 /** Channels without signal beside others of the same quantity that have one. */
 export function findDeadChannels(channels: readonly ChannelAnalysis[], names: PhaseNames): QualityRemark[] {
