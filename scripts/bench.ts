@@ -95,6 +95,7 @@ async function contest(
 		return {
 			startUp_s: contestant.startUp_s,
 			seconds,
+			cpu_s: median(list.map((pass) => pass.cpu_s)),
 			timesRealTime: capture.duration_s / seconds,
 			peakMemory_MB: (await contestant.ask<{ peak_MB: number }>('memory')).peak_MB,
 			windowCount,
@@ -102,10 +103,7 @@ async function contest(
 			fifth_pct
 		};
 	};
-	const analysis = {
-		...(await figuresOf(ours, passes.ours)),
-		cpu_s: median(passes.ours.map((pass) => pass.cpu_s))
-	};
+	const analysis = await figuresOf(ours, passes.ours);
 	const fixedWindow = other && (await figuresOf(other, passes.other));
 	await Promise.all([ours.end(), other?.end()]);
 	return { analysis, fixedWindow, ratio: fixedWindow && fixedWindow.seconds / analysis.seconds };

@@ -56,11 +56,13 @@ def main():
             answer = {"peak_MB": resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1024}
         else:
             begin = time.perf_counter()
+            busy = time.process_time()
             rms, subgroups, thd = measure(path, factors)
             seconds = time.perf_counter() - begin
             whole = np.sqrt((subgroups[0] ** 2).mean(axis=0))
             answer = {
                 "seconds": seconds,
+                "cpu_s": time.process_time() - busy,
                 "windowCount": int(rms.shape[1]),
                 "rms_V": float(np.sqrt((rms[0] ** 2).mean())),
                 "fifth_pct": float(100 * whole[4] / whole[0]),
