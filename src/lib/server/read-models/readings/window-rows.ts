@@ -14,6 +14,8 @@ export interface WindowChoice {
 	windowCount: number;
 	/** Counted from 1; null = all windows taken together. */
 	window: number | null;
+	/** Taken together, every n-th window stands for its neighbours; 1 for all of them. */
+	everyNth: number;
 	/** Place of the window in the capture; null for all together. */
 	place: { from_s: number; to_s: number; start_ms: number; flagged: boolean } | null;
 }
@@ -66,6 +68,7 @@ export async function windowRows(
 			cyclesPerWindow: summary.cyclesPerWindow,
 			windowCount: summary.windowCount,
 			window,
+			everyNth: at === null && counts.length > 1 ? stepFor(counts) : 1,
 			place: at === null ? null : placeOf(first, at.index, captureStart_ms(analysis))
 		}
 	};
@@ -73,6 +76,10 @@ export async function windowRows(
 
 /** Windows that are read at most for a view of a whole capture; beyond that every n-th stands for its neighbours. */
 const MOST_WINDOWS = 3200;
+
+function stepFor(counts: readonly number[]): number {
+	return Math.ceil(counts.reduce((sum, count) => sum + count, 0) / MOST_WINDOWS);
+}
 
 function placeInParts(counts: readonly number[], index: number): { part: number; index: number } {
 	let before = 0;
@@ -89,7 +96,7 @@ async function everyNthWindow(
 	analysisId: string,
 	counts: readonly number[]
 ): Promise<AnalysisSeriesRow[]> {
-	const step = Math.ceil(counts.reduce((sum, count) => sum + count, 0) / MOST_WINDOWS);
+	const step = stepFor(counts);
 	const thinned: AnalysisSeriesRow[][] = [];
 	for (const part of counts.keys()) {
 		const rows = await analyses.wholeSeriesOf(analysisId, 'window', part);
