@@ -2,7 +2,11 @@ import { describe, expect, it } from 'vitest';
 import { crestFactor } from '$lib/harmonics/crest-factor';
 import { tdd_pctOfDemandCurrent, thd_pctOfFundamental, thd_pctOfRms } from '$lib/harmonics/distortion';
 import { wrapDegrees } from '$lib/harmonics/phasor';
-import { lineToLineUnbalance_pct, sequenceComponents, unbalance } from '$lib/harmonics/sequence/sequence-components';
+import {
+	lineToLineUnbalance_pct,
+	sequenceComponents,
+	unbalance
+} from '$lib/harmonics/sequence/sequence-components';
 import { rootMeanSquare } from '$lib/numerics/stats/root-mean-square';
 import {
 	samplePeriod,
@@ -36,8 +40,10 @@ describe('THD and TDD', () => {
 		expect(Math.abs(thd_pctOfFundamental(row, 100, 50) - 21.4618265765)).toBeLessThan(1e-9);
 	});
 
-	it('on the rms: 52.1 % becomes 46.205 % (worked problem, public course text)', () => {
-		expect(Math.abs(thd_pctOfRms(52.1) - 46.20506838)).toBeLessThan(1e-7);
+	it('on the rms never reaches 100 %: equal parts of fundamental and harmonics give 1/√2 (definition)', () => {
+		expect(thd_pctOfRms(100)).toBeCloseTo(100 / Math.SQRT2, 12);
+		expect(thd_pctOfRms(1e9)).toBeLessThan(100 + 1e-9);
+		expect(thd_pctOfRms(0)).toBe(0);
 	});
 
 	it('a missing order is no zero, a missing fundamental no division', () => {
@@ -53,6 +59,8 @@ describe('THD and TDD', () => {
 describe('crest factor', () => {
 	// Ratios of peak to rms of the closed forms (mathematics). Blocks of 120° change half way between samples of the grid.
 	it.each([
+		['sine', Math.sin, Math.SQRT2],
+		['half-wave rectified', (theta: number) => Math.max(0, Math.sin(theta)), 2],
 		['square', squareWave, 1],
 		['triangle', triangleWave, 1.73205080757],
 		['six-pulse', sixPulseCurrent, 1.22474487139],

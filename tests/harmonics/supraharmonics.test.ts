@@ -47,6 +47,37 @@ describe('bands of 200 Hz between 2 and 9 kHz', () => {
 		});
 	});
 
+	it('hold next to nothing of a fundamental, wherever between the lines it lies, at any rate', () => {
+		let most = 0;
+		for (const rate_Hz of [6_400, 12_345, 51_200])
+			for (let frequency_Hz = 42.5; frequency_Hz <= 69; frequency_Hz += 1.7)
+				for (const start of [0, 1, 2, 3]) {
+					const samples = Float64Array.from(
+						{ length: Math.round(rate_Hz / 10) },
+						(_, n) => Math.SQRT2 * Math.cos((2 * Math.PI * frequency_Hz * n) / rate_Hz + start)
+					);
+					most = Math.max(most, ...supraharmonicsOf(samples, rate_Hz)!.rms);
+				}
+		expect(most).toBeLessThan(1e-6);
+	});
+
+	it('read a tone within 70 Hz of their centre within 1e-4, on a line or between lines', () => {
+		for (let distance_Hz = -70; distance_Hz <= 70; distance_Hz += 3.5) {
+			const { centres_Hz, rms } = supraharmonicsOf(tones([[6500 + distance_Hz, 1]]), RATE_HZ)!;
+			expect(Math.abs(rms[[...centres_Hz].indexOf(6500)]! - 1), `${distance_Hz} Hz`).toBeLessThan(1e-4);
+		}
+	});
+
+	it('keep apart from an order 100 Hz below them', () => {
+		expect(supraharmonicsOf(tones([[1899.3, 1]]), RATE_HZ)!.rms[0]).toBeLessThan(3e-4);
+	});
+
+	it('have no value where a sample is missing', () => {
+		const samples = tones([[4100, 1]]);
+		samples[7] = NaN;
+		expect([...supraharmonicsOf(samples, RATE_HZ)!.rms].every(Number.isNaN)).toBe(true);
+	});
+
 	it('share the power of a tone near a border', () => {
 		const { rms } = supraharmonicsOf(tones([[2204.9, 2]]), RATE_HZ)!;
 		expect(Math.abs(Math.hypot(rms[0]!, rms[1]!) / 2 - 1)).toBeLessThan(0.01);

@@ -2,6 +2,8 @@ import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import {
 	familyContent,
+	harmonicContent,
+	partialOddCurrent,
 	pwhd_pctOfFundamental,
 	tdd_pctOfDemandCurrent,
 	thd_pctOfFundamental,
@@ -103,6 +105,18 @@ describe('loss factors', () => {
 		expect(eddyLossFactor(row, 19)).not.toBeNaN();
 	});
 
+	it('of the theoretical six-pulse current (IEEE Std 519-1992): every order it has adds one to K', () => {
+		const one = example('ex-six-pulse-theoretical');
+		const row = rowOf({ '1': 100, ...one.recomputed_full_precision });
+		for (const [order, printed_pct] of Object.entries(one.expected))
+			expect(Math.abs(row[Number(order)]! - printed_pct), `order ${order}`).toBeLessThan(
+				one.tolerance as number
+			);
+		// 4/(nπ)·cos(nπ/6) over that of n = 1: the six-pulse block of 120° has 100/h percent by its Fourier integral.
+		expect(Math.abs(kFactor(row, 100, 25) / 9 - 1)).toBeLessThan(1e-8);
+		expect(Math.abs(kFactor(row, 100, 13) / 5 - 1)).toBeLessThan(1e-8);
+	});
+
 	it('lead to the next marked rating (UL 1561, ratings from secondary pages)', () => {
 		expect([1, 1.01, 4, 9.2, 50, 50.1].map(kRatingFor)).toEqual([1, 4, 4, 13, 50, null]);
 	});
@@ -119,6 +133,15 @@ describe('distortion of published currents', () => {
 			expectFigure(one, 'I_rms_A', Math.hypot(I1_A!, I_harm_A!));
 		}
 	});
+
+	it.each(['ex-distortion-factor-thd10', 'ex-distortion-factor-thd20', 'ex-distortion-factor-thd33'])(
+		'%s (Erickson & Maksimovic, 20.1): the share of the fundamental in the rms follows from the THD on it',
+		(id) => {
+			const one = example(id);
+			const onRms = thd_pctOfRms(one.inputs['thd_percent'] as number) / 100;
+			expectFigure(one, 'distortion_factor_percent', 100 * Math.sqrt(1 - onRms ** 2));
+		}
+	);
 
 	it('of a peak rectifier (Erickson & Maksimovic, fig. 20.7), with its loss factor and neutral current', () => {
 		const one = example('ex-peak-rectifier-thd');
@@ -141,6 +164,19 @@ describe('distortion of published currents', () => {
 		const one = example('ex-pwhd');
 		const row = rowOf({ '1': 100, ...(one.inputs['percent'] as object) });
 		expectFigure(one, 'PWHD_percent', pwhd_pctOfFundamental(row));
+		expectFigure(one, 'THD_percent_same_orders', (100 * harmonicContent(row, 14, 40)) / row[1]!);
+		row[13] = 50;
+		row[41] = 50;
+		expectFigure(one, 'PWHD_percent', pwhd_pctOfFundamental(row));
+	});
+
+	it('of odd orders 21 to 39 alone, where they stand by themselves', () => {
+		const row = rowOf({ 1: 100, 19: 9, 20: 9, 21: 3, 22: 9, 39: 4, 40: 9, 41: 9 });
+		expect(partialOddCurrent(row)).toBe(5);
+		row[38] = NaN;
+		expect(partialOddCurrent(row)).toBe(5);
+		row[37] = NaN;
+		expect(partialOddCurrent(row)).toBeNaN();
 	});
 });
 
@@ -150,6 +186,21 @@ describe('telephone influence', () => {
 		const row = rowOf(one.inputs['V_pu']);
 		expectFigure(one, 'TIF', telephoneInfluenceFactor(row, 60, 50));
 		expectFigure(one, 'VT_pu', telephoneProduct(row, 60, 50));
+	});
+
+	it('gives the orders of 50 Hz mains the weights of their frequencies, and no figure for a missing order', () => {
+		const row = rowOf({ 1: 1, 50: 0.01 });
+		expect(telephoneProduct(row, 50, 50)).toBeCloseTo(
+			Math.hypot(0.5 * (50 / 60), 0.01 * telephoneWeight(2500)),
+			12
+		);
+		// Between orders 41 and 43 of 60 Hz: P falls from 10340/12300 to 10600/12900 over 120 Hz.
+		const share = (2500 - 2460) / 120;
+		const P = (10340 / 12300) * (1 - share) + (10600 / 12900) * share;
+		expect(telephoneWeight(2500)).toBeCloseTo(5 * P * 2500, 8);
+		row[7] = NaN;
+		expect(telephoneProduct(row, 50, 50)).toBeNaN();
+		expect(telephoneInfluenceFactor(row, 50, 5)).not.toBeNaN();
 	});
 
 	it('interpolates the weight of a frequency between those of its neighbours, and knows none beyond 3 kHz', () => {
@@ -174,6 +225,14 @@ describe('cables whose neutral carries triplen current (IEC 60364-5-52, annex E)
 		}
 	);
 
+	it('counts the neutral where it governs: 44 % of 25 A asks for 38.4 A', () => {
+		// A public page on table 4Aa (pangonilo.com, 2015) prints 29.0 A here. It divides the line current by 0.86, although
+		// the rule it quotes takes the neutral current, 3·0.44·25 A = 33 A, between 33 and 45 %. Its figure is left out.
+		const loading = neutralLoading(25, 44)!;
+		expect(loading.neutralCurrent_A).toBeCloseTo(33, 12);
+		expect(loading.designCurrent_A).toBeCloseTo(33 / 0.86, 12);
+	});
+
 	it('counts a bound to the band below it, as BS 7671 prints', () => {
 		const bands = [15, 15.01, 33, 33.01, 45, 45.01].map((third) => {
 			const { governs, reductionFactor } = neutralLoading(100, third)!;
@@ -190,6 +249,8 @@ describe('smoothing of 1.5 s (IEC 61000-4-7, 5.5.1, coefficients from memory)', 
 		expect(stepped[0]).toBe(0);
 		expect(Math.abs(1 / stepped[1]! - 8.012)).toBeLessThan(0.002);
 		expect(Math.abs(stepped[2]! - (1 + 7.012 * stepped[1]!) / 8.012)).toBeLessThan(1e-4);
+		const gap = smoothWindows(Float64Array.of(2, NaN, 5, 5), 0.2);
+		expect([...gap]).toEqual([2, NaN, 5, 5]);
 		const after = (window_s: number) => 1 / smoothWindows(Float64Array.of(0, 1), window_s)[1]!;
 		expect(Math.abs(after(0.32) - 5.206)).toBeLessThan(0.002);
 		expect(Math.abs(after(16 / 60) - 6.14)).toBeLessThan(0.002);

@@ -63,7 +63,7 @@ export function telephoneWeight(frequency_Hz: number): number {
  * Telephone influence product √Σ(W_h·X_h)²: I·T of a current in A, V·T of a voltage in V. Give the phase currents for the
  * balanced product, three times the zero sequence by order for the residual one: they are two quantities.
  * row             rms by order, index = order
- * fundamental_Hz  measured or nominal
+ * fundamental_Hz  the nominal one: a measured 60.01 Hz would put order 50, one of the heaviest, beyond the table
  * toOrder         highest order counted; orders beyond 3000 Hz carry no weight and are not counted
  * returns         unit of the row; NaN when an order is missing
  * source          IEEE Std 519-1992, telephone interference (from memory)
