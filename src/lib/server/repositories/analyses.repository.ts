@@ -1,4 +1,5 @@
 import type { IntervalKind } from '../../harmonics/intervals';
+import { joinParts } from '../analysis/join-parts';
 import type { Db } from '../db/database';
 import { newId } from '../db/ids';
 import type { AnalysisRow, AnalysisScalarRow, AnalysisSeriesRow, StoredInterval } from '../db/rows';
@@ -22,6 +23,19 @@ export type AssessedColumns = Pick<AnalysisSeriesRow, (typeof ASSESSED_COLUMNS)[
 
 export type NewSeriesRow = Omit<AnalysisSeriesRow, 'id' | 'practice_id' | 'analysis_id'>;
 export type NewScalarRow = Omit<AnalysisScalarRow, 'id' | 'practice_id' | 'analysis_id'>;
+
+/** Windows that are read without being asked for by name: ten minutes of them, and some. */
+const MOST_WINDOWS = 3200;
+
+/** Rows in the order of their parts, those of one series joined. */
+function joinedParts(rows: readonly AssessedColumns[]): AssessedColumns[] {
+	const groups = new Map<string, AssessedColumns[]>();
+	for (const row of rows) {
+		const key = `${row.quantity}/${row.phase}/${row.interval}`;
+		groups.set(key, [...(groups.get(key) ?? []), row]);
+	}
+	return [...groups.values()].map((parts) => joinParts(parts));
+}
 
 /** What one span, or the end, of an analysis leaves behind. */
 export interface AnalysisPart {
@@ -92,17 +106,19 @@ export function analysesRepository(db: Db, scope: Scope) {
 				.select<AnalysisRow[]>('analyses.*');
 		},
 		/**
-		 * Series without the columns that only the readings page shows, parts in order of time.
-		 * intervals  when left out every kind, but the windows of a capture that has them in several parts (they are many)
+		 * Series without the columns that only the readings page shows, parts joined.
+		 * intervals  when left out every kind, but the windows of a capture that has very many of them
 		 */
 		async seriesOf(analysisId: string, intervals?: readonly IntervalKind[]): Promise<AssessedColumns[]> {
 			const query = db('analysis_series')
 				.where({ practice_id: scope.practiceId, analysis_id: analysisId })
 				.orderBy(['quantity', 'phase', 'interval', 'part'])
 				.select<AssessedColumns[]>(ASSESSED_COLUMNS);
-			if (intervals) return query.whereIn('interval', [...intervals]);
-			const windows = await this.windowCountsOf(analysisId);
-			return query.whereNotIn('interval', windows.length > 1 ? ['whole', 'window'] : ['whole']);
+			if (intervals) return joinedParts(await query.whereIn('interval', [...intervals]));
+			const windows = (await this.windowCountsOf(analysisId)).reduce((sum, count) => sum + count, 0);
+			return joinedParts(
+				await query.whereNotIn('interval', windows > MOST_WINDOWS ? ['whole', 'window'] : ['whole'])
+			);
 		},
 		/** Series of one kind with every column, for the readings page; one part of it, or all. */
 		async wholeSeriesOf(

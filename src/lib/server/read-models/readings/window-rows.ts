@@ -1,5 +1,6 @@
 import type { Phase } from '../../../recording/phase';
 import type { WaveformSummary } from '../../analysis/analysis-summary';
+import { INTERVAL_COLUMNS, joinParts } from '../../analysis/join-parts';
 import { bufferToFloat64 } from '../../analysis/series-codec';
 import type { Db } from '../../db/database';
 import type { AnalysisRow, AnalysisSeriesRow } from '../../db/rows';
@@ -105,26 +106,9 @@ async function everyNthWindow(
 	const parts = thinned.flat();
 	const channels = thinned[0] ?? [];
 	return channels.map((channel) =>
-		joinRows(parts.filter((row) => row.channel_index === channel.channel_index))
+		joinParts(parts.filter((row) => row.channel_index === channel.channel_index))
 	);
 }
-
-/** Columns that hold one value, or one row of values, per window. */
-const WINDOW_COLUMNS = [
-	'starts_ms',
-	'lengths_s',
-	'rms',
-	'frequency_hz',
-	'subgroups',
-	'flagged',
-	'components',
-	'interharmonic_subgroups',
-	'phases_deg',
-	'dc',
-	'peak',
-	'harmonic_groups',
-	'interharmonic_groups'
-] as const;
 
 function thinRow(row: AnalysisSeriesRow, step: number): AnalysisSeriesRow {
 	const kept = Math.ceil(row.interval_count / step);
@@ -135,20 +119,9 @@ function thinRow(row: AnalysisSeriesRow, step: number): AnalysisSeriesRow {
 		);
 	};
 	const out = { ...row, interval_count: kept };
-	for (const column of WINDOW_COLUMNS) {
+	for (const column of INTERVAL_COLUMNS) {
 		const bytes = row[column];
 		if (bytes !== null) out[column] = thin(bytes);
-	}
-	return out;
-}
-
-function joinRows(rows: readonly AnalysisSeriesRow[]): AnalysisSeriesRow {
-	const out = {
-		...rows[0]!,
-		interval_count: rows.reduce((sum, row) => sum + row.interval_count, 0)
-	};
-	for (const column of WINDOW_COLUMNS) {
-		if (out[column] !== null) out[column] = Buffer.concat(rows.map((row) => row[column]!));
 	}
 	return out;
 }
