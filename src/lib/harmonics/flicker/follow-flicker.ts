@@ -3,19 +3,24 @@ import type { CaptureSource } from '../../recording/sample-source';
 import { viewChannels, type ChannelsView } from '../engine/channel-view';
 import type { Stretch } from '../engine/stretches';
 import type { ChannelMapping } from '../waveform-analysis';
-import { Flickermeter, longTermIntervals, SETTLING_S, type FlickerInterval } from './flickermeter';
+import {
+	Flickermeter,
+	LEAST_SAMPLING_RATE_HZ,
+	longTermIntervals,
+	SETTLING_S,
+	type FlickerInterval
+} from './flickermeter';
 import type { Lamp } from './perception-filters';
 
 /** Flicker of one voltage of a capture. */
 export interface ChannelFlicker {
 	channelIndex: number;
 	phase: Phase;
+	/** Intervals measured far enough to have a Pst. */
 	shortTerm: FlickerInterval[];
 	longTerm: { start_ms: number; plt: number }[];
 }
 
-/** Lowest sampling rate that carries what the meter looks at (common practice). */
-const LEAST_RATE_HZ = 2000;
 const TEN_MINUTES_S = 600;
 /** Samples taken at a time. */
 const PIECE = 1 << 14;
@@ -50,7 +55,9 @@ export class FlickerFollower {
 				nominalFrequency_Hz,
 				lamp: lampFor(nominalFrequency_Hz, nominalVoltages_V.L1 ?? nominalVoltages_V[phase] ?? null),
 				start_ms: start_ms + 1000 * stretch.offset_s,
-				onInterval: (interval) => out.shortTerm.push(interval)
+				onInterval: (interval) => {
+					if (!Number.isNaN(interval.pst)) out.shortTerm.push(interval);
+				}
 			});
 			return { meter, out };
 		});
@@ -83,7 +90,7 @@ export function canMeasureFlicker(
 	{ samplingRate_Hz, fromSample, toSample, offset_s }: Stretch,
 	start_ms: number
 ): boolean {
-	if (samplingRate_Hz < LEAST_RATE_HZ) return false;
+	if (samplingRate_Hz < LEAST_SAMPLING_RATE_HZ) return false;
 	const start_s = start_ms / 1000 + offset_s + SETTLING_S;
 	const end_s = start_ms / 1000 + offset_s + (toSample - fromSample) / samplingRate_Hz;
 	const tick_s = Math.floor(start_s / TEN_MINUTES_S) * TEN_MINUTES_S;

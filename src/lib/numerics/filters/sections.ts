@@ -18,7 +18,7 @@ export interface AnalogueSection {
 }
 
 /**
- * Bilinear transform of a section.
+ * Bilinear transform of a section; of first order (b2 = a2 = 0) where the analogue one is.
  * rate_Hz   sampling rate
  * match_Hz  frequency at which the response of both is the same; 0 for the transform without prewarping
  * source    common practice
@@ -26,6 +26,11 @@ export interface AnalogueSection {
 export function bilinear(section: AnalogueSection, rate_Hz: number, match_Hz: number): Section {
 	const c = match_Hz > 0 ? (2 * Math.PI * match_Hz) / Math.tan((Math.PI * match_Hz) / rate_Hz) : 2 * rate_Hz;
 	const { n0, n1, n2, d0, d1, d2 } = section;
+	// As a second-order section it would carry a pole at half the rate that never dies, and a zero upon it.
+	if (n2 === 0 && d2 === 0) {
+		const norm = d0 + d1 * c;
+		return { b0: (n0 + n1 * c) / norm, b1: (n0 - n1 * c) / norm, b2: 0, a1: (d0 - d1 * c) / norm, a2: 0 };
+	}
 	const norm = d0 + d1 * c + d2 * c * c;
 	return {
 		b0: (n0 + n1 * c + n2 * c * c) / norm,
@@ -43,6 +48,17 @@ export function butterworthLowPass(order: number, corner_Hz: number): AnalogueSe
 		const damping = Math.sin((Math.PI * (2 * i + 1)) / (2 * order));
 		return { n0: w * w, n1: 0, n2: 0, d0: w * w, d1: 2 * damping * w, d2: 1 };
 	});
+}
+
+/** Two first-order sections (b2 = a2 = 0) in a row as one section of second order. */
+export function joinFirstOrder(one: Section, other: Section): Section {
+	return {
+		b0: one.b0 * other.b0,
+		b1: one.b0 * other.b1 + one.b1 * other.b0,
+		b2: one.b1 * other.b1,
+		a1: one.a1 + other.a1,
+		a2: one.a1 * other.a1
+	};
 }
 
 /** Magnitude of the response of sections in a row at one frequency. */
@@ -65,36 +81,67 @@ export function responseMagnitude(
 	return magnitude;
 }
 
-/** Runs sections in a row over samples; keeps its state between calls. */
+const PASS_THROUGH: Section = { b0: 1, b1: 0, b2: 0, a1: 0, a2: 0 };
+const COEFFICIENTS = 5;
+
+/**
+ * Runs sections in a row over samples (transposed direct form); keeps its state between calls, so that the result does not
+ * depend on how the samples are cut into calls. Two sections share a loop: each waits for its own last value, and the
+ * processor works on the other meanwhile.
+ */
 export class SectionCascade {
-	/** Per section the two stored values of the transposed direct form. */
+	/** [sections × 5] b0, b1, b2, a1, a2 */
+	private readonly coefficients: Float64Array;
+	/** [sections × 2] the two stored values of each section. */
 	private readonly state: Float64Array;
 
-	constructor(private readonly sections: readonly Section[]) {
-		this.state = new Float64Array(2 * sections.length);
+	constructor(sections: readonly Section[]) {
+		const even = sections.length % 2 === 0 ? sections : [...sections, PASS_THROUGH];
+		this.coefficients = Float64Array.from(even.flatMap(({ b0, b1, b2, a1, a2 }) => [b0, b1, b2, a1, a2]));
+		this.state = new Float64Array(2 * even.length);
 	}
 
 	/** Filters values[0 … count−1] in place. */
 	run(values: Float64Array, count: number): void {
-		const { sections, state } = this;
-		for (let s = 0; s < sections.length; s++) {
-			const { b0, b1, b2, a1, a2 } = sections[s]!;
-			let z1 = state[2 * s]!;
-			let z2 = state[2 * s + 1]!;
+		const { state } = this;
+		for (let s = 0; 2 * s < state.length; s += 2) {
+			const [b0, b1, b2, a1, a2] = this.sectionAt(s);
+			const [d0, d1, d2, c1, c2] = this.sectionAt(s + 1);
+			let y1 = state[2 * s]!;
+			let y2 = state[2 * s + 1]!;
+			let z1 = state[2 * s + 2]!;
+			let z2 = state[2 * s + 3]!;
 			for (let i = 0; i < count; i++) {
 				const x = values[i]!;
-				const y = b0 * x + z1;
-				z1 = b1 * x - a1 * y + z2;
-				z2 = b2 * x - a2 * y;
-				values[i] = y;
+				const y = b0 * x + y1;
+				y1 = b1 * x - a1 * y + y2;
+				y2 = b2 * x - a2 * y;
+				const z = d0 * y + z1;
+				z1 = d1 * y - c1 * z + z2;
+				z2 = d2 * y - c2 * z;
+				values[i] = z;
 			}
-			state[2 * s] = z1;
-			state[2 * s + 1] = z2;
+			state[2 * s] = y1;
+			state[2 * s + 1] = y2;
+			state[2 * s + 2] = z1;
+			state[2 * s + 3] = z2;
 		}
 	}
 
 	/** Forgets everything, as if nothing had ever come. */
 	reset(): void {
 		this.state.fill(0);
+	}
+
+	private sectionAt(index: number): readonly [number, number, number, number, number] {
+		const at = COEFFICIENTS * index;
+		const { coefficients } = this;
+		return [
+			coefficients[at]!,
+			coefficients[at + 1]!,
+			coefficients[at + 2]!,
+			coefficients[at + 3]!,
+			coefficients[at + 4]!
+		];
 	}
 }
