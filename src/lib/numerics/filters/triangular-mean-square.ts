@@ -25,6 +25,11 @@ export class TriangularMeanSquare {
 	 */
 	run(samples: Float64Array, from: number, to: number, means: Float64Array): number {
 		const { factor } = this;
+		// A triangle one sample wide.
+		if (factor === 1) {
+			for (let i = from; i < to; i++) means[i - from] = samples[i]! * samples[i]!;
+			return to - from;
+		}
 		const share = 1 / (factor * factor);
 		let { sum, sumOfSums, inGroup, rising } = this;
 		let count = 0;
