@@ -56,14 +56,12 @@ function openOnDisk() {
 	});
 	const opened = openCapture(handles);
 	if (!opened.ok || opened.value.kind !== 'waveform') throw new Error('not read');
-	const mappings = recording.channels.map(
-		(channel): ChannelMapping => ({
-			channelIndex: channel.index,
-			quantity: channel.quantity === 'voltage' ? 'voltage' : 'current',
-			phase: channel.phaseHint!,
-			toPrimary: 1
-		})
-	);
+	const mappings = recording.channels.map((channel): ChannelMapping => ({
+		channelIndex: channel.index,
+		quantity: channel.quantity === 'voltage' ? 'voltage' : 'current',
+		phase: channel.phaseHint!,
+		toPrimary: 1
+	}));
 	return { source: opened.value, mappings, close: () => handles.forEach((handle) => handle.close()) };
 }
 

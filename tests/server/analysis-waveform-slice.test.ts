@@ -50,7 +50,10 @@ function recording(samples: Float64Array, over: Partial<Recording> = {}): Record
 
 async function store(source: Recording, toPrimary = 1): Promise<SamplesLayout> {
 	const mappings = [{ channelIndex: 0, quantity: 'voltage' as const, phase: 'L1' as const, toPrimary }];
-	const { sha256 } = await blobs.putStream(samplesStream(sourceOf(source), mappings), Number.MAX_SAFE_INTEGER);
+	const { sha256 } = await blobs.putStream(
+		samplesStream(sourceOf(source), mappings),
+		Number.MAX_SAFE_INTEGER
+	);
 	return { sha256, ...layOutSamples(sourceOf(source), mappings) };
 }
 const ask = (layout: SamplesLayout, from_s: number, to_s: number, points: number) =>
