@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { analyseWaveform, analyseWaveformSteps, type AnalysisOptions } from '$lib/harmonics/analyse-waveform';
 import { ORDER_STRIDE } from '$lib/harmonics/intervals';
+import { wrapDegrees } from '$lib/harmonics/phasor';
 import { nominalVoltagesByPhase_V } from '$lib/harmonics/nominal-voltages';
 import type { ChannelMapping } from '$lib/harmonics/waveform-analysis';
 import type { Recording } from '$lib/recording/recording';
@@ -113,6 +114,30 @@ describe('a four-wire point with known truth', () => {
 		}
 		expect(seen).toEqual([10]);
 		expect(step.value).toEqual({ ok: true, value: analysis });
+	});
+
+	it('computes angles and powers for one instant where a channel is sampled later than the others', () => {
+		const skew_s = 37e-6;
+		const late = synthesiseRecording(point());
+		const turn = 2 * Math.PI * 50.03;
+		const current = late.channels[3]!;
+		// The very current of the other tests, taken 37 µs later than its instant says.
+		current.samples = current.samples.map((_, n) => {
+			const t = n / 12800 + skew_s;
+			const wave = (order: number, pct: number, phase_deg: number) =>
+				pct * Math.SQRT2 * Math.cos(order * (turn * t - (20 * Math.PI) / 180) + (phase_deg * Math.PI) / 180);
+			return wave(1, 100, 0) + wave(3, 12, 10) + wave(5, 20, 180) + wave(7, 14, -30);
+		});
+		current.skew_s = skew_s;
+		const skewed = analyse(late);
+		const at = (order: number) => 4 * ORDER_STRIDE + order;
+		for (const order of [1, 3, 5, 7]) {
+			const { phases_deg } = skewed.channels[3]!;
+			const turned = wrapDegrees(phases_deg[at(order)]! - analysis.channels[3]!.phases_deg[at(order)]!);
+			expect(Math.abs(turned), `order ${order}`).toBeLessThan(1e-3);
+		}
+		const power = (of: typeof analysis) => of.powers[0]!.activePower_W[4]!;
+		expect(Math.abs(power(skewed) / power(analysis) - 1)).toBeLessThan(1e-6);
 	});
 
 	it('scales and turns with the factor to primary values', () => {

@@ -20,6 +20,21 @@ export interface ChannelFigures {
 	fundamentalAngle_deg: Figure;
 }
 
+/** Totals of one phase, percent of the fundamental but for the partial odd current. */
+export interface TotalFigures {
+	phase: Phase;
+	label: string;
+	thd40_pct: Figure;
+	thd50_pct: Figure;
+	thds_pct: Figure;
+	thdg_pct: Figure;
+	pwhd_pct: Figure;
+	odd_pct: Figure;
+	even_pct: Figure;
+	triplen_pct: Figure;
+	partialOdd_A: Figure;
+}
+
 /** What the page's server part hands over about a waveform. */
 export interface WaveformFigures {
 	highestOrder: number;
@@ -36,4 +51,5 @@ export interface WaveformFigures {
 		limit_pct: Figure;
 		phases: { magnitude: Figure; pctOfFundamental: Figure; pctOfBasis: Figure; angle_deg: Figure }[];
 	}[];
+	totals: TotalFigures[];
 }

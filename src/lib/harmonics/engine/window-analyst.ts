@@ -54,6 +54,8 @@ export class WindowAnalyst {
 	private readonly feed: SampleFeed;
 	private readonly lines: Float64Array;
 	private readonly half: HalfCycles;
+	/** Per mapping: seconds by which its samples are taken later than their instant says. */
+	private readonly skews: number[];
 
 	constructor(
 		private readonly source: CaptureSource,
@@ -66,6 +68,7 @@ export class WindowAnalyst {
 		this.feed = new SampleFeed(source.samples, source.sampleCount, indexes, this.kernels);
 		this.lines = new Float64Array(plan.spectrum.lineCount);
 		this.half = createHalfCycles(plan.cyclesPerWindow);
+		this.skews = indexes.map((index) => source.channels[index]!.skew_s ?? 0);
 	}
 
 	/** windows  consecutive, in order of time; they may overlap at a tick */
@@ -106,6 +109,10 @@ export class WindowAnalyst {
 		);
 		const start = window.start - feed.base;
 		kernels.transformWindow(start, window.length / spectrum.points);
+		mappings.forEach((_, m) => {
+			const late = this.skews[m]! * stretch.samplingRate_Hz;
+			if (late !== 0) turnBack(kernels.spectra[m]!, spectrum.lineCount, late / window.length);
+		});
 		const complete = mappings.map((_, m) => this.fill(block, window, row, m, start));
 		const phase_deg = complete[reference]
 			? block.channels[reference]!.phases_deg[row * ORDER_STRIDE + 1]!
@@ -180,6 +187,22 @@ export function completeBlock(
 	block.channels.forEach((channel, m) => {
 		for (let w = 0; w < block.windows.length; w++) addWindow(block.sums[m]!, channel, w);
 	});
+}
+
+/**
+ * Turns every line back by the delay of its channel, so that angles and powers between channels are those of one instant.
+ * late  delay in lengths of the window: line k, with k cycles in it, turns by k·late
+ */
+function turnBack(spectrum: Float64Array, lineCount: number, late: number): void {
+	for (let k = 1; k < lineCount; k++) {
+		const angle = -2 * Math.PI * k * late;
+		const cos = Math.cos(angle);
+		const sin = Math.sin(angle);
+		const re = spectrum[2 * k]!;
+		const im = spectrum[2 * k + 1]!;
+		spectrum[2 * k] = re * cos - im * sin;
+		spectrum[2 * k + 1] = im * cos + re * sin;
+	}
 }
 
 function countMissing(samples: Float64Array, from: number, to: number): number {

@@ -141,7 +141,7 @@ function describeSkew(header: ComtradeHeader, remarks: ReadRemark[]): void {
 	remarks.push(
 		note(
 			'skew',
-			`${header.file} states that ${skewed.length === 1 ? 'one channel was' : `${skewed.length} channels were`} sampled later than the others (${list.join(', ')}${skewed.length > 6 ? ', …' : ''}); magnitudes are not affected, angles between channels are.`
+			`${header.file} states that ${skewed.length === 1 ? 'one channel was' : `${skewed.length} channels were`} sampled later than the others (${list.join(', ')}${skewed.length > 6 ? ', …' : ''}); angles and powers are computed for one instant.`
 		)
 	);
 }

@@ -7,6 +7,7 @@ import { baseValue, phaseBase, type ReadingBasis } from '../../analysis/reading-
 import { bufferToFloat64 } from '../../analysis/series-codec';
 import { channelValues, type ChannelValues } from '../../analysis/window-values';
 import type { AnalysisSeriesRow } from '../../db/rows';
+import { distortionTotals, type DistortionTotals } from './distortion-totals';
 import { figure, type Figure } from './reading-figure';
 import type { Quantity, WindowChoice, WindowRows } from './window-rows';
 
@@ -45,6 +46,8 @@ export interface WaveformReadings extends WindowChoice {
 	/** Phases of the chosen quantity, in the order of `orders[].phases`. */
 	phases: { phase: Phase; label: string; unit: 'V' | 'A' }[];
 	orders: { order: number; limit_pct: Figure; phases: OrderReading[] }[];
+	/** Of the chosen quantity, in the order of `phases`. */
+	totals: DistortionTotals[];
 }
 
 const UNIT = { voltage: 'V', current: 'A' } as const;
@@ -72,6 +75,12 @@ export function waveformReadings(
 		frequency_Hz: figure(windows.reduce((sum, i) => sum + frequencies[i]!, 0) / windows.length),
 		duration_s: summary.samples.duration_s,
 		channels: measured.map(({ row, values }) => channelOf(row, values, summary, context)),
+		totals: distortionTotals(
+			own.map(({ row }) => row),
+			windows,
+			summary.highestOrder,
+			context.label
+		),
 		phases: own.map(({ row }) => ({
 			phase: row.phase,
 			label: context.label(row.phase),
