@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { readWholeBand, WHOLE_BAND_MARGIN } from '$lib/harmonics/whole-band';
+import { drawWave, readWholeBand, WHOLE_BAND_MARGIN } from '$lib/harmonics/whole-band';
 
 describe('a window with all that the sampling rate carries', () => {
 	const rate_Hz = 20_000;
@@ -31,6 +31,21 @@ describe('a window with all that the sampling rate carries', () => {
 			expect(Math.abs(window.phases_deg[order]! - phase_deg), `order ${order}`).toBeLessThan(0.1);
 		}
 		expect(window.components[120]).toBeLessThan(2e-3);
+	});
+
+	it('draws the wave between the samples, so that all its orders together leave nothing out', () => {
+		const points = 640;
+		const cycles = 2;
+		const wave = drawWave(samples, start, (length * cycles) / 10, points);
+		for (let n = 0; n < points; n++) {
+			const angle = (2 * Math.PI * cycles * n) / points;
+			const expected = truth.reduce(
+				(sum, [order, rms, phase_deg]) =>
+					sum + rms * Math.SQRT2 * Math.cos(order * angle + (phase_deg * Math.PI) / 180),
+				1.5
+			);
+			expect(Math.abs(wave[n]! - expected), `point ${n}`).toBeLessThan(4e-3);
+		}
 	});
 
 	it('is no data when a sample is missing', () => {

@@ -37,12 +37,12 @@ export interface ShapeFigures {
 	waves: WaveFigures[];
 }
 
-/** Quick choices of orders, with the rule that each of them follows. */
+/** Quick choices of orders, with the rule that each of them follows; order 0 is dc. */
 export const ORDER_CHOICES: readonly { label: string; holds: (order: number) => boolean }[] = [
 	{ label: 'Fundamental', holds: (order) => order === 1 },
 	{ label: 'Odd', holds: (order) => order % 2 === 1 },
-	{ label: 'Even', holds: (order) => order % 2 === 0 },
-	{ label: 'Triplen', holds: (order) => order === 1 || order % 3 === 0 },
+	{ label: 'Even and dc', holds: (order) => order % 2 === 0 },
+	{ label: 'Triplen', holds: (order) => order > 0 && order % 3 === 0 },
 	{ label: '6n ± 1', holds: (order) => order % 6 === 1 || order % 6 === 5 },
 	{ label: 'All', holds: () => true },
 	{ label: 'None', holds: () => false }

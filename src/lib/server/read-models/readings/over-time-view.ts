@@ -325,8 +325,10 @@ function thinned(
 	const size = Math.max(1, step);
 	for (let from = 0; from < values.length; from += size) {
 		let at = from;
-		for (let i = from + 1; i < Math.min(values.length, from + size); i++)
-			if (!(Math.abs(values[i]! - mean) <= Math.abs(values[at]! - mean))) at = i;
+		for (let i = from + 1; i < Math.min(values.length, from + size); i++) {
+			const isFarther = Math.abs(values[i]! - mean) > Math.abs(values[at]! - mean);
+			if (isFarther || Number.isNaN(values[at]!)) at = i;
+		}
 		out.times_ms.push(times_ms[at]!);
 		out.values.push(figure(values[at]));
 	}

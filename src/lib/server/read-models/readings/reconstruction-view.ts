@@ -1,6 +1,6 @@
 import { findNotches } from '../../../harmonics/shape/notches';
 import { describeHalfWaveFault, waveSymmetry } from '../../../harmonics/shape/symmetry';
-import { readWholeBand } from '../../../harmonics/whole-band';
+import { drawWave, readWholeBand } from '../../../harmonics/whole-band';
 import type { Phase } from '../../../recording/phase';
 import type { AnalysisSeriesRow } from '../../db/rows';
 import { figure, type Figure } from './reading-figure';
@@ -48,7 +48,7 @@ export interface ReconstructionReadings {
 }
 
 const CYCLES_SHOWN = 2;
-const POINTS_SHOWN = 640;
+const POINTS_SHOWN = 1024;
 /** Orders offered for switching on and off. */
 const HIGHEST_OFFERED = 50;
 
@@ -89,7 +89,7 @@ function waveReading(
 	const offered = Math.min(HIGHEST_OFFERED, window.highestOrder);
 	const components = window.components.slice(0, offered + 1);
 	const phases_deg = window.phases_deg.slice(0, offered + 1);
-	const perShown = (window.wave.length * CYCLES_SHOWN) / cyclesPerWindow / POINTS_SHOWN;
+	const shown_samples = (samples.length * CYCLES_SHOWN) / cyclesPerWindow;
 	const channelIndex = row.channel_index ?? -1;
 	const symmetry = waveSymmetry({ dc: window.dc, components, phases_deg });
 	const fault = describeHalfWaveFault(symmetry, {
@@ -104,8 +104,8 @@ function waveReading(
 		label: label(row.phase),
 		quantity: row.quantity,
 		unit: row.quantity === 'voltage' ? 'V' : 'A',
-		wave: Array.from({ length: POINTS_SHOWN }, (_, i) =>
-			Number(window.wave[Math.round(i * perShown)]!.toPrecision(7))
+		wave: Array.from(drawWave(values, samples.start, shown_samples, POINTS_SHOWN), (value) =>
+			Number(value.toPrecision(7))
 		),
 		dc: window.dc,
 		components: Array.from(components, (value) => Number(value.toPrecision(7))),
