@@ -3,12 +3,19 @@ import { readFileSync, writeFileSync } from 'node:fs';
 import { format, resolveConfig } from 'prettier';
 import { simulateCoverage } from './uncertainty/coverage-simulation';
 import { CERTIFIED_SIMULATION, CLASS_SIMULATION } from './uncertainty/simulated-chains';
-import { coverageTable, simulationTable, uncertaintyTable, withTables } from './uncertainty/tables';
+import {
+	angleTable,
+	coverageTable,
+	simulationTable,
+	uncertaintyTable,
+	withTables
+} from './uncertainty/tables';
 
 const DOCUMENT = 'docs/uncertainty.md';
 
 const written = withTables(readFileSync(DOCUMENT, 'utf8'), {
 	uncertainties: uncertaintyTable(),
+	angles: angleTable(),
 	coverages: coverageTable(),
 	simulation: simulationTable(simulateCoverage(CERTIFIED_SIMULATION), simulateCoverage(CLASS_SIMULATION))
 });

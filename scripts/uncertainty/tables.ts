@@ -1,3 +1,4 @@
+import { angleBudget } from '../../src/lib/uncertainty/angle-budget';
 import { coverageOf, factorFor95, combine } from '../../src/lib/uncertainty/budget';
 import { bounded, certified, observed } from '../../src/lib/uncertainty/contribution';
 import { figureBudget, type Figure } from '../../src/lib/uncertainty/figure-budget';
@@ -59,6 +60,36 @@ export function uncertaintyTable(): string {
 				const { U } = figureBudget(column.chain, figure(column.quantity, order, 4, column.load_A));
 				return U === null ? 'not known' : ((100 * U) / 4).toFixed(2);
 			})
+		])
+	);
+}
+
+const ANGLE_COLUMNS: { head: string; chain: MeasuringChain; load_A: number | null }[] = [
+	{ head: 'class I, direct', chain: chain({}), load_A: null },
+	{ head: 'class I, coil 0.5 %', chain: chain({ currentSensorError_pct: 0.5 }), load_A: null },
+	{ head: 'class I, CT 0.5 at rated load', chain: TRANSFORMER, load_A: 1000 },
+	{ head: 'class I, CT 0.5 at 5 % load', chain: TRANSFORMER, load_A: 50 },
+	{
+		head: 'class I, CT 0.5 at rated load, inductive VT 0.5, 50 Hz',
+		chain: chain({
+			currentTransformerPrimary_A: 1000,
+			currentTransformerClass: 0.5,
+			voltageTransformerPrimary_V: 11_000,
+			voltageTransformerClass: 0.5
+		}),
+		load_A: 1000
+	}
+];
+
+/** U of the angle between voltage and current, degrees. */
+export function angleTable(): string {
+	return markdown(
+		['order', ...ANGLE_COLUMNS.map((column) => column.head)],
+		ORDERS.map((order) => [
+			String(order),
+			...ANGLE_COLUMNS.map(
+				(column) => angleBudget(column.chain, order, column.load_A).U?.toFixed(1) ?? 'not known'
+			)
 		])
 	);
 }

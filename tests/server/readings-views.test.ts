@@ -2,6 +2,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Actor } from '$lib/access/access';
 import type { ReadingView } from '$lib/server/read-models/readings/reading-views';
 import type { Readings } from '$lib/server/read-models/readings/readings';
+import { angleBudget } from '$lib/uncertainty/angle-budget';
 import { openWorld, practiceWithOwner, type World } from '../support/practice-world';
 import {
 	comtradeCapture,
@@ -78,6 +79,17 @@ describe('power and direction', () => {
 		// No voltage at the 7th: whatever noise says, nothing is indicated.
 		expect(orders[7]!.total).toMatchObject({ indication: 'undecided', reason: 'voltage-too-small' });
 		expect(orders[0]!.total!.indication).toBeNull();
+	});
+
+	it('states how well the angle is known, by the measuring chain of the survey', async () => {
+		const { orders, phases, direction } = await power();
+		const { U } = angleBudget(direction.chain, 5, direction.load_A);
+		// 400 A with 25 % of 5th and 9 % of 7th.
+		expect(Math.abs(direction.load_A! / (400 * Math.hypot(1, 0.25, 0.09)) - 1)).toBeLessThan(2e-3);
+		expect(Math.abs(orders[5]!.total!.angleUncertainty_deg! / U! - 1)).toBeLessThan(1e-6);
+		expect(orders[5]!.phases).toHaveLength(phases.length);
+		for (const phase of orders[5]!.phases)
+			expect(Math.abs(phase.angleUncertainty_deg! / U! - 1)).toBeLessThan(2e-3);
 	});
 
 	it('shows one window by its own figures', async () => {

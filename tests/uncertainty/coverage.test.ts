@@ -2,7 +2,7 @@ import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { simulateCoverage, type OrderCoverage } from '../../scripts/uncertainty/coverage-simulation';
 import { CERTIFIED_SIMULATION, CLASS_SIMULATION } from '../../scripts/uncertainty/simulated-chains';
-import { coverageTable, uncertaintyTable } from '../../scripts/uncertainty/tables';
+import { angleTable, coverageTable, uncertaintyTable } from '../../scripts/uncertainty/tables';
 
 /** Rows of the table between two markers of the document, cells without padding. */
 function tableOf(text: string, name: string): string[][] {
@@ -27,6 +27,7 @@ const DOCUMENT = readFileSync('docs/uncertainty.md', 'utf8');
 describe('the document', () => {
 	it.each([
 		['uncertainties', uncertaintyTable],
+		['angles', angleTable],
 		['coverages', coverageTable]
 	])('has the %s that the code gives today (npm run uncertainty)', (name, table) => {
 		const today = table().split('\n').map(cellsOf).filter(isNoRule);

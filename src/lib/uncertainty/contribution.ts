@@ -11,7 +11,12 @@ export const CONTRIBUTION_SOURCES = [
 	'basis',
 	'quantisation',
 	'window-noise',
-	'missing-intervals'
+	'missing-intervals',
+	'instrument-angle',
+	'voltage-transformer-angle',
+	'current-transformer-angle',
+	'voltage-sensor-angle',
+	'current-sensor-angle'
 ] as const;
 export type ContributionSource = (typeof CONTRIBUTION_SOURCES)[number];
 

@@ -49,6 +49,26 @@ export const SOURCE_WORDS: Record<ContributionSource, { name: string; note: stri
 	'missing-intervals': {
 		name: 'Intervals not measured',
 		note: 'Half the distance between the values one standard deviation of rank apart, times the root of the share that is missing.'
+	},
+	'instrument-angle': {
+		name: 'Recorder, between its channels',
+		note: 'IEC 61000-4-7 (from memory): 1° per order between two channels in class I. Class II states nothing; twice that is an assumption of this product.'
+	},
+	'voltage-transformer-angle': {
+		name: 'Voltage transformer, phase displacement',
+		note: 'Class after IEC 61869-3, IEEE C57.13 (from memory) at power frequency, and as much more for each further order: common practice, assumption of this product.'
+	},
+	'current-transformer-angle': {
+		name: 'Current transformer, phase displacement',
+		note: 'Class after IEC 61869-2, IEEE C57.13 at power frequency and the load that flowed; for each further order as much more as at rated load: common practice, assumption of this product.'
+	},
+	'voltage-sensor-angle': {
+		name: 'Voltage sensor of the recorder, phase displacement',
+		note: 'As a voltage transformer of the same ratio error (40 minutes for 1 %), and as much more for each further order: assumption of this product. The data sheet prevails.'
+	},
+	'current-sensor-angle': {
+		name: 'Current sensor of the recorder, phase displacement',
+		note: 'As a current transformer of the same ratio error at rated load (60 minutes for 1 %), and as much more for each further order: assumption of this product. The data sheet prevails.'
 	}
 };
 

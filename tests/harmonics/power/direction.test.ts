@@ -1,10 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import {
-	ASSUMED_ANGLE_UNCERTAINTY,
-	directionOf,
-	directionOfTotal,
-	type DirectionQuestion
-} from '$lib/harmonics/power/direction';
+import { directionOf, directionOfTotal, type DirectionQuestion } from '$lib/harmonics/power/direction';
 
 function asked(angle_deg: number, change: Partial<DirectionQuestion> = {}): DirectionQuestion {
 	const apparent = 5 * 20;
@@ -18,7 +13,7 @@ function asked(angle_deg: number, change: Partial<DirectionQuestion> = {}): Dire
 		activePower_W: apparent * Math.cos((angle_deg * Math.PI) / 180),
 		reactivePower_var: apparent * Math.sin((angle_deg * Math.PI) / 180),
 		agreeingShare: 1,
-		angleUncertainty: { fundamental_deg: 1, perOrder_deg: 1 },
+		angleUncertainty_deg: 5,
 		...change
 	};
 }
@@ -44,11 +39,12 @@ describe('the direction of an order is an indication', () => {
 		});
 	});
 
-	it('the same angle is decided at a low order and not at a high one', () => {
-		const uncertainty = ASSUMED_ANGLE_UNCERTAINTY;
-		const at = (order: number) => directionOf(asked(75, { order, angleUncertainty: uncertainty })).indication;
-		expect(at(5)).toBe('from-network');
-		expect(at(49)).toBe('undecided');
+	it('the same angle is decided where it is well known, and not where it is not', () => {
+		const at = (angleUncertainty_deg: number | null) => directionOf(asked(75, { angleUncertainty_deg }));
+		expect(at(14.9).indication).toBe('from-network');
+		expect(at(15.1).reason).toBe('angle-within-uncertainty');
+		expect(at(120).reason).toBe('angle-within-uncertainty');
+		expect(at(null)).toMatchObject({ indication: 'undecided', reason: 'angle-not-known' });
 	});
 
 	// Floors of IEC 61000-4-7, table 1, class I, from memory: 0.05 % of the voltage, 0.15 % of the current.

@@ -1,23 +1,5 @@
 import { ratioOf } from './apparent-power';
 
-/**
- * Uncertainty of the angle between voltage and current of one order, both transducers and the recorder together.
- * It grows with the order, as a delay and the phase error of instrument transformers do.
- */
-export interface AngleUncertainty {
-	/** Degrees at the fundamental. */
-	fundamental_deg: number;
-	/** Degrees more for every further order. */
-	perOrder_deg: number;
-}
-
-/**
- * What is assumed where nothing better is known: half a degree at the fundamental (instrument transformers of class
- * 0.5, 30 minutes of arc: IEC 61869-2 and -3, from memory) and as much again for each order (common practice: their
- * phase error is not specified above the fundamental).
- */
-export const ASSUMED_ANGLE_UNCERTAINTY: AngleUncertainty = { fundamental_deg: 0.5, perOrder_deg: 0.5 };
-
 /** Below these shares of the fundamental a level is not told from noise: floors of IEC 61000-4-7, table 1, class I (from memory). */
 export const NOISE_SHARE = { voltage: 0.0005, current: 0.0015 } as const;
 
@@ -39,7 +21,11 @@ export interface DirectionQuestion {
 	reactivePower_var: number;
 	/** Share of the windows in which the order's power has the same sign as here; 1 for a single window. */
 	agreeingShare: number;
-	angleUncertainty: AngleUncertainty;
+	/**
+	 * Expanded uncertainty (k = 2) of the angle between voltage and current at this order, transducers and recorder
+	 * together; null = not known, as beyond the reach of a voltage transformer.
+	 */
+	angleUncertainty_deg: number | null;
 	/** Orders of known parallel or series resonances, need not be whole; none when not known. */
 	resonances?: readonly number[];
 }
@@ -48,6 +34,7 @@ export type DirectionReason =
 	| 'no-data'
 	| 'voltage-too-small'
 	| 'current-too-small'
+	| 'angle-not-known'
 	| 'angle-within-uncertainty'
 	| 'windows-disagree'
 	| 'phases-disagree'
@@ -59,7 +46,8 @@ export interface DirectionIndication {
 	reason: DirectionReason;
 	/** Current behind voltage, degrees in (−180, 180]; beyond ±90 the power flows out. */
 	angle_deg: number;
-	angleUncertainty_deg: number;
+	/** As asked with; null = not known. */
+	angleUncertainty_deg: number | null;
 	/** |P_h|/(U_h·I_h): near zero the sign says little. */
 	activeShare: number;
 }
@@ -71,12 +59,11 @@ export interface DirectionIndication {
  *          source determination, IEEE Trans. Power Delivery 18(1), 2003 (from memory)
  */
 export function directionOf(question: DirectionQuestion): DirectionIndication {
-	const { order, voltage_V, current_A, activePower_W, reactivePower_var, angleUncertainty } = question;
+	const { order, voltage_V, current_A, activePower_W, reactivePower_var, angleUncertainty_deg } = question;
 	const angle_deg =
 		activePower_W === 0 && reactivePower_var === 0
 			? NaN
 			: (Math.atan2(reactivePower_var, activePower_W) * 180) / Math.PI;
-	const angleUncertainty_deg = angleUncertainty.fundamental_deg + angleUncertainty.perOrder_deg * (order - 1);
 	const activeShare = ratioOf(Math.abs(activePower_W), question.apparentPower_VA);
 	const said = (reason: DirectionReason, indication: DirectionIndication['indication'] = 'undecided') => ({
 		indication,
@@ -91,6 +78,7 @@ export function directionOf(question: DirectionQuestion): DirectionIndication {
 	if (!(current_A > NOISE_SHARE.current * question.fundamentalCurrent_A)) return said('current-too-small');
 	if (question.resonances?.some((at) => Math.abs(order - at) <= NEAR_RESONANCE * at))
 		return said('near-resonance');
+	if (angleUncertainty_deg === null) return said('angle-not-known');
 	// Distance from the quadrature on the scale of P itself: windows that scatter lower P against U·I, not the angle of the mean.
 	const fromQuadrature_deg = (Math.asin(Math.min(1, activeShare)) * 180) / Math.PI;
 	if (!(fromQuadrature_deg > angleUncertainty_deg)) return said('angle-within-uncertainty');

@@ -21,6 +21,7 @@ export const REASON_WORDS: Record<Reason, string> = {
 	'no-data': 'no data',
 	'voltage-too-small': 'voltage within the noise',
 	'current-too-small': 'current within the noise',
+	'angle-not-known': 'transducers not known at this order',
 	'angle-within-uncertainty': 'angle too near to 90°',
 	'windows-disagree': 'windows disagree',
 	'phases-disagree': 'phases disagree',

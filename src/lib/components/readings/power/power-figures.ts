@@ -1,6 +1,7 @@
 import type { DirectionIndication } from '$lib/harmonics/power/direction';
 import type { SinglePhasePower } from '$lib/harmonics/power/apparent-power';
 import type { ThreePhasePower } from '$lib/harmonics/power/effective-power';
+import type { MeasuringChain } from '$lib/uncertainty/measuring-chain';
 import type { Phase } from '$lib/recording/phase';
 
 /** null = no data, never zero. */
@@ -10,6 +11,7 @@ export interface OrderPowerFigures {
 	activePower_W: Figure;
 	reactivePower_var: Figure;
 	angle_deg: Figure;
+	angleUncertainty_deg: Figure;
 	activeShare: Figure;
 	indication: DirectionIndication['indication'] | null;
 	reason: DirectionIndication['reason'] | null;
@@ -33,5 +35,5 @@ export interface PowerFigures {
 		neutral: 'measured' | 'computed' | null;
 	} | null;
 	orders: { order: number; phases: OrderPowerFigures[]; total: OrderPowerFigures | null }[];
-	direction: { caveat: string; angleUncertainty: { fundamental_deg: number; perOrder_deg: number } };
+	direction: { caveat: string; chain: MeasuringChain; load_A: Figure };
 }

@@ -1,10 +1,8 @@
 import type { SinglePhasePower } from '../../../harmonics/power/apparent-power';
 import {
-	ASSUMED_ANGLE_UNCERTAINTY,
 	DIRECTION_CAVEAT,
 	directionOf,
 	directionOfTotal,
-	type AngleUncertainty,
 	type DirectionIndication,
 	type DirectionQuestion
 } from '../../../harmonics/power/direction';
@@ -12,6 +10,8 @@ import type { ThreePhasePower } from '../../../harmonics/power/effective-power';
 import type { OrderPowers } from '../../../harmonics/power/phase-sums';
 import { PointPowerSums, type PointPower, type SamplePowers_W } from '../../../harmonics/power/point-power';
 import type { Phase } from '../../../recording/phase';
+import { angleBudget } from '../../../uncertainty/angle-budget';
+import type { MeasuringChain } from '../../../uncertainty/measuring-chain';
 import { pointWindows, type PointContext } from './point-windows';
 import { figure, type Figure } from './reading-figure';
 import { listed, unmappedNotes } from './unmapped-notes';
@@ -26,6 +26,8 @@ export interface OrderPowerReading {
 	reactivePower_var: Figure;
 	/** Current behind voltage. */
 	angle_deg: Figure;
+	/** Expanded uncertainty of the angle, k = 2; null where it is not known. */
+	angleUncertainty_deg: Figure;
 	/** |P_h|/(U_h·I_h). */
 	activeShare: Figure;
 	/** Null at dc, which has no angle. */
@@ -55,7 +57,8 @@ export interface PowerReadings {
 	} | null;
 	/** Aligned with `phases`; index = order. */
 	orders: { order: number; phases: OrderPowerReading[]; total: OrderPowerReading | null }[];
-	direction: { caveat: string; angleUncertainty: AngleUncertainty };
+	/** What the uncertainty of the angles is made from; load_A: rms current of the phase that carries least. */
+	direction: { caveat: string; chain: MeasuringChain; load_A: Figure };
 }
 
 function shown<T extends object>(figures: T): Shown<T> {
@@ -64,18 +67,20 @@ function shown<T extends object>(figures: T): Shown<T> {
 	) as Shown<T>;
 }
 
-/** Powers of a point and the direction of its orders over the chosen windows. */
+/** Powers of a point and the direction of its orders over the chosen windows. chain: of the survey, for the angles. */
 export function powerReadings(
 	{ rows, windows }: WindowRows,
 	context: PointContext,
-	samplePowers_W: SamplePowers_W
+	samplePowers_W: SamplePowers_W,
+	chain: MeasuringChain
 ): PowerReadings {
 	const point = pointWindows(rows, context);
 	const sums = new PointPowerSums();
 	sums.add(point, windows, samplePowers_W);
 	const power = sums.finish();
 	const notes = unmappedNotes(point, context.label, 'its power is not known, and no total is stated.');
-	const direction = { caveat: DIRECTION_CAVEAT, angleUncertainty: ASSUMED_ANGLE_UNCERTAINTY };
+	const least_A = power ? Math.min(...power.phases.map(({ orders }) => load_A(orders))) : NaN;
+	const direction = { caveat: DIRECTION_CAVEAT, chain, load_A: figure(least_A) };
 	const common = { kind: 'power', highestOrder: context.highestOrder, direction } as const;
 	if (!power)
 		return {
@@ -96,7 +101,7 @@ export function powerReadings(
 			powers: shown(powers)
 		})),
 		total: power.total && totalReadings(power.total),
-		orders: orderReadings(power, context.highestOrder, direction.angleUncertainty)
+		orders: orderReadings(power, context.highestOrder, chain, least_A)
 	};
 }
 
@@ -130,14 +135,24 @@ function methodNotes(power: PointPower, { label, system }: PointContext): string
 	return notes;
 }
 
+/** rms current of a phase, what its current transformer is loaded with; interharmonics are not in it. */
+function load_A({ current_A }: OrderPowers): number {
+	return Math.sqrt(current_A.reduce((sum, level) => (Number.isNaN(level) ? sum : sum + level ** 2), 0));
+}
+
+/** The sum is no better known than the phase that carries least. */
 function orderReadings(
 	power: PointPower,
 	highestOrder: number,
-	angleUncertainty: AngleUncertainty
+	chain: MeasuringChain,
+	least_A: number
 ): PowerReadings['orders'] {
+	const angleUncertainty_deg = (order: number, load: number) =>
+		angleBudget(chain, order, Number.isNaN(load) ? null : load).U;
 	return Array.from({ length: highestOrder + 1 }, (_, order) => {
 		const phases = power.phases.map(({ orders }) => {
-			const indication = order > 0 ? directionOf(question(orders, order, angleUncertainty)) : null;
+			const known_deg = order > 0 ? angleUncertainty_deg(order, load_A(orders)) : null;
+			const indication = order > 0 ? directionOf(question(orders, order, known_deg)) : null;
 			return { indication, reading: orderReading(orders, order, indication) };
 		});
 		const all = power.total?.orders;
@@ -145,7 +160,7 @@ function orderReadings(
 			all && order > 0
 				? directionOfTotal(
 						{
-							...question(all, order, angleUncertainty),
+							...question(all, order, angleUncertainty_deg(order, least_A)),
 							apparentPower_VA: all.apparentPower_VA[order]!
 						},
 						phases.flatMap(({ indication }) => indication ?? [])
@@ -159,7 +174,11 @@ function orderReadings(
 	});
 }
 
-function question(orders: OrderPowers, order: number, angleUncertainty: AngleUncertainty): DirectionQuestion {
+function question(
+	orders: OrderPowers,
+	order: number,
+	angleUncertainty_deg: number | null
+): DirectionQuestion {
 	return {
 		order,
 		voltage_V: orders.voltage_V[order]!,
@@ -170,7 +189,7 @@ function question(orders: OrderPowers, order: number, angleUncertainty: AngleUnc
 		activePower_W: orders.activePower_W[order]!,
 		reactivePower_var: orders.reactivePower_var[order]!,
 		agreeingShare: orders.agreeingShare[order]!,
-		angleUncertainty
+		angleUncertainty_deg
 	};
 }
 
@@ -183,6 +202,7 @@ function orderReading(
 		activePower_W: figure(orders.activePower_W[order]),
 		reactivePower_var: order === 0 ? null : figure(orders.reactivePower_var[order]),
 		angle_deg: figure(found?.angle_deg),
+		angleUncertainty_deg: figure(found?.angleUncertainty_deg ?? undefined),
 		activeShare: figure(found?.activeShare),
 		indication: found?.indication ?? null,
 		reason: found?.reason ?? null

@@ -12,6 +12,7 @@ import type { Scope } from '../../repositories/scope';
 import type { BlobStore } from '../../storage/blob-store';
 import type { CaptureSurvey } from '../capture-list';
 import { intervalTrend, percentileTable, type IntervalTrend, type PercentileTable } from '../reading-trend';
+import { loadSurveyChain } from '../survey-chain';
 import { samplePowers_W } from './point-windows';
 import { powerReadings, type PowerReadings } from './power-view';
 import { interharmonicReadings, type InterharmonicReadings } from './interharmonics-view';
@@ -117,7 +118,12 @@ export async function readings(
 		const context = { system: survey.facts.system, highestOrder, label };
 		switch (view) {
 			case 'power':
-				return powerReadings(windows, context, await samplePowers_W(db, scope, analysis.id, windows.rows));
+				return powerReadings(
+					windows,
+					context,
+					await samplePowers_W(db, scope, analysis.id, windows.rows),
+					await loadSurveyChain(db, scope, survey.id)
+				);
 			case 'sequence':
 				return sequenceReadings(windows, context);
 			case 'losses':

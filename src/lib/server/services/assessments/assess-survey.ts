@@ -14,6 +14,7 @@ import {
 	type AssessmentInputRecord,
 	type StoredAssessment
 } from '../../repositories/assessments.repository';
+import { surveyChain } from '../../read-models/survey-chain';
 import { instrumentsRepository } from '../../repositories/instruments.repository';
 import { limitSetsRepository } from '../../repositories/limit-sets.repository';
 import { toPointFacts } from '../../repositories/point-mapping';
@@ -21,7 +22,7 @@ import { pointsRepository } from '../../repositories/points.repository';
 import type { Scope } from '../../repositories/scope';
 import { sitesRepository } from '../../repositories/sites.repository';
 import { surveysRepository } from '../../repositories/surveys.repository';
-import { STATED_ORDERS, surveyChain, surveyUncertainty } from './survey-uncertainty';
+import { STATED_ORDERS, surveyUncertainty } from './survey-uncertainty';
 
 /** Who asked for it; the worker acts for nobody in particular after an analysis. */
 export interface Assessor {
