@@ -108,7 +108,10 @@ export class WindowAnalyst {
 			Math.min(stretch.toSample, Math.ceil(end + Math.max(kernels.guard, 1.1 * cycle)) + 3)
 		);
 		const start = window.start - feed.base;
-		kernels.transformWindow(start, window.length / spectrum.points);
+		// Points stand in the middle of their steps: what is not synchronous jumps where the window closes, and a point on
+		// the jump would count whole at one end and not at all at the other. All lines turn by k halves of a step.
+		const step = window.length / spectrum.points;
+		kernels.transformWindow(start + step / 2, step);
 		mappings.forEach((_, m) => {
 			const late = this.skews[m]! * stretch.samplingRate_Hz;
 			if (late !== 0) turnBack(kernels.spectra[m]!, spectrum.lineCount, late / window.length);
@@ -167,7 +170,9 @@ export class WindowAnalyst {
 		const rows = block.halfCycles[m]!;
 		const { base } = feed;
 		const end = Math.min(source.sampleCount, setup.plan.stretch.toSample, base + kernels.shape.capacity);
-		const phase_deg = block.channels[m]!.phases_deg[row * ORDER_STRIDE + 1]!;
+		const { cyclesPerWindow, spectrum } = setup.plan;
+		const halfStep_deg = (180 * cyclesPerWindow) / spectrum.points;
+		const phase_deg = block.channels[m]!.phases_deg[row * ORDER_STRIDE + 1]! - halfStep_deg;
 		measureHalfCycles({ samples: kernels.samples[m]!, base, end }, window, phase_deg, half);
 		const size = Math.abs(setup.mappings[m]!.toPrimary);
 		rows.first[row] = half.first;
