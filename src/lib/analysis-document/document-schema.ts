@@ -19,7 +19,7 @@ const remark = z.object({
 });
 
 const recording = z.object({
-	format: z.enum(['COMTRADE', 'delimited text']),
+	format: z.enum(['COMTRADE', 'PQDIF', 'delimited text', 'WAV']),
 	startTime: instant.nullable().describe('instant of the first sample, UTC; null where nothing tells it'),
 	samplingRate_Hz: figure.describe(
 		'of the first stretch; null for a log and where only time stamps tell the time'

@@ -5,7 +5,8 @@ import { looksLikeCff } from './readers/comtrade/cff';
 import { looksLikeCfg, openComtrade, readComtrade } from './readers/comtrade/read-comtrade';
 import { readDelimitedText, type DelimitedTextOptions } from './readers/delimited-text/read-delimited-text';
 import { refuse } from './readers/read-problem';
-import type { CaptureContent, CaptureFile, ReadProblem, Trend } from './recording';
+import type { CaptureContent, CaptureFile, CapturePart, ReadProblem, Trend } from './recording';
+import type { SampleScratch } from './sample-scratch';
 import { sourceOf, type CaptureSource } from './sample-source';
 
 /** First bytes of files that are no captures, or of formats that are not read, with what to do instead. */
@@ -57,13 +58,49 @@ export function readCapture(
 /** A waveform whose samples are fetched when they are needed, or a trend log. */
 export type OpenedCapture = CaptureSource | Trend;
 
+export interface OpenOptions extends DelimitedTextOptions {
+	/** Key of the part wanted, as `openCaptureParts` named it; the first part where absent. */
+	part?: string;
+	/** Where decoded samples go; they are held in memory where absent. */
+	scratch?: SampleScratch;
+}
+
 /**
- * Opens one capture without holding more of it in memory than its format forces: binary COMTRADE stays in its file,
- * everything else is read as by `readCapture`.
+ * Opens everything that the files hold, without keeping more of it in memory than the format forces. One file can hold
+ * several recordings and trends; each becomes a capture of its own.
  */
+export function openCaptureParts(
+	files: readonly CaptureHandle[],
+	options: OpenOptions = {}
+): Result<CapturePart<OpenedCapture>[], ReadProblem> {
+	const single = openSingle(files, options);
+	return single.ok ? ok([{ key: '', title: '', content: single.value }]) : single;
+}
+
+/** Opens one part of what the files hold. */
 export function openCapture(
 	files: readonly CaptureHandle[],
-	options: DelimitedTextOptions = {}
+	options: OpenOptions = {}
+): Result<OpenedCapture, ReadProblem> {
+	const parts = openCaptureParts(files, options);
+	if (!parts.ok) return parts;
+	const { part: wanted } = options;
+	const part =
+		wanted === undefined ? parts.value[0] : parts.value.find((candidate) => candidate.key === wanted);
+	if (part !== undefined) return ok(part.content);
+	const name = files[0]?.name ?? '';
+	return refuse(
+		'part-missing',
+		name,
+		null,
+		`${name} no longer yields the part “${wanted ?? ''}” that this capture was made from. Upload the file again.`
+	);
+}
+
+/** Formats that hold one recording or one trend. */
+function openSingle(
+	files: readonly CaptureHandle[],
+	options: OpenOptions
 ): Result<OpenedCapture, ReadProblem> {
 	const streamed = openComtrade(files);
 	if (streamed !== null) return streamed;

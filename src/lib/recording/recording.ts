@@ -62,10 +62,13 @@ export interface RecordingStart {
 	utcOffset_min: number | null;
 }
 
+/** Open formats that are read. */
+export type CaptureFormat = 'COMTRADE' | 'PQDIF' | 'delimited text' | 'WAV';
+
 /** The one shape that leaves a reader of waveforms. */
 export interface Recording {
 	kind: 'waveform';
-	format: 'COMTRADE' | 'delimited text';
+	format: CaptureFormat;
 	/** e.g. "1999 BINARY", "2013 ASCII", "comma separated". */
 	variant: string;
 	stationName: string;
@@ -100,7 +103,7 @@ export interface TrendSeries {
 /** The one shape that leaves a reader of trend logs: values per interval over hours or days. */
 export interface Trend {
 	kind: 'trend';
-	format: 'delimited text';
+	format: CaptureFormat;
 	variant: string;
 	stationName: string;
 	recorderName: string;
@@ -120,6 +123,15 @@ export interface Trend {
 }
 
 export type CaptureContent = Recording | Trend;
+
+/** One of the recordings or trends that the files of a capture hold; most hold one. */
+export interface CapturePart<Content> {
+	/** Names the part for good within its files; empty where there is but one. */
+	key: string;
+	/** What tells it from the others, for people: "Waveforms, 15.36 kHz", "10-minute values"; empty for a single one. */
+	title: string;
+	content: Content;
+}
 
 /** A file handed to a reader: its name and its bytes. Readers never touch the disk. */
 export interface CaptureFile {

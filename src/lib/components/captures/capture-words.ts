@@ -1,10 +1,11 @@
 import type { CaptureFacts } from '$lib/recording/capture-facts';
 import { formatNumber } from '$lib/units/format';
 
-type Status = 'recognised' | 'queued' | 'analysing' | 'analysed' | 'failed';
+type Status = 'unread' | 'recognised' | 'queued' | 'analysing' | 'analysed' | 'failed';
 
 /** A capture's state: mark and word together, never colour alone. */
 export const STATUS_WORDS: Record<Status, { mark: string; word: string; tone: string }> = {
+	unread: { mark: '◐', word: 'columns to tell', tone: 'text-ochre' },
 	recognised: { mark: '◐', word: 'channels to confirm', tone: 'text-ochre' },
 	queued: { mark: '○', word: 'waiting for analysis', tone: 'text-slate' },
 	analysing: { mark: '○', word: 'being analysed', tone: 'text-slate' },

@@ -24,6 +24,7 @@ export interface PracticeRow {
 	allow_self_check: 0 | 1;
 	reliance_statement: string;
 	created_at: string;
+	storage_quota_bytes: number | null;
 }
 
 export interface UserRow {
@@ -256,6 +257,36 @@ export interface InstrumentRow {
 	archived_at: string | null;
 }
 
+export interface SensorRow {
+	id: string;
+	practice_id: string;
+	name: string;
+	kind: 'current-transformer' | 'clamp' | 'flexible-coil' | 'shunt' | 'voltage-transformer' | 'voltage-lead';
+	serial_number: string;
+	ratio_primary: number | null;
+	ratio_secondary: number | null;
+	secondary_unit: 'A' | 'V' | 'mV';
+	accuracy_class: string;
+	ratio_error_pct: number | null;
+	phase_error_deg: number | null;
+	highest_frequency_hz: number | null;
+	notes: string;
+	created_at: string;
+	archived_at: string | null;
+}
+
+export interface InstrumentChannelRow {
+	id: string;
+	practice_id: string;
+	instrument_id: string;
+	position: number;
+	name: string;
+	quantity: 'voltage' | 'current';
+	range_rms: number | null;
+	resolution_bits: number | null;
+	sensor_id: string | null;
+}
+
 export interface CalibrationRow {
 	id: string;
 	practice_id: string;
@@ -265,6 +296,10 @@ export interface CalibrationRow {
 	calibrated_on: string;
 	due_on: string;
 	created_at: string;
+	sensor_id: string | null;
+	certificate_sha256: string | null;
+	certificate_file_name: string | null;
+	note: string;
 }
 
 export interface SurveyRow {
@@ -303,10 +338,11 @@ export interface CaptureRow {
 	client_id: string;
 	survey_id: string;
 	name: string;
-	kind: 'waveform' | 'trend';
+	/** "table" while nobody has told what its columns are; the status is then "unread". */
+	kind: 'waveform' | 'trend' | 'table';
 	format: string;
 	variant: string;
-	status: 'recognised' | 'queued' | 'analysing' | 'analysed' | 'failed';
+	status: 'unread' | 'recognised' | 'queued' | 'analysing' | 'analysed' | 'failed';
 	facts_json: string;
 	mappings_json: string | null;
 	started_at: string | null;
@@ -316,6 +352,12 @@ export interface CaptureRow {
 	created_at: string;
 	updated_at: string;
 	removed_at: string | null;
+	part_key: string;
+	layout_json: string | null;
+	layout_template_id: string | null;
+	instrument_id: string | null;
+	pyramid_sha256: string | null;
+	pyramid_json: string | null;
 }
 
 export interface UploadRow {
@@ -327,6 +369,51 @@ export interface UploadRow {
 	size_bytes: number;
 	uploaded_by: string;
 	created_at: string;
+	from_archive: string | null;
+}
+
+export interface UploadSessionRow {
+	id: string;
+	practice_id: string;
+	survey_id: string;
+	name: string;
+	size_bytes: number;
+	received_bytes: number;
+	expected_sha256: string | null;
+	status: 'receiving' | 'arrived' | 'failed';
+	problem: string | null;
+	upload_id: string | null;
+	uploaded_by: string;
+	created_at: string;
+	updated_at: string;
+}
+
+export interface LayoutTemplateRow {
+	id: string;
+	practice_id: string;
+	name: string;
+	headings_json: string;
+	layout_json: string;
+	created_by: string;
+	created_at: string;
+	updated_at: string;
+	last_used_at: string | null;
+	used_count: number;
+	archived_at: string | null;
+}
+
+export interface CheckOverruleRow {
+	id: string;
+	practice_id: string;
+	survey_id: string;
+	capture_id: string | null;
+	code: string;
+	channel_index: number | null;
+	reason: string;
+	overruled_by: string;
+	created_at: string;
+	withdrawn_at: string | null;
+	withdrawn_by: string | null;
 }
 
 export interface CaptureFileRow {
@@ -604,12 +691,17 @@ declare module 'knex/types/tables' {
 		sites: SiteRow;
 		points: PointRow;
 		instruments: InstrumentRow;
+		sensors: SensorRow;
+		instrument_channels: InstrumentChannelRow;
 		calibrations: CalibrationRow;
 		surveys: SurveyRow;
 		number_sequences: NumberSequenceRow;
 		stored_files: StoredFileRow;
 		captures: CaptureRow;
 		uploads: UploadRow;
+		upload_sessions: UploadSessionRow;
+		layout_templates: LayoutTemplateRow;
+		check_overrules: CheckOverruleRow;
 		capture_files: CaptureFileRow;
 		analyses: AnalysisRow;
 		analysis_series: AnalysisSeriesRow;

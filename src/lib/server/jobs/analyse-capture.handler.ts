@@ -15,6 +15,7 @@ import { captureSurvey, type CaptureSurvey } from '../read-models/capture-list';
 import { analysesRepository } from '../repositories/analyses.repository';
 import { capturesRepository } from '../repositories/captures.repository';
 import { openFileHandle, type FileHandle } from '../storage/file-handle';
+import { createScratchFolder, scratchRoot } from '../storage/scratch-folder';
 import { storedFilesRepository } from '../repositories/stored-files.repository';
 import { releaseCapture } from '../services/captures.service';
 import { analyseCapture } from './analyse-capture.job';
@@ -61,14 +62,18 @@ async function openOriginals(
 	const total_bytes = files.reduce((sum, file) => sum + file.size_bytes, 0);
 	let done_bytes = 0;
 	const handles: FileHandle[] = [];
-	const close = () => handles.forEach((handle) => handle.close());
+	const scratch = createScratchFolder(scratchRoot(container.config.dataDir));
+	const close = () => {
+		handles.forEach((handle) => handle.close());
+		scratch.close();
+	};
 	try {
 		for (const file of files) {
 			await context.progress(done_bytes, total_bytes + 1, `reading ${file.name}`);
 			handles.push(openFileHandle(file.name, await container.blobs.localFile(file.sha256)));
 			done_bytes += file.size_bytes;
 		}
-		const opened = openCapture(handles);
+		const opened = openCapture(handles, { part: capture.part_key, scratch });
 		if (!opened.ok) throw new JobFailed(opened.problem.sentence);
 		return { content: opened.value, close };
 	} catch (cause) {

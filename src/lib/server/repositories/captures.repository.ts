@@ -6,8 +6,20 @@ import type { Scope } from './scope';
 export interface NewCapture {
 	capture: Omit<
 		CaptureRow,
-		'id' | 'practice_id' | 'status' | 'mappings_json' | 'problem' | 'removed_at' | 'updated_at'
-	>;
+		| 'id'
+		| 'practice_id'
+		| 'status'
+		| 'mappings_json'
+		| 'problem'
+		| 'removed_at'
+		| 'updated_at'
+		| 'layout_json'
+		| 'layout_template_id'
+		| 'instrument_id'
+		| 'pyramid_sha256'
+		| 'pyramid_json'
+	> &
+		Partial<Pick<CaptureRow, 'status' | 'layout_json' | 'layout_template_id'>>;
 	files: { name: string; sha256: string; size_bytes: number }[];
 }
 
@@ -45,10 +57,10 @@ export function capturesRepository(db: Db, scope: Scope) {
 		async add({ capture, files }: NewCapture): Promise<string> {
 			const id = newId();
 			await db('captures').insert({
+				status: 'recognised',
 				...capture,
 				id,
 				practice_id: scope.practiceId,
-				status: 'recognised',
 				updated_at: capture.created_at
 			});
 			for (const [position, file] of files.entries())

@@ -1,7 +1,7 @@
 import type { Db } from '../db/database';
 import type { PracticeRow } from '../db/rows';
 
-export type PracticeSettings = Omit<PracticeRow, 'id' | 'created_at'>;
+export type PracticeSettings = Omit<PracticeRow, 'id' | 'created_at' | 'storage_quota_bytes'>;
 
 /** The practice itself: letterhead and house rules. */
 export function practiceRepository(db: Db, scope: { practiceId: string }) {

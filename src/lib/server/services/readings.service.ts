@@ -4,7 +4,6 @@ import { AppError, requireFound } from '../app-error';
 import { parseSummary } from '../analysis/analysis-summary';
 import { readWaveformSlice, type WaveformRange, type WaveformSlice } from '../analysis/waveform-slice';
 import { requirePermission } from '../auth/require-permission';
-import type { CaptureRow } from '../db/rows';
 import { captureSurvey } from '../read-models/capture-list';
 import { READING_VIEWS, type ReadingView } from '../read-models/readings/reading-views';
 import { readings, type Readings, type ReadingsQuestion } from '../read-models/readings/readings';
@@ -16,7 +15,7 @@ import type { ServiceDeps } from '../service-deps';
 export interface ReadingsPage {
 	survey: { id: string; timeZone: string; phaseNames: PhaseNames; advisory: boolean };
 	/** Captures of the survey that have been analysed, and how many have not. */
-	captures: { id: string; name: string; kind: CaptureRow['kind']; startedAt: string | null }[];
+	captures: { id: string; name: string; kind: 'waveform' | 'trend'; startedAt: string | null }[];
 	notAnalysed: number;
 	/** The capture shown; null when none has been analysed. */
 	captureId: string | null;
@@ -52,12 +51,9 @@ export function createReadingsService({ db, blobs }: ServiceDeps) {
 				phaseNames: survey.facts.phaseNames,
 				advisory: survey.facts.kind === 'in-plant'
 			},
-			captures: captures.map((row) => ({
-				id: row.id,
-				name: row.name,
-				kind: row.kind,
-				startedAt: row.started_at
-			})),
+			captures: captures.flatMap(({ id, name, kind, started_at: startedAt }) =>
+				kind === 'table' ? [] : [{ id, name, kind, startedAt }]
+			),
 			notAnalysed: rows.length - captures.length,
 			captureId: shown?.id ?? null,
 			view: asked.view,

@@ -119,7 +119,8 @@ export function createUploadsService(deps: ServiceDeps) {
 				sha256: blob.sha256,
 				size_bytes: blob.size_bytes,
 				uploaded_by: actor.userId,
-				created_at: now.toISOString()
+				created_at: now.toISOString(),
+				from_archive: null
 			});
 		});
 		return { id, name, ...blob };
