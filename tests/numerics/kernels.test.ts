@@ -20,8 +20,17 @@ const FORMS = [
 	['script', createScriptKernels],
 	['WebAssembly', createWasmKernels]
 ] as const;
-const FORMATS: RawFormat[] = ['int16', 'int32', 'float32'];
-const VALUE_BYTES = { int16: 2, int32: 4, float32: 4 };
+const FORMATS: [RawFormat, { lowestIsValue?: boolean }][] = [
+	['int16', {}],
+	['int32', {}],
+	['float32', {}],
+	['uint8', {}],
+	['int16', { lowestIsValue: true }],
+	['int24', {}],
+	['int32', { lowestIsValue: true }],
+	['float64', {}]
+];
+const VALUE_BYTES = { uint8: 1, int16: 2, int24: 3, int32: 4, float32: 4, float64: 8 };
 
 function shapeOf(changes: Partial<KernelShape>): KernelShape {
 	return {
@@ -193,7 +202,7 @@ describe.each(FORMS)('signal kernels in %s', (_form, create) => {
 		}
 	});
 
-	it.each(FORMATS)('decode rows of %s, missing values as NaN', (format) => {
+	it.each(FORMATS)('decode rows of %s, missing values as NaN, %j', (format, marks) => {
 		fc.assert(
 			fc.property(
 				fc.integer({ min: 1, max: 9 }),
@@ -212,6 +221,7 @@ describe.each(FORMS)('signal kernels in %s', (_form, create) => {
 					const order = Array.from({ length: channelCount }, (_, c) => (shuffled ? channelCount - c : c));
 					const layout: RowLayout = {
 						format,
+						...marks,
 						rowBytes,
 						offsets: order.map((place) => head + place * bytes),
 						factors: order.map(() => random.normal()),
@@ -230,12 +240,23 @@ describe.each(FORMS)('signal kernels in %s', (_form, create) => {
 							if (format === 'int16') {
 								if (missing) view.setInt16(place, -32768, true);
 								const value = view.getInt16(place, true);
-								return value === -32768 ? NaN : factor * value + addition;
+								return value === -32768 && !marks.lowestIsValue ? NaN : factor * value + addition;
 							}
 							if (format === 'int32') {
 								if (missing) view.setInt32(place, -2147483648, true);
 								const value = view.getInt32(place, true);
-								return value === -2147483648 ? NaN : factor * value + addition;
+								return value === -2147483648 && !marks.lowestIsValue ? NaN : factor * value + addition;
+							}
+							if (format === 'uint8') return factor * view.getUint8(place) + addition;
+							if (format === 'int24') {
+								const [low, middle, high] = [0, 1, 2].map((byte) => view.getUint8(place + byte));
+								const value = low! + 256 * middle! + 65_536 * high!;
+								return factor * (value < 2 ** 23 ? value : value - 2 ** 24) + addition;
+							}
+							if (format === 'float64') {
+								if (missing) view.setFloat64(place, [NaN, Infinity, -Infinity][row % 3]!, true);
+								const value = view.getFloat64(place, true);
+								return Number.isFinite(value) ? factor * value + addition : NaN;
 							}
 							if (missing) view.setFloat32(place, [NaN, Infinity, -Infinity][row % 3]!, true);
 							const value = view.getFloat32(place, true);

@@ -16,8 +16,10 @@ export interface RowSamples {
 	layout: RowLayout;
 	/** Fills the start of `into` with rows [fromRow, fromRow + count); throws when the bytes cannot be had. */
 	read(fromRow: number, count: number, into: Uint8Array): void;
-	/** The file whose first byte is row 0, where there is one: others may open it as well. */
+	/** The file that the rows lie in, where there is one: others may open it as well. */
 	file?: CaptureHandle;
+	/** Byte of `file` where row 0 begins; 0 where absent. */
+	firstByte?: number;
 }
 
 export type SampleSource = MemorySamples | RowSamples;
@@ -30,6 +32,18 @@ export type RecordingFrame = Omit<Recording, 'channels'> & { channels: readonly 
 
 /** A recording whose samples are fetched when they are needed, so that its length does not matter. */
 export type CaptureSource = RecordingFrame & { samples: SampleSource };
+
+/** Rows that lie in a file from `firstByte` on. */
+export function rowsInFile(layout: RowLayout, file: CaptureHandle, firstByte: number): RowSamples {
+	return {
+		kind: 'rows',
+		layout,
+		read: (fromRow, count, into) =>
+			file.read(firstByte + fromRow * layout.rowBytes, into.subarray(0, count * layout.rowBytes)),
+		file,
+		firstByte
+	};
+}
 
 /** A recording in memory as a source of samples; nothing is copied. */
 export function sourceOf(recording: Recording): CaptureSource {

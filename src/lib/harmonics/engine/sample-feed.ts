@@ -58,8 +58,7 @@ export class SampleFeed {
 function layoutOf(whole: RowLayout, channelIndexes: readonly number[]): RowLayout {
 	const pick = (values: readonly number[]) => channelIndexes.map((index) => values[index]!);
 	return {
-		format: whole.format,
-		rowBytes: whole.rowBytes,
+		...whole,
 		offsets: pick(whole.offsets),
 		factors: pick(whole.factors),
 		additions: pick(whole.additions)

@@ -1,6 +1,14 @@
 import type { KernelShape, RawFormat, RowLayout } from './signal-kernels';
 
-const VALUE_BYTES: Record<RawFormat, number> = { int16: 2, int32: 4, float32: 4 };
+/** Bytes that one value takes in a row. */
+export const VALUE_BYTES: Record<RawFormat, number> = {
+	uint8: 1,
+	int16: 2,
+	int24: 3,
+	int32: 4,
+	float32: 4,
+	float64: 8
+};
 
 /**
  * Holds a decoding request to the buffers it reads from and writes to.

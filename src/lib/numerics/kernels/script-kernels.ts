@@ -1,10 +1,9 @@
 import { executeRealDft, planRealDft } from '../dft/real-dft';
 import { interpolateEvenly, planInterpolator } from '../resample/interpolator';
 import { planEqualiser } from '../resample/taper-equaliser';
+import { decodeChannel } from './raw-value';
 import { checkRowBounds } from './row-bounds';
-import type { KernelShape, RawFormat, RowLayout, SignalKernels, StretchFigures } from './signal-kernels';
-
-const MISSING: Record<RawFormat, number> = { int16: -(2 ** 15), int32: -(2 ** 31), float32: NaN };
+import type { KernelShape, RowLayout, SignalKernels, StretchFigures } from './signal-kernels';
 
 /** The kernels in plain script over the general-purpose transform: reference of the tests, and fallback. */
 export function createScriptKernels(shape: KernelShape): SignalKernels {
@@ -22,23 +21,7 @@ export function createScriptKernels(shape: KernelShape): SignalKernels {
 
 	function decodeRows(layout: RowLayout, count: number, at: number): void {
 		checkRowBounds(shape, layout, count, at);
-		const { format, rowBytes } = layout;
-		for (let c = 0; c < channelCount; c++) {
-			const into = samples[c]!;
-			const factor = layout.factors[c]!;
-			const addition = layout.additions[c]!;
-			let place = layout.offsets[c]!;
-			for (let row = 0; row < count; row++, place += rowBytes) {
-				const value =
-					format === 'int16'
-						? view.getInt16(place, true)
-						: format === 'int32'
-							? view.getInt32(place, true)
-							: view.getFloat32(place, true);
-				const missing = value === MISSING[format] || !Number.isFinite(value);
-				into[at + row] = missing ? NaN : factor * value + addition;
-			}
-		}
+		for (let c = 0; c < channelCount; c++) decodeChannel(view, layout, c, count, samples[c]!, at);
 	}
 
 	function transformWindow(start: number, step: number): void {

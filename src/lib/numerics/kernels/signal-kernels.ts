@@ -15,11 +15,13 @@ export interface KernelShape {
 	rawCapacity: number;
 }
 
-export type RawFormat = 'int16' | 'int32' | 'float32';
+export type RawFormat = 'uint8' | 'int16' | 'int24' | 'int32' | 'float32' | 'float64';
 
 /** How samples of several channels lie in rows of bytes, little-endian, one row per sampling instant. */
 export interface RowLayout {
 	format: RawFormat;
+	/** The smallest int16 or int32 is a value like any other, and not the mark of a missing sample. */
+	lowestIsValue?: boolean;
 	rowBytes: number;
 	/** [channelCount] place of each channel's value inside a row, bytes. */
 	offsets: readonly number[];
@@ -58,8 +60,8 @@ export interface SignalKernels {
 	readonly spectra: readonly Float64Array[];
 	/**
 	 * Decodes `count` rows from the start of `raw` into the samples of every channel from position `at`.
-	 * The smallest integer (−2^15, −2^31) and every float that is not finite mark a missing sample and become NaN
-	 * (IEEE C37.111-2013, missing data).
+	 * The smallest int16 or int32, unless `lowestIsValue`, and every float that is not finite mark a missing sample and
+	 * become NaN (IEEE C37.111-2013, missing data). Every uint8 and int24 is a value.
 	 */
 	decodeRows(layout: RowLayout, count: number, at: number): void;
 	/** Moves samples [from, from + count) of every channel to the start of its buffer. */

@@ -20,6 +20,11 @@ interface KernelModule {
 	decodeInt16: Decoder;
 	decodeInt32: Decoder;
 	decodeFloat32: Decoder;
+	decodeUint8: Decoder;
+	decodeWholeInt16: Decoder;
+	decodeInt24: Decoder;
+	decodeWholeInt32: Decoder;
+	decodeFloat64: Decoder;
 	slide(samples: number, stride: number, channelCount: number, offset: number, bytes: number): void;
 	stretch(from: number, to: number, result: number): void;
 	interpolate(
@@ -113,9 +118,17 @@ export function createWasmKernels(shape: KernelShape): SignalKernels {
 	const decoding = new DataView(buffer, decodingAt, DECODING_BYTES * channelCount);
 	const stretched = new Float64Array(buffer, stretchAt, 3);
 	const decoders: Record<RawFormat, Decoder> = {
+		uint8: module.decodeUint8,
 		int16: module.decodeInt16,
+		int24: module.decodeInt24,
 		int32: module.decodeInt32,
-		float32: module.decodeFloat32
+		float32: module.decodeFloat32,
+		float64: module.decodeFloat64
+	};
+	const wholeDecoders: Record<RawFormat, Decoder> = {
+		...decoders,
+		int16: module.decodeWholeInt16,
+		int32: module.decodeWholeInt32
 	};
 
 	function decodeRows(layout: RowLayout, count: number, at: number): void {
@@ -128,7 +141,8 @@ export function createWasmKernels(shape: KernelShape): SignalKernels {
 			decoding.setFloat64(entry + 8, factors[c]!, true);
 			decoding.setFloat64(entry + 16, additions[c]!, true);
 		}
-		decoders[format](decodingAt, channelCount, rowBytes, count);
+		const decode = (layout.lowestIsValue ? wholeDecoders : decoders)[format];
+		decode(decodingAt, channelCount, rowBytes, count);
 	}
 
 	function slide(from: number, count: number): void {

@@ -151,6 +151,57 @@ export function decodeFloat32(table: usize, channelCount: i32, rowBytes: usize, 
 	decode<f32>(table, channelCount, rowBytes, count);
 }
 
+/**
+ * Formats that recorders of power write seldom, one channel after the other. An integer of 24 bits is read as one of 32 that
+ * begins a byte (`before`) earlier and is moved down by `shift` bits; the raw buffer is not the first thing in memory.
+ */
+@inline
+function decodePlain<T>(
+	table: usize,
+	channelCount: i32,
+	rowBytes: usize,
+	count: i32,
+	before: usize,
+	shift: i32
+): void {
+	const end = table + <usize>channelCount * ENTRY_BYTES;
+	for (let done = 0; done < count; done += BLOCK_ROWS) {
+		const rows = min(BLOCK_ROWS, count - done);
+		for (let entry = table; entry < end; entry += ENTRY_BYTES) {
+			const factor = load<f64>(entry, 8);
+			const addition = load<f64>(entry, 16);
+			let from = <usize>load<u32>(entry) + <usize>done * rowBytes - before;
+			let to = <usize>load<u32>(entry, 4) + (<usize>done << 3);
+			for (const stop = to + (<usize>rows << 3); to < stop; to += 8, from += rowBytes) {
+				if (isFloat<T>()) {
+					const value = <f64>load<T>(from);
+					store<f64>(to, isFinite(value) ? factor * value + addition : NaN);
+				} else store<f64>(to, factor * <f64>(<i32>load<T>(from) >> shift) + addition);
+			}
+		}
+	}
+}
+
+export function decodeUint8(table: usize, channelCount: i32, rowBytes: usize, count: i32): void {
+	decodePlain<u8>(table, channelCount, rowBytes, count, 0, 0);
+}
+
+export function decodeWholeInt16(table: usize, channelCount: i32, rowBytes: usize, count: i32): void {
+	decodePlain<i16>(table, channelCount, rowBytes, count, 0, 0);
+}
+
+export function decodeInt24(table: usize, channelCount: i32, rowBytes: usize, count: i32): void {
+	decodePlain<i32>(table, channelCount, rowBytes, count, 1, 8);
+}
+
+export function decodeWholeInt32(table: usize, channelCount: i32, rowBytes: usize, count: i32): void {
+	decodePlain<i32>(table, channelCount, rowBytes, count, 0, 0);
+}
+
+export function decodeFloat64(table: usize, channelCount: i32, rowBytes: usize, count: i32): void {
+	decodePlain<f64>(table, channelCount, rowBytes, count, 0, 0);
+}
+
 /** Moves `bytes` bytes from `offset` to the start of each channel's buffer. */
 export function slide(samples: usize, stride: usize, channelCount: i32, offset: usize, bytes: usize): void {
 	for (let c = 0; c < channelCount; c++) {

@@ -6,6 +6,7 @@ import {
 	type AnalysisStep
 } from '../../../harmonics/analyse-waveform';
 import type { AnalysisProblem } from '../../../harmonics/analysis-problem';
+import { isUnevenlySampled } from '../../../harmonics/engine/stretches';
 import type { WindowBlock } from '../../../harmonics/engine/window-analyst';
 import type { CaptureFindings, ChannelMapping, WaveformWindows } from '../../../harmonics/waveform-analysis';
 import type { CaptureSource } from '../../../recording/sample-source';
@@ -15,12 +16,17 @@ import type { ThreadCapture, WindowPool } from './window-pool';
 /** Tasks that wait beside those being worked on, so that no thread has to. */
 const WAITING = 2;
 
-/** The file and layout of a capture that threads can open by themselves; null where its samples lie in memory. */
+/**
+ * The file and layout of a capture that threads can open by themselves; null where its samples lie in memory, or at uneven
+ * times: those are integrated, not transformed, by `analyseCapture`.
+ */
 export function threadCapture(source: CaptureSource): ThreadCapture | null {
 	const { samples, ...frame } = source;
+	if (isUnevenlySampled(source)) return null;
 	if (samples.kind !== 'rows' || !samples.file || !('path' in samples.file)) return null;
 	const { path } = samples.file as { path: string };
-	return { key: randomUUID(), frame: { ...frame, remarks: [] }, path, layout: samples.layout };
+	const { layout, firstByte = 0 } = samples;
+	return { key: randomUUID(), frame: { ...frame, remarks: [] }, path, layout, firstByte };
 }
 
 /**

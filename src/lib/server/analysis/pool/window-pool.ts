@@ -12,6 +12,8 @@ export interface ThreadCapture {
 	frame: RecordingFrame;
 	path: string;
 	layout: RowLayout;
+	/** Byte of the file where row 0 begins. */
+	firstByte: number;
 }
 
 export interface ThreadTask extends WindowTask {

@@ -1,6 +1,7 @@
 /** What runs in each thread of the window pool: decodes, interpolates and transforms the windows it is given. */
 import { move, transferableSymbol, valueSymbol } from 'piscina';
 import { WindowAnalyst, type WindowBlock } from '../../../harmonics/engine/window-analyst';
+import { rowsInFile } from '../../../recording/sample-source';
 import { openFileHandle, type FileHandle } from '../../storage/file-handle';
 import type { ThreadCapture, ThreadTask } from './window-pool';
 
@@ -22,16 +23,8 @@ function hold({ capture, setup, planIndex }: ThreadTask): Held {
 	return held;
 }
 
-function sourceIn({ frame, layout }: ThreadCapture, file: FileHandle) {
-	return {
-		...frame,
-		samples: {
-			kind: 'rows' as const,
-			layout,
-			read: (fromRow: number, count: number, into: Uint8Array) =>
-				file.read(fromRow * layout.rowBytes, into.subarray(0, count * layout.rowBytes))
-		}
-	};
+function sourceIn({ frame, layout, firstByte }: ThreadCapture, file: FileHandle) {
+	return { ...frame, samples: rowsInFile(layout, file, firstByte) };
 }
 
 /** Buffers of all typed arrays in a block: they are handed over, not copied. */
