@@ -46,24 +46,48 @@ export async function up(knex: Knex): Promise<void> {
 		t.index(['practice_id', 'instrument_id', 'position']);
 	});
 
+	await remakeCalibrations(knex, true);
+}
+
+/** Made anew because a certificate may now be a sensor's alone; nothing refers to the table. */
+async function remakeCalibrations(knex: Knex, extended: boolean): Promise<void> {
+	await knex.schema.createTable('calibrations_new', (t) => {
+		t.text('id').primary();
+		t.text('practice_id').notNullable().references('practices.id');
+		const instrument = t.text('instrument_id').references('instruments.id');
+		if (!extended) instrument.notNullable();
+		t.text('certificate_number').notNullable();
+		t.text('laboratory').notNullable().defaultTo('');
+		t.text('calibrated_on').notNullable();
+		t.text('due_on').notNullable();
+		t.text('created_at').notNullable();
+		if (extended) {
+			t.text('sensor_id').references('sensors.id');
+			t.text('certificate_sha256').references('stored_files.sha256');
+			t.text('certificate_file_name');
+			t.text('note').notNullable().defaultTo('');
+			t.check(
+				'(instrument_id is null) <> (sensor_id is null)',
+				[],
+				'calibrations_of_an_instrument_or_a_sensor'
+			);
+		}
+	});
+	const columns =
+		'id, practice_id, instrument_id, certificate_number, laboratory, calibrated_on, due_on, created_at';
+	await knex.raw(`insert into calibrations_new (${columns}) select ${columns} from calibrations`);
+	await knex.schema.dropTable('calibrations');
+	await knex.schema.renameTable('calibrations_new', 'calibrations');
 	await knex.schema.alterTable('calibrations', (t) => {
-		// The sensor that was calibrated; null when it was the instrument itself.
-		t.text('sensor_id').references('sensors.id');
-		t.text('certificate_sha256').references('stored_files.sha256');
-		t.text('certificate_file_name');
-		t.text('note').notNullable().defaultTo('');
+		t.index(['practice_id', 'instrument_id', 'due_on']);
+		if (extended) t.index(['practice_id', 'sensor_id', 'due_on']);
 	});
 }
 
+/** Certificates of sensors have no place in the earlier schema and go. */
 export async function down(knex: Knex): Promise<void> {
-	await knex('calibrations').whereNotNull('sensor_id').delete();
-	await knex.schema.alterTable('calibrations', (t) => {
-		t.dropForeign(['sensor_id']);
-		t.dropForeign(['certificate_sha256']);
-	});
-	await knex.schema.alterTable('calibrations', (t) =>
-		t.dropColumns('sensor_id', 'certificate_sha256', 'certificate_file_name', 'note')
-	);
+	await knex('calibrations').whereNull('instrument_id').delete();
+	await remakeCalibrations(knex, false);
 	await knex.schema.dropTable('instrument_channels');
 	await knex.schema.dropTable('sensors');
 }

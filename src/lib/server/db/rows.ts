@@ -290,7 +290,8 @@ export interface InstrumentChannelRow {
 export interface CalibrationRow {
 	id: string;
 	practice_id: string;
-	instrument_id: string;
+	/** Exactly one of instrument_id and sensor_id is given. */
+	instrument_id: string | null;
 	certificate_number: string;
 	laboratory: string;
 	calibrated_on: string;
