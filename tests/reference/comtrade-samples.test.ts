@@ -1,10 +1,17 @@
+import { readdirSync } from 'node:fs';
+import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
+import { handleOf } from '$lib/recording/capture-handle';
+import { loadSamples } from '$lib/recording/load-samples';
+import { memoryScratch } from '$lib/recording/memory-scratch';
+import { openCapture } from '$lib/recording/read-capture';
 import { readComtrade } from '$lib/recording/readers/comtrade/read-comtrade';
 import type { Recording, RecordingChannel } from '$lib/recording/recording';
 import { expectSamples } from './expect-samples';
 import {
 	expectedFiles,
 	sampleCapture,
+	samplesFolder,
 	samplesArePresent,
 	skipReason,
 	type ExpectedFile
@@ -14,6 +21,24 @@ import {
 
 const all = expectedFiles();
 const wellFormed = Object.entries(all).filter(([, file]) => file.format === 'COMTRADE');
+
+const READ_WITH_REMARK: [string, number, string][] = [
+	['cr_only.cfg', 40, 'status-changed'],
+	['utf8_bom.cfg', 40, 'byte-order-mark'],
+	['utf16le.cfg', 40, 'text-encoding'],
+	['binary_cut_mid_record.cfg', 5000, 'dat-truncated'],
+	['count_too_high.cfg', 8000, 'sample-count-mismatch'],
+	['channel_total_wrong.cfg', 8000, 'channel-total-mismatch'],
+	['says_binary_is_ascii.cfg', 8000, 'dat-is-text'],
+	['impossible_date.cfg', 8000, 'date-unreadable'],
+	['odd_section_markers.cff', 1000, 'cff-odd-section-line']
+];
+
+const REFUSED: [string, string, string][] = [
+	['no_dat.cfg', 'dat-missing', 'no_dat.dat'],
+	['no_rate_no_stamps.cfg', 'no-rate-and-no-stamps', 'no_rate_no_stamps.cfg, line 10'],
+	['empty.cfg', 'file-empty', 'empty.cfg is empty']
+];
 
 function read(path: string): Recording {
 	const result = readComtrade(sampleCapture(path));
@@ -38,6 +63,50 @@ function expectHeader(recording: Recording, file: ExpectedFile): void {
 describe.skipIf(!samplesArePresent)(`COMTRADE captures of other makers${skipReason}`, () => {
 	it('finds all 28 well-formed ones', () => {
 		expect(wellFormed.length).toBe(28);
+	});
+
+	it('leaves out no COMTRADE capture of the folder, and no damaged one', () => {
+		const damaged = Object.keys(all).filter((path) => path.startsWith('derived/malformed/'));
+		const elsewhere = ['derived/malformed/empty.csv'];
+		expect(damaged.map((path) => path.replace('derived/malformed/', '')).sort()).toEqual(
+			[...READ_WITH_REMARK.map(([name]) => name), ...REFUSED.map(([name]) => name), 'bad_values_ascii.cfg']
+				.concat(elsewhere.map((path) => path.replace('derived/malformed/', '')))
+				.sort()
+		);
+		const inFolder = ['comtrade', 'derived/comtrade', 'derived/malformed'].flatMap((folder) =>
+			readdirSync(join(samplesFolder, folder))
+				.filter((name) => /\.(cfg|cff)$/.test(name))
+				.map((name) => `${folder}/${name}`)
+		);
+		// With the same header as small_ascii_2013, told apart only by its data file: none is without figures.
+		expect(inFolder.filter((path) => !(path in all))).toEqual([]);
+	});
+
+	it.each(wellFormed)(
+		'%s: status channels and the start are as an independent reader found them',
+		(path, file) => {
+			const recording = read(path);
+			const activity = recording.statusActivity ?? [];
+			expect(activity.length).toBe(file.status);
+			if (file.status_channels_that_change)
+				expect(activity.flatMap(({ changeCount }, index) => (changeCount > 0 ? [index + 1] : []))).toEqual(
+					file.status_channels_that_change
+				);
+			if (file.status_ones_first_sample !== undefined && file.status_ones_first_sample !== null)
+				expect(activity.filter(({ startsAs }) => startsAs === 1).length).toBe(file.status_ones_first_sample);
+			const [, one, two, year, time] = /^(\d+)\/(\d+)\/(\d+),(.*)$/.exec(file.first_stamp ?? '') ?? [];
+			// One 1991 capture writes the day first all the same, and the reader says so.
+			const monthFirst = recording.variant.startsWith('1991') && !codes(recording).includes('date-order');
+			const [month, day] = monthFirst ? [one, two] : [two, one];
+			const fullYear = year?.length === 2 ? `20${year}` : year;
+			expect(recording.start?.local).toBe(`${fullYear}-${month}-${day}T${time}`);
+		}
+	);
+
+	it.each(wellFormed)('%s gives the very samples when it is read piece by piece', (path) => {
+		const opened = openCapture(sampleCapture(path).map(handleOf), { scratch: memoryScratch() });
+		if (!opened.ok || opened.value.kind !== 'waveform') throw new Error('not read');
+		expect(loadSamples(opened.value)).toEqual(read(path));
 	});
 
 	it.each(wellFormed)('%s is read with the expected figures', (path, file) => {
@@ -159,22 +228,11 @@ describe.skipIf(!samplesArePresent)(`what those captures are peculiar for${skipR
 describe.skipIf(!samplesArePresent)(`damaged COMTRADE captures${skipReason}`, () => {
 	const damaged = (name: string) => readComtrade(sampleCapture(`derived/malformed/${name}`));
 
-	it.each([
-		['cr_only.cfg', 40, null],
-		['utf8_bom.cfg', 40, 'byte-order-mark'],
-		['utf16le.cfg', 40, 'text-encoding'],
-		['binary_cut_mid_record.cfg', 5000, 'dat-truncated'],
-		['count_too_high.cfg', 8000, 'sample-count-mismatch'],
-		['channel_total_wrong.cfg', 8000, 'channel-total-mismatch'],
-		['says_binary_is_ascii.cfg', 8000, 'dat-is-text'],
-		['impossible_date.cfg', 8000, 'date-unreadable'],
-		['odd_section_markers.cff', 1000, 'cff-odd-section-line']
-	])('%s is read in part or in full: %i samples, remark %s', (name, samples, code) => {
+	it.each(READ_WITH_REMARK)('%s is read in part or in full: %i samples, remark %s', (name, samples, code) => {
 		const result = damaged(name);
 		if (!result.ok) throw new Error(result.problem.sentence);
 		expect(result.value.sampleCount).toBe(samples);
-		if (code === null) expect(result.value.remarks).toEqual([]);
-		else expect(codes(result.value)).toContain(code);
+		expect(codes(result.value)).toContain(code);
 		for (const remark of result.value.remarks) expect(remark.sentence).toContain(name.replace(/\.\w+$/, ''));
 	});
 
@@ -208,11 +266,7 @@ describe.skipIf(!samplesArePresent)(`damaged COMTRADE captures${skipReason}`, ()
 		expect(sentences).toContain('line 301 has 5');
 	});
 
-	it.each([
-		['no_dat.cfg', 'dat-missing', 'no_dat.dat'],
-		['no_rate_no_stamps.cfg', 'no-rate-and-no-stamps', 'no_rate_no_stamps.cfg, line 10'],
-		['empty.cfg', 'file-empty', 'empty.cfg is empty']
-	])('%s is refused: %s', (name, code, words) => {
+	it.each(REFUSED)('%s is refused: %s', (name, code, words) => {
 		const result = damaged(name);
 		expect(result.ok).toBe(false);
 		if (result.ok) return;

@@ -45,6 +45,8 @@ export interface ExpectedFile {
 	data_type?: string;
 	analog?: number;
 	status?: number;
+	status_channels_that_change?: number[] | null;
+	status_ones_first_sample?: number | null;
 	line_freq_in_header?: number;
 	rates_in_header?: ([number, number] | string)[];
 	samples?: number;

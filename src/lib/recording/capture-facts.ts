@@ -5,6 +5,7 @@ import type {
 	ReadRemark,
 	Recording,
 	RecordingChannel,
+	RecordingNote,
 	RecordingStart,
 	Trend
 } from './recording';
@@ -31,6 +32,8 @@ export interface CaptureFacts {
 	valuesAre: RecordingChannel['valuesAre'] | 'mixed';
 	/** Highest order that the lowest rate supports at the nominal frequency; null where that cannot be said. */
 	highestOrder: number | null;
+	/** Free text that came with the recording; absent where none did. */
+	notes?: RecordingNote[];
 	remarks: ReadRemark[];
 }
 
@@ -74,6 +77,7 @@ function waveformFacts(recording: CaptureSource): CaptureFacts {
 		rates.length === 0 ? null : { lowest: Math.min(...rates), highest: Math.max(...rates) };
 	return {
 		...commonFacts(recording),
+		...(recording.notes ? { notes: recording.notes } : {}),
 		kind: 'waveform',
 		channelCount: recording.channels.length,
 		channels: recording.channels.map((channel) => channelFacts(channel, recording.samples)),
@@ -126,7 +130,8 @@ function channelFacts(channel: SourceChannel, samples: SampleSource): ChannelFac
 		phaseHint,
 		valuesAre,
 		ratio,
-		missingCount: samples.kind === 'memory' ? missingIn(samples.channels[channel.index]!) : null
+		missingCount:
+			channel.missingCount ?? (samples.kind === 'memory' ? missingIn(samples.channels[channel.index]!) : null)
 	};
 }
 

@@ -1,8 +1,8 @@
 import { ok, type Result } from '../result';
-import { loadFile, type CaptureHandle } from './capture-handle';
+import { handleOf, loadFile, type CaptureHandle } from './capture-handle';
 import { incompleteGroupSentence } from './group-capture-files';
-import { looksLikeCff } from './readers/comtrade/cff';
-import { looksLikeCfg, openComtrade, readComtrade } from './readers/comtrade/read-comtrade';
+import { loadSamples } from './load-samples';
+import { openComtrade } from './readers/comtrade/read-comtrade';
 import { readDelimitedText, type DelimitedTextOptions } from './readers/delimited-text/read-delimited-text';
 import { refuse } from './readers/read-problem';
 import type { CaptureContent, CaptureFile, CapturePart, ReadProblem, Trend } from './recording';
@@ -35,10 +35,8 @@ export function readCapture(
 	const [first] = files;
 	if (first === undefined)
 		return refuse('no-files', '', null, 'No file was given; a capture of one file or a set was expected.');
-	const configuration = files.find(
-		({ name, bytes }) => looksLikeCff(bytes) || looksLikeCfg(bytes) || /\.(cfg|cff)$/i.test(name)
-	);
-	if (configuration !== undefined) return readComtrade(files);
+	const comtrade = openComtrade(files.map(handleOf));
+	if (comtrade !== null) return comtrade.ok ? ok(loadSamples(comtrade.value)) : comtrade;
 	const incomplete = incompleteGroupSentence(files.map(({ name }) => name));
 	if (incomplete !== null && !isTableByName(first))
 		return refuse('capture-incomplete', first.name, null, incomplete);
@@ -102,8 +100,8 @@ function openSingle(
 	files: readonly CaptureHandle[],
 	options: OpenOptions
 ): Result<OpenedCapture, ReadProblem> {
-	const streamed = openComtrade(files);
-	if (streamed !== null) return streamed;
+	const comtrade = openComtrade(files, options.scratch);
+	if (comtrade !== null) return comtrade;
 	const read = readCapture(files.map(loadFile), options);
 	if (!read.ok || read.value.kind === 'trend') return read as Result<Trend, ReadProblem>;
 	return ok(sourceOf(read.value));

@@ -44,6 +44,27 @@ export interface RecordingChannel {
 	range: { min: number; max: number } | null;
 	/** Delay of this channel's sample after the sample time, seconds, where the file states one. */
 	skew_s?: number;
+	/** Samples that are missing; absent where the reader has not counted them. */
+	missingCount?: number;
+}
+
+/** What a status (on/off) channel did during the recording. */
+export interface StatusActivity {
+	name: string;
+	/** State in normal service, where the file states it. */
+	normalState: 0 | 1 | null;
+	/** State at the first sample; null where it cannot be read. */
+	startsAs: 0 | 1 | null;
+	changeCount: number;
+	/** Sample, from 0, at which the state is another one for the first time; null without a change. */
+	firstChangeAtSample: number | null;
+}
+
+/** Free text that came with a recording, for people: nothing in it is computed with. */
+export interface RecordingNote {
+	/** Where it stands: a file, or a section of one. */
+	title: string;
+	text: string;
 }
 
 /** A stretch of samples taken at one rate; `toSample` is exclusive. */
@@ -83,6 +104,9 @@ export interface Recording {
 	timeStamps_s: Float64Array | null;
 	channels: RecordingChannel[];
 	statusChannelNames: string[];
+	/** One for each status channel; absent where the format has none. */
+	statusActivity?: StatusActivity[];
+	notes?: RecordingNote[];
 	remarks: ReadRemark[];
 }
 

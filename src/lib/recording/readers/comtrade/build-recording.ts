@@ -1,39 +1,38 @@
 import { ok, type Result } from '../../../result';
 import { phaseHints } from '../../phase-hint';
-import type { ReadProblem, ReadRemark, Recording, RecordingChannel } from '../../recording';
+import type { ReadProblem, ReadRemark, RecordingChannel, StatusActivity } from '../../recording';
 import type { Phase } from '../../phase';
 import { parseUnit, toBaseUnit, type ParsedUnit } from '../../unit-text';
 import { counted, note, warning } from '../read-problem';
 import type { AnalogueLine, ComtradeData, ComtradeHeader, ComtradeTiming } from './comtrade-header';
-import type { RecordingFrame, SourceChannel } from '../../sample-source';
+import type { CaptureSource, RecordingFrame, SourceChannel } from '../../sample-source';
 import { timeBaseOf } from './time-base';
 
 /** Limits that only restate what a 32-bit float can hold say nothing about the recorder's range. */
 const WIDEST_LIMIT = 1e30;
 
 /** Header and data to the one shape of a recording: scaled to volts and amperes, ratios left alone. */
-export function buildRecording(
+export function buildSource(
 	dataFile: string,
 	header: ComtradeHeader,
 	data: ComtradeData,
 	fileRemarks: ReadRemark[]
-): Result<Recording, ReadProblem> {
+): Result<CaptureSource, ReadProblem> {
 	const frame = buildFrame(dataFile, header, data, fileRemarks);
 	if (!frame.ok) return frame;
-	const channels = header.analogues.map((analogue, index): RecordingChannel => {
-		const unit = parseUnit(analogue.unit);
-		const samples = data.raw[index] as Float64Array;
-		// value = a·x + b in the unit as written, then to V or A: two steps, so that each rounds as the standard's own formula does.
-		for (let sample = 0; sample < samples.length; sample++)
-			samples[sample] = toBaseUnit(analogue.a * (samples[sample] as number) + analogue.b, unit);
-		return { ...frame.value.channels[index]!, samples };
-	});
-	describeMissing(dataFile, channels, data.sampleCount, frame.value.remarks);
-	return ok({ ...frame.value, channels });
+	const { missingCounts, statusActivity } = data.survey();
+	const channels = frame.value.channels.map((channel, index) => ({
+		...channel,
+		missingCount: missingCounts[index] ?? 0
+	}));
+	const { remarks } = frame.value;
+	describeMissing(dataFile, channels, data.sampleCount, remarks);
+	describeStatus(dataFile, statusActivity, frame.value, remarks);
+	return ok({ ...frame.value, channels, statusActivity, samples: data.samples });
 }
 
 /** Everything of a recording but its samples. */
-export function buildFrame(
+function buildFrame(
 	dataFile: string,
 	header: ComtradeHeader,
 	data: ComtradeTiming,
@@ -56,7 +55,7 @@ export function buildFrame(
 		sampleCount: data.sampleCount,
 		...timeBase.value,
 		channels: header.analogues.map((analogue, index) => channelOf(analogue, index, hints[index] ?? null)),
-		statusChannelNames: header.statusNames,
+		statusChannelNames: header.statuses.map(({ name }) => name),
 		remarks
 	});
 }
@@ -109,15 +108,13 @@ function describeCount(
 
 function describeMissing(
 	dataFile: string,
-	channels: RecordingChannel[],
+	channels: { name: string; missingCount: number }[],
 	sampleCount: number,
 	remarks: ReadRemark[]
 ): void {
-	const gaps = channels
-		.map(({ name, samples }) => ({ name, missing: countMissing(samples) }))
-		.filter(({ missing }) => missing > 0);
+	const gaps = channels.filter(({ missingCount }) => missingCount > 0);
 	if (gaps.length === 0) return;
-	const list = gaps.slice(0, 6).map(({ name, missing }) => `${name} ${missing}`);
+	const list = gaps.slice(0, 6).map(({ name, missingCount }) => `${name} ${missingCount}`);
 	const rest = gaps.length > 6 ? ` and ${gaps.length - 6} more channels` : '';
 	remarks.push(
 		warning(
@@ -127,11 +124,59 @@ function describeMissing(
 	);
 }
 
-function countMissing(samples: Float64Array): number {
-	let missing = 0;
-	for (let sample = 0; sample < samples.length; sample++)
-		if (Number.isNaN(samples[sample] as number)) missing++;
-	return missing;
+/** Status channels named in one sentence. */
+const STATUSES_NAMED = 6;
+
+/** Which status channels changed and when, and which stayed away from their normal state. */
+function describeStatus(
+	dataFile: string,
+	activity: readonly StatusActivity[],
+	frame: RecordingFrame,
+	remarks: ReadRemark[]
+): void {
+	const list = (names: string[]) =>
+		names.length > STATUSES_NAMED
+			? `${names.slice(0, STATUSES_NAMED).join(', ')} and ${names.length - STATUSES_NAMED} more`
+			: names.join(', ');
+	const nameOf = ({ name }: StatusActivity) => (name === '' ? 'one without a name' : name);
+	const changed = activity.filter(({ changeCount }) => changeCount > 0);
+	if (changed.length > 0) {
+		const changes = changed.map((status) => {
+			const sample = status.firstChangeAtSample ?? 0;
+			const after_s = Number(timeOfSample_s(frame, sample).toPrecision(6));
+			const often = status.changeCount === 1 ? 'once' : `${status.changeCount} times, first`;
+			return `${nameOf(status)} ${often} after ${after_s} s (sample ${sample + 1}, to ${1 - (status.startsAs ?? 0)})`;
+		});
+		remarks.push(
+			note(
+				'status-changed',
+				`${dataFile}: of ${counted(activity.length, 'status channel')} ${changed.length === 1 ? 'one changed' : `${changed.length} changed`}: ${list(changes)}.`
+			)
+		);
+	}
+	const abnormal = activity.filter(
+		({ normalState, startsAs, changeCount }) =>
+			changeCount === 0 && normalState !== null && startsAs !== null && startsAs !== normalState
+	);
+	if (abnormal.length === 0) return;
+	remarks.push(
+		note(
+			'status-not-normal',
+			`${dataFile}: ${abnormal.length === 1 ? 'one status channel is' : `${abnormal.length} status channels are`} away from the normal state throughout: ${list(abnormal.map(nameOf))}.`
+		)
+	);
+}
+
+/** Seconds from sample 0 to another one. */
+function timeOfSample_s({ segments, timeStamps_s }: RecordingFrame, sample: number): number {
+	if (timeStamps_s) return timeStamps_s[sample] ?? NaN;
+	let elapsed_s = 0;
+	for (const { samplingRate_Hz, fromSample, toSample, gapBefore_s } of segments) {
+		elapsed_s += gapBefore_s ?? 0;
+		if (sample < toSample) return elapsed_s + (sample - fromSample) / samplingRate_Hz;
+		elapsed_s += (toSample - fromSample) / samplingRate_Hz;
+	}
+	return elapsed_s;
 }
 
 function describeSkew(header: ComtradeHeader, remarks: ReadRemark[]): void {

@@ -1,18 +1,23 @@
 import { ok, type Result } from '../../../result';
+import type { CaptureHandle } from '../../capture-handle';
 import type { ReadProblem, ReadRemark } from '../../recording';
 import { quoted, refuse, warning } from '../read-problem';
 import type { ComtradeDataFormat } from './comtrade-header';
 
+/** One section of a combined file: bytes [start, end), and the number of its first line. */
+export interface CffSection {
+	start: number;
+	end: number;
+	firstLine: number;
+}
+
 /** The parts of a combined file, each with its place in it. */
 export interface CffSections {
-	configuration: { bytes: Uint8Array; firstLine: number };
-	data: {
-		bytes: Uint8Array;
-		firstLine: number;
-		firstByte: number;
-		/** As the section's own line says; null when it does not. */
-		format: ComtradeDataFormat | null;
-	};
+	configuration: CffSection;
+	/** `format` as the section's own line says; null when it does not. */
+	data: CffSection & { format: ComtradeDataFormat | null };
+	/** Sections for people: INF and HDR, where they are there. */
+	texts: (CffSection & { kind: string })[];
 	remarks: ReadRemark[];
 }
 
@@ -34,6 +39,9 @@ const MARKER =
 /** Section lines are short; longer lines need not be looked at. */
 const LONGEST_MARKER = 120;
 
+/** Bytes looked through at a time. */
+const BLOCK_BYTES = 1 << 16;
+
 /** Whether the bytes begin like a combined file. */
 export function looksLikeCff(bytes: Uint8Array): boolean {
 	const head = new TextDecoder('windows-1252').decode(bytes.subarray(0, 200));
@@ -41,35 +49,38 @@ export function looksLikeCff(bytes: Uint8Array): boolean {
 }
 
 /**
- * Splits a combined file at its section lines ("--- file type: CFG ---", "--- file type: DAT BINARY: 160000 ---").
- * Lines with the colon missing or too few dashes are understood and remarked on.
+ * Finds the sections of a combined file by their lines ("--- file type: CFG ---", "--- file type: DAT BINARY: 160000 ---"),
+ * without holding the file in memory. Lines with the colon missing or too few dashes are understood and remarked on.
  */
-export function splitCff(file: string, bytes: Uint8Array): Result<CffSections, ReadProblem> {
-	const markers = findMarkers(bytes);
+export function splitCff(file: CaptureHandle): Result<CffSections, ReadProblem> {
+	const markers = findMarkers(file);
 	const configuration = markers.find(({ kind }) => kind === 'CFG');
 	const data = markers.find(({ kind }) => kind === 'DAT');
 	if (configuration === undefined || data === undefined) {
 		const missing = configuration === undefined ? 'CFG' : 'DAT';
 		return refuse(
 			'cff-section-missing',
-			file,
+			file.name,
 			null,
-			`${file} has no line “--- file type: ${missing} ---”; a combined file needs a CFG and a DAT section.`
+			`${file.name} has no line “--- file type: ${missing} ---”; a combined file needs a CFG and a DAT section.`
 		);
 	}
-	const remarks = markers.filter(({ isRegular }) => !isRegular).map((marker) => oddMarker(file, marker));
-	const next = markers.find(({ start }) => start > configuration.start);
+	const remarks = markers.filter(({ isRegular }) => !isRegular).map((marker) => oddMarker(file.name, marker));
+	const sectionOf = (marker: Marker): CffSection => ({
+		start: marker.end,
+		end: markers.find(({ start }) => start > marker.start)?.start ?? file.size_bytes,
+		firstLine: marker.line + 1
+	});
 	return ok({
-		configuration: {
-			bytes: bytes.subarray(configuration.end, next?.start ?? bytes.length),
-			firstLine: configuration.line + 1
-		},
+		configuration: sectionOf(configuration),
 		data: {
-			bytes: dataBytes(file, bytes, data, remarks),
-			firstLine: data.line + 1,
-			firstByte: data.end,
+			...sectionOf(data),
+			...(data.byteCount === null ? {} : { end: announcedEnd(file, data, sectionOf(data).end, remarks) }),
 			format: data.format
 		},
+		texts: markers
+			.filter(({ kind }) => kind === 'INF' || kind === 'HDR')
+			.map((marker) => ({ ...sectionOf(marker), kind: marker.kind })),
 		remarks
 	});
 }
@@ -82,41 +93,86 @@ function oddMarker(file: string, marker: Marker): ReadRemark {
 }
 
 /** The byte count of the DAT line decides where the data end, as far as the file reaches. */
-function dataBytes(file: string, bytes: Uint8Array, data: Marker, remarks: ReadRemark[]): Uint8Array {
-	const present = bytes.length - data.end;
-	if (data.byteCount === null || data.byteCount === present) return bytes.subarray(data.end);
-	if (data.byteCount > present) {
-		remarks.push(
-			warning(
-				'dat-truncated',
-				`${file}, line ${data.line} announces ${data.byteCount} bytes of data, but only ${present} follow; ${data.byteCount - present} bytes are missing.`
-			)
-		);
-		return bytes.subarray(data.end);
-	}
-	return bytes.subarray(data.end, data.end + data.byteCount);
+function announcedEnd(file: CaptureHandle, data: Marker, end: number, remarks: ReadRemark[]): number {
+	const announced = data.byteCount ?? 0;
+	const present = end - data.end;
+	if (announced <= present) return data.end + announced;
+	const share = `${Number(((100 * (announced - present)) / announced).toPrecision(3))} %`;
+	remarks.push(
+		warning(
+			'dat-truncated',
+			`${file.name}, line ${data.line} announces ${announced} bytes of data, but only ${present} follow; ${announced - present} bytes (${share}) are missing.`
+		)
+	);
+	return end;
 }
 
-/** Walks the lines up to the data section; what follows it may be binary and is not looked into. */
-function findMarkers(bytes: Uint8Array): Marker[] {
+/**
+ * Walks the lines as far as the data section; beyond it only where the section's own line tells how long it is, or where
+ * no configuration has come yet. Binary data are never looked into.
+ */
+function findMarkers(file: CaptureHandle): Marker[] {
 	const markers: Marker[] = [];
 	const decoder = new TextDecoder('windows-1252');
-	let line = 1;
-	let start = bytes[0] === 0xef && bytes[1] === 0xbb && bytes[2] === 0xbf ? 3 : 0;
-	while (start < bytes.length) {
-		let stop = start;
-		while (stop < bytes.length && bytes[stop] !== 0x0a && bytes[stop] !== 0x0d) stop++;
-		const end = bytes[stop] === 0x0d && bytes[stop + 1] === 0x0a ? stop + 2 : stop + 1;
-		if (bytes[start] === 0x2d && stop - start <= LONGEST_MARKER) {
-			const text = decoder.decode(bytes.subarray(start, stop)).trim();
-			const marker = markerOf(text, line, start, Math.min(end, bytes.length));
-			if (marker !== null) markers.push(marker);
-			if (marker?.kind === 'DAT') break;
-		}
-		start = end;
-		line++;
+	const lines = new LineWalk(file);
+	for (let line = lines.next(); line !== null; line = lines.next()) {
+		if (line.head[0] !== 0x2d || line.end - line.start > LONGEST_MARKER + 2) continue;
+		const text = decoder.decode(line.head).trim();
+		const marker = markerOf(text, line.number, line.start, line.end);
+		if (marker === null) continue;
+		markers.push(marker);
+		if (marker.kind !== 'DAT') continue;
+		const isBinary = marker.format !== null && marker.format !== 'ASCII';
+		const hasConfiguration = markers.some(({ kind }) => kind === 'CFG');
+		if (marker.byteCount !== null && marker.end + marker.byteCount < file.size_bytes)
+			lines.jumpTo(marker.end + marker.byteCount);
+		else if (hasConfiguration || isBinary) break;
 	}
 	return markers;
+}
+
+/** Lines of a file, one after the other; only their first bytes are kept. */
+class LineWalk {
+	private number = 1;
+	private position: number;
+	private readonly block = new Uint8Array(BLOCK_BYTES);
+	private blockStart = 0;
+	private blockLength = 0;
+
+	constructor(private readonly file: CaptureHandle) {
+		const isMarked = this.byteAt(0) === 0xef && this.byteAt(1) === 0xbb && this.byteAt(2) === 0xbf;
+		this.position = isMarked ? 3 : 0;
+	}
+
+	/** Line numbers lose their meaning after bytes that are no text; the next line counts on from here. */
+	jumpTo(position: number): void {
+		this.position = position;
+	}
+
+	next(): { head: Uint8Array; number: number; start: number; end: number } | null {
+		const start = this.position;
+		if (start >= this.file.size_bytes) return null;
+		const head: number[] = [];
+		let at = start;
+		let byte = this.byteAt(at);
+		while (byte !== undefined && byte !== 0x0a && byte !== 0x0d) {
+			if (head.length < LONGEST_MARKER) head.push(byte);
+			byte = this.byteAt(++at);
+		}
+		if (byte !== undefined) at += byte === 0x0d && this.byteAt(at + 1) === 0x0a ? 2 : 1;
+		this.position = at;
+		return { head: Uint8Array.from(head), number: this.number++, start, end: at };
+	}
+
+	private byteAt(position: number): number | undefined {
+		if (position >= this.file.size_bytes) return undefined;
+		if (position < this.blockStart || position >= this.blockStart + this.blockLength) {
+			this.blockStart = position;
+			this.blockLength = Math.min(BLOCK_BYTES, this.file.size_bytes - position);
+			this.file.read(position, this.block.subarray(0, this.blockLength));
+		}
+		return this.block[position - this.blockStart];
+	}
 }
 
 function markerOf(text: string, line: number, start: number, end: number): Marker | null {

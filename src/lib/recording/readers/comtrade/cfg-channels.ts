@@ -2,7 +2,7 @@ import { ok, type Result } from '../../../result';
 import type { ReadProblem, ReadRemark } from '../../recording';
 import { warning } from '../read-problem';
 import { finiteNumber, nextRow, unexpected, wholeNumber, type CfgCursor, type CfgRow } from './cfg-lines';
-import type { AnalogueLine } from './comtrade-header';
+import type { AnalogueLine, StatusLine } from './comtrade-header';
 
 const ANALOGUE_FIELDS = 13;
 const ANALOGUE_FIELDS_1991 = 10;
@@ -103,15 +103,20 @@ function sideOf(flag: string): AnalogueLine['valuesAre'] {
 	}
 }
 
-/** "1,51A,,Line123,0", or "1,51A,0" in the 1991 form. Only the name is kept. */
+/** "1,51A,,Line123,0", or "1,51A,0" in the 1991 form. */
 export function parseStatusLine(
 	cursor: CfgCursor,
 	position: number,
 	count: number
-): Result<string, ReadProblem> {
+): Result<StatusLine, ReadProblem> {
 	const expected = `status channel ${position} of ${count} (number, name, …, normal state)`;
 	const row = nextRow(cursor, expected);
 	if (!row.ok) return row;
-	if (row.value.fields.length < 2) return unexpected(cursor, row.value, 'cfg-status-line', expected);
-	return ok(row.value.fields[1] ?? '');
+	const { fields } = row.value;
+	if (fields.length < 2) return unexpected(cursor, row.value, 'cfg-status-line', expected);
+	const normal = fields[fields.length >= 5 ? 4 : 2];
+	return ok({
+		name: fields[1] ?? '',
+		normalState: normal === '0' ? 0 : normal === '1' ? 1 : null
+	});
 }

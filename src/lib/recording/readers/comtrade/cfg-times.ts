@@ -67,12 +67,3 @@ export function parseTimeLine(
 		decimals
 	};
 }
-
-/** "-5h30" → −330, "+10h" → 600, "0" → 0; null for "x", an empty field, and anything else. */
-export function parseTimeCode(text: string): number | null {
-	const match = /^([+-]?)(\d{1,2})(?:h(\d{1,2})?)?$/i.exec(text.trim());
-	if (match === null) return null;
-	const minutes = Number(match[2]) * 60 + (match[3] === undefined ? 0 : Number(match[3]));
-	if (minutes > 14 * 60 || Number(match[3] ?? '0') > 59) return null;
-	return match[1] === '-' && minutes !== 0 ? -minutes : minutes;
-}

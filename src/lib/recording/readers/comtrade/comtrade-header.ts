@@ -1,4 +1,5 @@
-import type { RecordingStart, ReadRemark } from '../../recording';
+import type { RecordingStart, ReadRemark, StatusActivity } from '../../recording';
+import type { RowSamples } from '../../sample-source';
 
 export type ComtradeRevision = '1991' | '1999' | '2013';
 export type ComtradeDataFormat = 'ASCII' | 'BINARY' | 'BINARY32' | 'FLOAT32';
@@ -18,6 +19,13 @@ export interface AnalogueLine {
 	valuesAre: 'primary' | 'secondary' | 'unknown';
 }
 
+/** One status line of the configuration. */
+export interface StatusLine {
+	name: string;
+	/** State in normal service; null where the line states neither 0 nor 1. */
+	normalState: 0 | 1 | null;
+}
+
 /** Samples up to and with `lastSample` (counted from 1) were taken at this rate; 0 Hz means "see the time stamps". */
 export interface RateLine {
 	samplingRate_Hz: number;
@@ -33,7 +41,7 @@ export interface ComtradeHeader {
 	recorderName: string;
 	revision: ComtradeRevision;
 	analogues: AnalogueLine[];
-	statusNames: string[];
+	statuses: StatusLine[];
 	nominalFrequency_Hz: number | null;
 	/** Empty when the configuration gives no rate at all and only time stamps count. */
 	rates: RateLine[];
@@ -49,11 +57,10 @@ export interface ComtradeHeader {
 	remarks: ReadRemark[];
 }
 
-/** Time stamps of the samples, in the file's own unit; NaN marks a missing one. Asked for mostly one after the other. */
+/** Time stamps of the samples, in the file's own unit; NaN marks a missing one. */
 export interface StampColumn {
 	readonly length: number;
-	at(sample: number): number | undefined;
-	/** Stamps [from, to), for reading many of them; a view or a copy, not to be written to. */
+	/** Stamps [from, to); a view or a copy, not to be written to. Cheapest in order, many at a time. */
 	subarray(from: number, to: number): Float64Array;
 }
 
@@ -64,8 +71,10 @@ export interface ComtradeTiming {
 	remarks: ReadRemark[];
 }
 
-/** The data, unscaled. */
+/** Data that have been looked through from end to end. */
 export interface ComtradeData extends ComtradeTiming {
-	/** [analogue channels][sampleCount] raw values; NaN marks a missing one. */
-	raw: Float64Array[];
+	/** Values in V, A or the unit as written. */
+	samples: RowSamples;
+	/** What is known only when every sample has been seen: asked for last. */
+	survey(): { missingCounts: readonly number[]; statusActivity: StatusActivity[] };
 }

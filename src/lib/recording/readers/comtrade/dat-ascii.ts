@@ -1,207 +1,151 @@
 import { ok, type Result } from '../../../result';
 import type { ReadProblem, ReadRemark } from '../../recording';
-import { COMMA, DOT, isBlankInBytes, numberInBytes } from '../number-in-bytes';
-import { counted, quoted, refuse, warning } from '../read-problem';
+import { rowsInFile } from '../../sample-source';
+import type { SampleScratch } from '../../sample-scratch';
+import { counted, refuse, warning } from '../read-problem';
+import { AsciiRows } from './ascii-rows';
 import type { ComtradeData, ComtradeHeader } from './comtrade-header';
+import type { DataPart } from './data-part';
+import { stampsInFile } from './stamp-column';
 
-/** Marks of the 1999 and the 1991 form for "no value". */
-const MISSING_MARKS = [99_999, 999_999];
+/** Bytes of text taken in at a time. */
+const BLOCK_BYTES = 1 << 18;
 
-interface RowFaults {
-	text: { count: number; first: string };
-	short: { count: number; first: string };
-	long: { count: number; first: string };
+/** A line longer than this is none: no configuration lists so many channels. */
+const LONGEST_LINE_BYTES = 1 << 25;
+
+export interface AsciiData extends ComtradeData {
+	/** Every value keeps the limits that the configuration states for its channel. */
+	keepsLimits: boolean;
 }
 
 /**
- * ASCII data: "n,stamp,A1…Ak,D1…Dm" per line. Rows that are damaged in one place keep their other values;
- * what is damaged or missing becomes NaN and is remarked on with its line.
- * `firstLine` is the number of the data's first line inside `file`.
+ * ASCII data, decoded into rows of scratch; the text is never held as a whole. Rows that are damaged in one place keep their
+ * other values; what is damaged or missing becomes NaN and is remarked on with its line.
  */
 export function readAsciiData(
-	file: string,
-	bytes: Uint8Array,
-	firstLine: number,
-	header: ComtradeHeader
-): Result<ComtradeData, ReadProblem> {
-	const rows = countRows(bytes);
-	if (rows === 0)
-		return refuse(
-			'dat-empty',
-			file,
-			`line ${firstLine}`,
-			`${file} holds no data: a row with ${2 + header.analogues.length + header.statusNames.length} values was expected on line ${firstLine}.`
-		);
-	const channelCount = header.analogues.length;
-	// A row of k channels has k separators at least: a file with far fewer belongs to another configuration.
-	if (rows > 16 && rows * (channelCount + 1) > bytes.length)
+	part: DataPart,
+	header: ComtradeHeader,
+	scratch: SampleScratch
+): Result<AsciiData, ReadProblem> {
+	const rowsInto = scratch.create();
+	const stampsInto = scratch.create();
+	const rows = new AsciiRows(header, part.firstLine, rowsInto, stampsInto);
+	const remarks: ReadRemark[] = [];
+	const outcome = takeText(part, rows);
+	rows.finish();
+	if (outcome === 'line too long')
 		return refuse(
 			'dat-columns',
-			file,
-			`line ${firstLine}`,
-			`${file} has rows too short for the ${channelCount} analogue channels that ${header.file} lists; check that the two files belong together.`
+			part.file.name,
+			`line ${rows.line}`,
+			`${part.file.name}, line ${rows.line} does not end within ${LONGEST_LINE_BYTES} bytes; a row of ${rows.fieldCount} numbers was expected there, as ${header.file} describes.`
 		);
-	const table = new AsciiTable(file, firstLine, header, rows);
-	table.parse(bytes);
-	return table.finish(bytes);
-}
-
-function countRows(bytes: Uint8Array): number {
-	let rows = 0;
-	let hasContent = false;
-	for (let at = 0; at < bytes.length; at++) {
-		const byte = bytes[at] as number;
-		if (byte === 0x0a || byte === 0x0d) {
-			if (hasContent) rows++;
-			hasContent = false;
-		} else if (byte > 0x20) hasContent = true;
-	}
-	return hasContent ? rows + 1 : rows;
-}
-
-/** Rows as they are read; `finish` drops a last row that was cut and turns the faults into remarks. */
-class AsciiTable {
-	private readonly raw: Float64Array[];
-	private readonly stamps: Float64Array;
-	private readonly fieldCount: number;
-	private readonly channelCount: number;
-	private readonly faults: RowFaults = {
-		text: { count: 0, first: '' },
-		short: { count: 0, first: '' },
-		long: { count: 0, first: '' }
+	const { text, short } = rows.faults;
+	if (rows.isTooNarrow)
+		return refuse(
+			'dat-columns',
+			part.file.name,
+			`line ${part.firstLine}`,
+			`${part.file.name} has rows too short for the ${header.analogues.length} analogue channels that ${header.file} lists; check that the two files belong together.`
+		);
+	if (rows.row === 0 && outcome !== 'cut')
+		return refuse(
+			'dat-empty',
+			part.file.name,
+			`line ${part.firstLine}`,
+			`${part.file.name} holds no data: a row with ${rows.fieldCount} values was expected on line ${part.firstLine}.`
+		);
+	if (outcome === 'cut')
+		remarks.push(
+			warning(
+				'dat-truncated',
+				`${part.file.name} ends in the middle of line ${rows.line} (${rows.lastRowFields} of ${rows.fieldCount} values); that row was left out.`
+			)
+		);
+	if (rows.row === short.count || text.count >= rows.row * header.analogues.length)
+		return misfit(part, header, rows);
+	describeFaults(part.file.name, rows, remarks);
+	const channels = header.analogues.map((_, channel) => channel);
+	const layout = {
+		format: 'float64' as const,
+		rowBytes: 8 * channels.length,
+		offsets: channels.map((channel) => 8 * channel),
+		factors: channels.map(() => 1),
+		additions: channels.map(() => 0)
 	};
-	private row = 0;
-	private line: number;
-	private lastRowFields = 0;
-	private readonly remarks: ReadRemark[] = [];
-
-	constructor(
-		private readonly file: string,
-		firstLine: number,
-		private readonly header: ComtradeHeader,
-		rows: number
-	) {
-		this.channelCount = header.analogues.length;
-		this.fieldCount = 2 + this.channelCount + header.statusNames.length;
-		this.raw = header.analogues.map(() => new Float64Array(rows).fill(NaN));
-		this.stamps = new Float64Array(rows).fill(NaN);
-		this.line = firstLine;
-	}
-
-	parse(bytes: Uint8Array): void {
-		let start = 0;
-		for (let at = 0; at <= bytes.length; at++) {
-			const byte = at < bytes.length ? (bytes[at] as number) : 0x0a;
-			if (byte === 0x1a) break;
-			if (byte !== 0x0a && byte !== 0x0d) continue;
-			if (at > start && !isBlankInBytes(bytes, start, at)) this.parseRow(bytes, start, at);
-			if (byte === 0x0d && bytes[at + 1] === 0x0a) at++;
-			start = at + 1;
-			this.line++;
-		}
-	}
-
-	private parseRow(bytes: Uint8Array, start: number, end: number): void {
-		let field = 0;
-		let from = start;
-		for (let at = start; at <= end; at++) {
-			if (at < end && bytes[at] !== COMMA) continue;
-			if (field >= 1 && field < 2 + this.channelCount) this.keep(bytes, field, from, at);
-			// A separator at the end of the row makes no further value.
-			const isTrailing = at === end && field >= this.fieldCount && isBlankInBytes(bytes, from, at);
-			if (!isTrailing) field++;
-			from = at + 1;
-		}
-		this.lastRowFields = field;
-		if (field < this.fieldCount) this.fault('short', `line ${this.line} has ${field}`);
-		else if (field > this.fieldCount) this.fault('long', `line ${this.line} has ${field}`);
-		this.row++;
-	}
-
-	private keep(bytes: Uint8Array, field: number, from: number, to: number): void {
-		const value = numberInBytes(bytes, from, to, DOT);
-		if (field === 1) {
-			this.stamps[this.row] = value;
-			return;
-		}
-		const channel = field - 2;
-		if (Number.isNaN(value) && !isBlankInBytes(bytes, from, to))
-			this.fault('text', `${quoted(asciiText(bytes, from, to))} on line ${this.line}`);
-		(this.raw[channel] as Float64Array)[this.row] = this.isMissingMark(channel, value) ? NaN : value;
-	}
-
-	/** A mark is only a mark where the channel could not have measured that value. */
-	private isMissingMark(channel: number, value: number): boolean {
-		if (!MISSING_MARKS.includes(value)) return false;
-		const { minimum, maximum } = this.header.analogues[channel] as {
-			minimum: number | null;
-			maximum: number | null;
-		};
-		return minimum === null || maximum === null || value < minimum || value > maximum;
-	}
-
-	private fault(kind: keyof RowFaults, first: string): void {
-		const fault = this.faults[kind];
-		if (fault.count === 0) fault.first = first;
-		fault.count++;
-	}
-
-	finish(bytes: Uint8Array): Result<ComtradeData, ReadProblem> {
-		const lastByte = bytes[bytes.length - 1];
-		const isCut = lastByte !== 0x0a && lastByte !== 0x0d && this.lastRowFields < this.fieldCount;
-		let sampleCount = this.row;
-		if (isCut) {
-			sampleCount--;
-			this.faults.short.count--;
-			this.remarks.push(
-				warning(
-					'dat-truncated',
-					`${this.file} ends in the middle of line ${this.line - 1} (${this.lastRowFields} of ${this.fieldCount} values); that row was left out.`
-				)
-			);
-		}
-		if (this.faults.short.count === sampleCount || this.faults.text.count >= sampleCount * this.channelCount)
-			return refuse(
-				'dat-columns',
-				this.file,
-				this.faults.short.first.split(' has')[0] ?? null,
-				`${this.file} does not fit ${this.header.file}: ${this.fieldCount} numbers per row were expected (number, time stamp, ${this.channelCount} analogue, ${this.header.statusNames.length} status), but ${this.faults.short.first || this.faults.text.first}.`
-			);
-		this.describeFaults();
-		return ok({
-			sampleCount,
-			raw: this.raw.map((values) => values.subarray(0, sampleCount)),
-			stamps: this.stamps.subarray(0, sampleCount),
-			remarks: this.remarks
-		});
-	}
-
-	private describeFaults(): void {
-		const { text, short, long } = this.faults;
-		if (text.count > 0)
-			this.remarks.push(
-				warning(
-					'dat-not-a-number',
-					`${this.file}: ${counted(text.count, 'value')} could not be read as a number, first ${text.first}; they count as missing.`
-				)
-			);
-		if (short.count > 0)
-			this.remarks.push(
-				warning(
-					'dat-row-short',
-					`${this.file}: ${counted(short.count, 'row')} with too few values (${this.fieldCount} were expected, ${short.first}); what is not there counts as missing.`
-				)
-			);
-		if (long.count > 0)
-			this.remarks.push(
-				warning(
-					'dat-row-long',
-					`${this.file}: ${counted(long.count, 'row')} with too many values (${this.fieldCount} were expected, ${long.first}); the surplus was ignored.`
-				)
-			);
-	}
+	return ok({
+		sampleCount: rows.row,
+		stamps: stampsInFile(stampsInto.seal()),
+		samples: rowsInFile(layout, rowsInto.seal(), 0),
+		survey: () => ({ missingCounts: rows.missingCounts, statusActivity: rows.status.activity() }),
+		keepsLimits: !rows.leftLimits,
+		remarks
+	});
 }
 
-function asciiText(bytes: Uint8Array, from: number, to: number): string {
-	return String.fromCharCode(...bytes.subarray(from, Math.min(to, from + 60)));
+type Outcome = 'whole' | 'cut' | 'line too long';
+
+/** Hands the text to the rows, whole lines at a time. */
+function takeText({ file, start, end }: DataPart, rows: AsciiRows): Outcome {
+	// One byte more, so that a last line without an end can be given one.
+	let buffer = new Uint8Array(BLOCK_BYTES + 1);
+	let held = 0;
+	let position = start;
+	while (position < end && !rows.hasEnded) {
+		const count = Math.min(buffer.length - 1 - held, end - position);
+		file.read(position, buffer.subarray(held, held + count));
+		position += count;
+		const filled = held + count;
+		let whole = filled;
+		while (whole > held && buffer[whole - 1] !== 0x0a && buffer[whole - 1] !== 0x0d) whole--;
+		if (whole === held) whole = 0;
+		if (whole > 0) rows.take(buffer, 0, whole);
+		buffer.copyWithin(0, whole, filled);
+		held = filled - whole;
+		if (held < buffer.length - 1) continue;
+		if (buffer.length > LONGEST_LINE_BYTES) return 'line too long';
+		const wider = new Uint8Array(2 * buffer.length);
+		wider.set(buffer.subarray(0, held));
+		buffer = wider;
+	}
+	if (held === 0 || rows.hasEnded) return 'whole';
+	buffer[held] = 0x0a;
+	return rows.take(buffer, 0, held + 1, true) ? 'cut' : 'whole';
+}
+
+function misfit(part: DataPart, header: ComtradeHeader, rows: AsciiRows) {
+	const { text, short } = rows.faults;
+	const found = short.first || text.first || `line ${rows.line} has ${rows.lastRowFields}`;
+	return refuse(
+		'dat-columns',
+		part.file.name,
+		found.startsWith('line') ? (found.split(' has')[0] ?? null) : null,
+		`${part.file.name} does not fit ${header.file}: ${rows.fieldCount} numbers per row were expected (number, time stamp, ${header.analogues.length} analogue, ${header.statuses.length} status), but ${found}.`
+	);
+}
+
+function describeFaults(file: string, { faults, fieldCount }: AsciiRows, remarks: ReadRemark[]): void {
+	const { text, short, long } = faults;
+	if (text.count > 0)
+		remarks.push(
+			warning(
+				'dat-not-a-number',
+				`${file}: ${counted(text.count, 'value')} could not be read as a number, first ${text.first}; they count as missing.`
+			)
+		);
+	if (short.count > 0)
+		remarks.push(
+			warning(
+				'dat-row-short',
+				`${file}: ${counted(short.count, 'row')} with too few values (${fieldCount} were expected, ${short.first}); what is not there counts as missing.`
+			)
+		);
+	if (long.count > 0)
+		remarks.push(
+			warning(
+				'dat-row-long',
+				`${file}: ${counted(long.count, 'row')} with too many values (${fieldCount} were expected, ${long.first}); the surplus was ignored.`
+			)
+		);
 }

@@ -13,13 +13,15 @@ import {
 	type CfgCursor,
 	type CfgRow
 } from './cfg-lines';
-import { parseTimeCode, parseTimeLine } from './cfg-times';
+import { parseTimeLine } from './cfg-times';
+import { parseClockLine, parseTimeZoneLine } from './cfg-clock';
 import type {
 	AnalogueLine,
 	ComtradeDataFormat,
 	ComtradeHeader,
 	ComtradeRevision,
-	RateLine
+	RateLine,
+	StatusLine
 } from './comtrade-header';
 
 const DATA_FORMATS: readonly ComtradeDataFormat[] = ['ASCII', 'BINARY', 'BINARY32', 'FLOAT32'];
@@ -81,7 +83,7 @@ function revisionOf(file: string, row: CfgRow, remarks: ReadRemark[]): ComtradeR
 function parseChannels(
 	cursor: CfgCursor,
 	remarks: ReadRemark[]
-): Result<{ analogues: AnalogueLine[]; statusNames: string[] }, ReadProblem> {
+): Result<{ analogues: AnalogueLine[]; statuses: StatusLine[] }, ReadProblem> {
 	const counts = parseChannelCounts(cursor, remarks);
 	if (!counts.ok) return counts;
 	const analogues: AnalogueLine[] = [];
@@ -90,11 +92,11 @@ function parseChannels(
 		if (!channel.ok) return channel;
 		analogues.push(channel.value);
 	}
-	const statusNames: string[] = [];
+	const statuses: StatusLine[] = [];
 	for (let position = 1; position <= counts.value.status; position++) {
-		const name = parseStatusLine(cursor, position, counts.value.status);
-		if (!name.ok) return name;
-		statusNames.push(name.value);
+		const status = parseStatusLine(cursor, position, counts.value.status);
+		if (!status.ok) return status;
+		statuses.push(status.value);
 	}
 	if (analogues.length === 0)
 		return refuse(
@@ -103,7 +105,7 @@ function parseChannels(
 			'line 2',
 			`${cursor.file} lists no analogue channel on its second line; at least one voltage or current was expected.`
 		);
-	return ok({ analogues, statusNames });
+	return ok({ analogues, statuses });
 }
 
 function parseFrequency(cursor: CfgCursor, remarks: ReadRemark[]): Result<number | null, ReadProblem> {
@@ -187,15 +189,8 @@ function parseTail(
 	const format = parseDataFormat(cursor);
 	if (!format.ok) return format;
 	const multiplier = parseTimeMultiplier(cursor, remarks);
-	const utcOffset_min = parseTimeCode(peekRow(cursor)?.fields[0] ?? '');
-	const clockQuality = cursor.lines[cursor.at + 1]?.text.split(',')[0]?.trim().toUpperCase();
-	if (clockQuality === 'F')
-		remarks.push(
-			warning(
-				'clock-not-reliable',
-				`${cursor.file}, line ${cursor.lines[cursor.at + 1]?.number ?? ''} marks the recorder’s clock as failed (quality F); check the start time against another source.`
-			)
-		);
+	const utcOffset_min = parseTimeZoneLine(cursor, revision, remarks);
+	parseClockLine(cursor, remarks);
 	const nanoseconds = Math.max(start.decimals, triggerTime.decimals) > 6;
 	return ok({
 		start: start.clock === null ? null : { local: isoLocal(start.clock), utcOffset_min },

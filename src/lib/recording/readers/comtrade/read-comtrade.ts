@@ -1,60 +1,53 @@
 import type { Result } from '../../../result';
-import { loadFile, type CaptureHandle } from '../../capture-handle';
+import { handleOf, type CaptureHandle } from '../../capture-handle';
+import { loadSamples } from '../../load-samples';
+import { memoryScratch } from '../../memory-scratch';
 import type { CaptureFile, ReadProblem, ReadRemark, Recording } from '../../recording';
 import type { CaptureSource } from '../../sample-source';
+import type { SampleScratch } from '../../sample-scratch';
 import { note, refuse, warning } from '../read-problem';
-import { asciiCompatibleBytes, decodeText, ENCODING_NAMES } from '../text-decoding';
-import { buildRecording } from './build-recording';
-import { looksLikeCff, splitCff } from './cff';
+import { decodeText, ENCODING_NAMES, utf16Of } from '../text-decoding';
+import { buildSource } from './build-recording';
+import { splitCff } from './cff';
+import { sortComtradeFiles } from './comtrade-files';
 import type { ComtradeData, ComtradeHeader } from './comtrade-header';
 import { readAsciiData } from './dat-ascii';
 import { readBinaryData } from './dat-binary';
-import { openBinaryData } from './open-binary';
+import { headOf, type DataPart } from './data-part';
+import { readNotes, type TextPart } from './note-texts';
 import { parseCfg } from './parse-cfg';
+import { asEightBitText } from './wide-text';
 
-/** The data bytes with their place in their file. */
-interface DataPart {
-	file: string;
-	bytes: Uint8Array;
-	firstLine: number;
-	firstByte: number;
-}
+/** A configuration longer than this is none: 999 999 channels of 60 characters would fit. */
+const LONGEST_CONFIGURATION_BYTES = 1 << 26;
 
-function stemOf(name: string): string {
-	return name.replace(/\.[^.]*$/, '').toLowerCase();
-}
+const SNIFFED_BYTES = 4096;
 
-function hasExtension(file: { name: string }, extension: string): boolean {
-	return file.name.toLowerCase().endsWith(extension);
-}
-
-/** Second line "8,4A,4D": what tells a configuration from every other text. */
-export function looksLikeCfg(bytes: Uint8Array): boolean {
-	const { text } = decodeText(bytes.subarray(0, 4096));
-	const second = text.split(/\r\n|\n|\r/).filter((line) => line.trim() !== '')[1] ?? '';
-	return /^\s*\d+\s*,\s*\d+\s*[AD]\s*,\s*\d+\s*[AD]\b/i.test(second);
+/** As openComtrade, with every sample in memory. Never throws on bad bytes. */
+export function readComtrade(files: CaptureFile[]): Result<Recording, ReadProblem> {
+	const opened = openComtrade(files.map(handleOf));
+	if (opened === null) return configurationMissing(files);
+	return opened.ok ? { ok: true, value: loadSamples(opened.value) } : opened;
 }
 
 /**
- * Reads a waveform in the common format for transient data exchange (IEEE C37.111-1991, -1999, -2013):
- * a configuration with its data file, or one combined file. Never throws on bad bytes.
+ * Opens a waveform in the common format for transient data exchange (IEEE C37.111-1991, -1999, -2013): a configuration with
+ * its data file, or one combined file. Binary samples stay where they are; text is decoded into `scratch`, in memory
+ * where none is given.
+ * returns  null where none of the files looks like a configuration
  */
-export function readComtrade(files: CaptureFile[]): Result<Recording, ReadProblem> {
-	const combined = files.find((file) => looksLikeCff(file.bytes) || hasExtension(file, '.cff'));
-	if (combined !== undefined) return readCombined(combined);
-	const configuration =
-		files.find((file) => hasExtension(file, '.cfg')) ?? files.find((file) => looksLikeCfg(file.bytes));
-	if (configuration === undefined) return configurationMissing(files);
-	if (configuration.bytes.length === 0)
-		return refuse(
-			'file-empty',
-			configuration.name,
-			null,
-			`${configuration.name} is empty (0 bytes); a configuration was expected.`
-		);
-	const { header, remarks } = readConfiguration(configuration.name, configuration.bytes, 1);
+export function openComtrade(
+	files: readonly CaptureHandle[],
+	scratch: SampleScratch = memoryScratch()
+): Result<CaptureSource, ReadProblem> | null {
+	const sorted = sortComtradeFiles(files);
+	if (sorted === null) return null;
+	if (sorted.combined !== undefined) return openCombined(sorted.combined, sorted.texts, scratch);
+	const configuration = sorted.configuration!;
+	const whole = { file: configuration, start: 0, end: configuration.size_bytes, firstLine: 1 };
+	const { header, remarks } = readConfiguration(whole);
 	if (!header.ok) return header;
-	const data = dataFileFor(configuration, files);
+	const { data } = sorted;
 	if (data === undefined) {
 		const stem = configuration.name.replace(/\.[^.]*$/, '');
 		return refuse(
@@ -64,26 +57,13 @@ export function readComtrade(files: CaptureFile[]): Result<Recording, ReadProble
 			`${configuration.name} came without its data file; add ${stem}.dat and upload both together.`
 		);
 	}
-	const part = { file: data.name, bytes: data.bytes, firstLine: 1, firstByte: 0 };
-	return readParts(header.value, part, remarks);
+	const part = { file: data, start: 0, end: data.size_bytes, firstLine: 1 };
+	return openParts(header.value, part, sorted.texts.map(wholeText), remarks, scratch);
 }
 
-/**
- * A configuration with binary data at stated rates, without reading the data; null where the files are anything else, or
- * nothing but their content can tell.
- */
-export function openComtrade(files: readonly CaptureHandle[]): Result<CaptureSource, ReadProblem> | null {
-	const configuration = files.find((file) => hasExtension(file, '.cfg'));
-	if (configuration === undefined || configuration.size_bytes === 0) return null;
-	const data = dataFileFor(configuration, files);
-	if (data === undefined || data.size_bytes === 0) return null;
-	const { bytes } = loadFile(configuration);
-	if (looksLikeCff(bytes)) return null;
-	const { header, remarks } = readConfiguration(configuration.name, bytes, 1);
-	if (!header.ok || header.value.dataFormat === 'ASCII' || header.value.rates.length === 0) return null;
-	const head = new Uint8Array(Math.min(data.size_bytes, SNIFFED_BYTES));
-	data.read(0, head);
-	return isNumericText(head) ? null : openBinaryData(header.value, data, remarks);
+function wholeText(file: CaptureHandle): TextPart {
+	const kind = file.name.slice(file.name.lastIndexOf('.') + 1).toUpperCase();
+	return { kind, file, start: 0, end: file.size_bytes };
 }
 
 function configurationMissing(files: CaptureFile[]): Result<Recording, ReadProblem> {
@@ -97,50 +77,57 @@ function configurationMissing(files: CaptureFile[]): Result<Recording, ReadProbl
 	);
 }
 
-function dataFileFor<File extends { name: string }>(
-	configuration: File,
-	files: readonly File[]
-): File | undefined {
-	const others = files.filter((file) => file !== configuration && !/\.(hdr|inf|cfg)$/i.test(file.name));
-	const sameStem = others.filter((file) => stemOf(file.name) === stemOf(configuration.name));
-	return (
-		sameStem.find((file) => hasExtension(file, '.dat')) ??
-		sameStem[0] ??
-		others.find((file) => hasExtension(file, '.dat')) ??
-		others[0]
-	);
-}
-
-function readConfiguration(
-	file: string,
-	bytes: Uint8Array,
-	firstLine: number
-): { header: Result<ComtradeHeader, ReadProblem>; remarks: ReadRemark[] } {
-	const { text, encoding, byteOrderMark } = decodeText(bytes);
+function readConfiguration({ file, start, end, firstLine }: DataPart): {
+	header: Result<ComtradeHeader, ReadProblem>;
+	remarks: ReadRemark[];
+} {
 	const remarks: ReadRemark[] = [];
+	const size_bytes = end - start;
+	if (size_bytes === 0 || size_bytes > LONGEST_CONFIGURATION_BYTES) {
+		const sentence =
+			size_bytes === 0
+				? `${file.name} is empty (0 bytes); a configuration was expected.`
+				: `${file.name}: ${size_bytes} bytes are too many for a configuration (at most ${LONGEST_CONFIGURATION_BYTES} were expected).`;
+		const code = size_bytes === 0 ? 'file-empty' : 'cfg-too-long';
+		return { header: refuse(code, file.name, null, sentence), remarks };
+	}
+	const bytes = new Uint8Array(size_bytes);
+	file.read(start, bytes);
+	const { text, encoding, byteOrderMark } = decodeText(bytes);
 	if (encoding !== 'utf-8')
 		remarks.push(
 			note(
 				'text-encoding',
-				`${file} is not written in UTF-8; its names were read as ${ENCODING_NAMES[encoding]}.`
+				`${file.name} is not written in UTF-8; its names were read as ${ENCODING_NAMES[encoding]}.`
 			)
 		);
 	else if (byteOrderMark)
 		remarks.push(
-			note('byte-order-mark', `${file} begins with a byte-order mark, which the format does not provide for.`)
+			note(
+				'byte-order-mark',
+				`${file.name} begins with a byte-order mark, which the format does not provide for.`
+			)
 		);
-	return { header: parseCfg(file, text, firstLine), remarks };
+	return { header: parseCfg(file.name, text, firstLine), remarks };
 }
 
-function readCombined(file: CaptureFile): Result<Recording, ReadProblem> {
-	const { bytes, wasUtf16 } = asciiCompatibleBytes(file.bytes);
-	const sections = splitCff(file.name, bytes);
+function openCombined(
+	written: CaptureHandle,
+	texts: readonly CaptureHandle[],
+	scratch: SampleScratch
+): Result<CaptureSource, ReadProblem> {
+	const head = headOf({ file: written, start: 0, end: written.size_bytes, firstLine: 1 }, SNIFFED_BYTES);
+	const isWide = utf16Of(head) !== null;
+	const file = isWide
+		? asEightBitText({ file: written, start: 0, end: written.size_bytes, firstLine: 1 }, scratch).file
+		: written;
+	const sections = splitCff(file);
 	if (!sections.ok) return sections;
 	const { configuration, data } = sections.value;
-	const { header, remarks } = readConfiguration(file.name, configuration.bytes, configuration.firstLine);
+	const { header, remarks } = readConfiguration({ file, ...configuration });
 	if (!header.ok) return header;
 	remarks.unshift(...sections.value.remarks);
-	if (wasUtf16) remarks.push(note('text-encoding', `${file.name} is written in UTF-16.`));
+	if (isWide) remarks.push(note('text-encoding', `${file.name} is written in UTF-16.`));
 	if (data.format !== null && data.format !== header.value.dataFormat) {
 		remarks.push(
 			warning(
@@ -150,55 +137,68 @@ function readCombined(file: CaptureFile): Result<Recording, ReadProblem> {
 		);
 		header.value.dataFormat = data.format;
 	}
-	return readParts(header.value, { ...data, file: file.name }, remarks);
+	const notes = [...sections.value.texts.map((text) => ({ ...text, file })), ...texts.map(wholeText)];
+	return openParts(header.value, { file, ...data }, notes, remarks, scratch);
 }
 
-function readParts(
+function openParts(
 	header: ComtradeHeader,
 	part: DataPart,
-	remarks: ReadRemark[]
-): Result<Recording, ReadProblem> {
-	if (part.bytes.length === 0)
+	texts: readonly TextPart[],
+	remarks: ReadRemark[],
+	scratch: SampleScratch
+): Result<CaptureSource, ReadProblem> {
+	if (part.end === part.start)
 		return refuse(
 			'file-empty',
-			part.file,
-			`byte ${part.firstByte}`,
-			`${part.file} holds no data (0 bytes from byte ${part.firstByte} on); ${header.dataFormat} samples were expected there.`
+			part.file.name,
+			`byte ${part.start}`,
+			`${part.file.name} holds no data (0 bytes from byte ${part.start} on); ${header.dataFormat} samples were expected there.`
 		);
-	const data = header.dataFormat === 'ASCII' ? readText(header, part) : readBinary(header, part, remarks);
+	const data =
+		header.dataFormat === 'ASCII'
+			? openText(header, part, scratch)
+			: openBinary(header, part, remarks, scratch);
 	if (!data.ok) return data;
-	return buildRecording(part.file, header, data.value, remarks);
+	const source = buildSource(part.file.name, header, data.value, remarks);
+	if (!source.ok) return source;
+	const notes = readNotes(texts, source.value.remarks);
+	return { ok: true, value: notes.length === 0 ? source.value : { ...source.value, notes } };
 }
 
-function readText(header: ComtradeHeader, part: DataPart): Result<ComtradeData, ReadProblem> {
-	const { bytes } = asciiCompatibleBytes(part.bytes);
-	const binaryAt = firstBinaryByte(bytes);
+function openText(
+	header: ComtradeHeader,
+	written: DataPart,
+	scratch: SampleScratch
+): Result<ComtradeData, ReadProblem> {
+	const part = asEightBitText(written, scratch);
+	const binaryAt = firstBinaryByte(headOf(part, SNIFFED_BYTES));
 	if (binaryAt !== null)
 		return refuse(
 			'dat-not-text',
-			part.file,
-			`byte ${part.firstByte + binaryAt}`,
-			`${part.file}, byte ${part.firstByte + binaryAt}: text was expected, because ${header.file}, line ${header.dataFormatLine} announces ASCII data, but the bytes are not text. Correct that line (BINARY, BINARY32 or FLOAT32) or export the capture again.`
+			part.file.name,
+			`byte ${part.start + binaryAt}`,
+			`${part.file.name}, byte ${part.start + binaryAt}: text was expected, because ${header.file}, line ${header.dataFormatLine} announces ASCII data, but the bytes are not text. Correct that line (BINARY, BINARY32 or FLOAT32) or export the capture again.`
 		);
-	return readAsciiData(part.file, bytes, part.firstLine, header);
+	return readAsciiData(part, header, scratch);
 }
 
 /** Text where binary is announced is read only if its numbers keep the limits that the configuration states. */
-function readBinary(
+function openBinary(
 	header: ComtradeHeader,
 	part: DataPart,
-	remarks: ReadRemark[]
+	remarks: ReadRemark[],
+	scratch: SampleScratch
 ): Result<ComtradeData, ReadProblem> {
 	const format = header.dataFormat as Exclude<typeof header.dataFormat, 'ASCII'>;
-	if (!isNumericText(part.bytes))
-		return readBinaryData(part.file, part.bytes, part.firstByte, header, format);
-	const found = `${part.file} holds text, although ${header.file}, line ${header.dataFormatLine} announces ${format} data`;
-	const data = readAsciiData(part.file, part.bytes, part.firstLine, header);
-	if (!data.ok || !keepsLimits(header, data.value))
+	if (!isNumericText(headOf(part, SNIFFED_BYTES))) return readBinaryData(part, header, format);
+	const found = `${part.file.name} holds text, although ${header.file}, line ${header.dataFormatLine} announces ${format} data`;
+	const data = readAsciiData(part, header, scratch);
+	if (!data.ok || !data.value.keepsLimits)
 		return refuse(
 			'dat-is-text',
-			part.file,
-			`byte ${part.firstByte}`,
+			part.file.name,
+			`byte ${part.start}`,
 			`${found}, and its numbers do not fit the stated channels and limits. Correct that line or export the capture again.`
 		);
 	remarks.push(
@@ -208,21 +208,8 @@ function readBinary(
 	return data;
 }
 
-function keepsLimits(header: ComtradeHeader, data: ComtradeData): boolean {
-	return data.raw.every((values, channel) => {
-		const { minimum, maximum } = header.analogues[channel] as {
-			minimum: number | null;
-			maximum: number | null;
-		};
-		if (minimum === null || maximum === null) return false;
-		return values.every((value) => Number.isNaN(value) || (value >= minimum && value <= maximum));
-	});
-}
-
-const SNIFFED_BYTES = 4096;
-
 function firstBinaryByte(bytes: Uint8Array): number | null {
-	for (let at = 0; at < Math.min(bytes.length, SNIFFED_BYTES); at++) {
+	for (let at = 0; at < bytes.length; at++) {
 		const byte = bytes[at] as number;
 		if (byte < 0x20 && byte !== 0x09 && byte !== 0x0a && byte !== 0x0d && byte !== 0x1a) return at;
 	}
@@ -232,7 +219,7 @@ function firstBinaryByte(bytes: Uint8Array): number | null {
 /** Nothing but digits, signs, separators and line ends in the first bytes: no binary sample looks like that. */
 function isNumericText(bytes: Uint8Array): boolean {
 	if (bytes.length < 8) return false;
-	for (let at = 0; at < Math.min(bytes.length, SNIFFED_BYTES); at++) {
+	for (let at = 0; at < bytes.length; at++) {
 		const byte = bytes[at] as number;
 		const isDigit = byte >= 0x30 && byte <= 0x39;
 		const isMark =

@@ -2,14 +2,12 @@ import { ok, type Result } from '../../../result';
 import type { RateSegment, ReadProblem, ReadRemark, Recording } from '../../recording';
 import { note, refuse, warning } from '../read-problem';
 import type { ComtradeHeader, ComtradeTiming } from './comtrade-header';
+import { stampAt, stampBlocks, STAMPS_AT_ONCE } from './stamp-column';
 
 export type TimeBase = Pick<Recording, 'segments' | 'timeStamps_s'>;
 
 /** Stamps count 32-bit units and start again from 0 after the last one. */
 const STAMP_WRAP = 2 ** 32;
-
-/** Stamps compared at a time. */
-const STAMPS_AT_ONCE = 8192;
 
 /** A stated rate governs; without one the time stamps are all there is. */
 export function timeBaseOf(
@@ -93,13 +91,13 @@ function splitAtGaps(
 
 /** Whether any stamp is other than zero: recorders that keep no time write nothing but zeros. */
 function hasStamps({ stamps }: ComtradeTiming): boolean {
-	for (let sample = 0; sample < stamps.length; sample++) if (stamps.at(sample) !== 0) return true;
+	for (const { values } of stampBlocks(stamps)) if (values.some((stamp) => stamp !== 0)) return true;
 	return false;
 }
 
 function ratesDisagree(dataFile: string, header: ComtradeHeader, data: ComtradeTiming): ReadRemark {
-	const first = data.stamps.at(0) as number;
-	const last = data.stamps.at(data.sampleCount - 1) as number;
+	const first = stampAt(data.stamps, 0);
+	const last = stampAt(data.stamps, data.sampleCount - 1);
 	const byStamps_Hz = (data.sampleCount - 1) / ((last - first) * header.stampUnit_s);
 	const stated = header.rates[0] as { samplingRate_Hz: number; line: number };
 	return warning(
@@ -139,36 +137,57 @@ function timeBaseFromStamps(
 	data: ComtradeTiming,
 	remarks: ReadRemark[]
 ): Result<TimeBase, ReadProblem> {
-	const times_s = new Float64Array(data.sampleCount);
-	let wrapped = 0;
-	for (let sample = 0; sample < data.sampleCount; sample++) {
-		const stamp = data.stamps.at(sample) as number;
-		const before = sample === 0 ? stamp : (data.stamps.at(sample - 1) as number);
-		if (before - stamp > STAMP_WRAP / 2) wrapped += STAMP_WRAP;
-		times_s[sample] = (stamp + wrapped - (data.stamps.at(0) as number)) * header.stampUnit_s;
-		const previous_s = times_s[sample - 1];
-		if (Number.isNaN(stamp) || (previous_s !== undefined && !((times_s[sample] as number) > previous_s)))
-			return noTime(dataFile, header, sample + 1, Number.isNaN(stamp));
+	let last_s = -Infinity;
+	for (const { from, times_s } of stampTimes(header, data)) {
+		for (let i = 0; i < times_s.length; i++) {
+			const time_s = times_s[i] as number;
+			if (!(time_s > last_s)) return noTime(dataFile, header, from + i + 1, Number.isNaN(time_s));
+			last_s = time_s;
+		}
 	}
 	if (data.sampleCount < 2) return noTime(dataFile, header, 1, true);
-	const rate_Hz = evenRate_Hz(times_s, header.stampUnit_s);
-	if (rate_Hz === null) {
+	const step_s = last_s / (data.sampleCount - 1);
+	if (!isEven(header, data, step_s)) {
 		remarks.push(
 			warning(
 				'uneven-time-stamps',
 				`${header.file}, line ${header.rateCountLine} states no sampling rate, and the time stamps in ${dataFile} are not evenly spaced; the samples were kept with their own times.`
 			)
 		);
-		return ok({ segments: [], timeStamps_s: times_s });
+		const timeStamps_s = new Float64Array(data.sampleCount);
+		for (const { from, times_s } of stampTimes(header, data)) timeStamps_s.set(times_s, from);
+		return ok({ segments: [], timeStamps_s });
 	}
+	const samplingRate_Hz = 1 / step_s;
 	remarks.push(
 		note(
 			'rate-from-stamps',
-			`${header.file}, line ${header.rateCountLine} states no sampling rate; the time stamps in ${dataFile} are evenly spaced at ${Number(rate_Hz.toPrecision(9))} Hz.`
+			`${header.file}, line ${header.rateCountLine} states no sampling rate; the time stamps in ${dataFile} are evenly spaced at ${Number(samplingRate_Hz.toPrecision(9))} Hz.`
 		)
 	);
 	const toSample = data.sampleCount;
-	return ok({ segments: [{ samplingRate_Hz: rate_Hz, fromSample: 0, toSample }], timeStamps_s: null });
+	return ok({ segments: [{ samplingRate_Hz, fromSample: 0, toSample }], timeStamps_s: null });
+}
+
+/** Seconds of the samples after sample 0, some at a time; NaN where a sample has no stamp. */
+function* stampTimes(
+	{ stampUnit_s }: ComtradeHeader,
+	{ stamps }: ComtradeTiming
+): Generator<{ from: number; times_s: Float64Array }> {
+	let first = NaN;
+	let before = NaN;
+	let wrapped = 0;
+	for (const { from, values } of stampBlocks(stamps)) {
+		if (from === 0) first = values[0] as number;
+		const times_s = new Float64Array(values.length);
+		for (let i = 0; i < values.length; i++) {
+			const stamp = values[i] as number;
+			if (before - stamp > STAMP_WRAP / 2) wrapped += STAMP_WRAP;
+			times_s[i] = (stamp + wrapped - first) * stampUnit_s;
+			before = stamp;
+		}
+		yield { from, times_s };
+	}
 }
 
 function noTime(dataFile: string, header: ComtradeHeader, sample: number, isMissing: boolean) {
@@ -181,13 +200,11 @@ function noTime(dataFile: string, header: ComtradeHeader, sample: number, isMiss
 	);
 }
 
-/** Rate of stamps that lie on a straight line within one unit of their resolution; null for any others. */
-function evenRate_Hz(times_s: Float64Array, resolution_s: number): number | null {
-	const last = times_s.length - 1;
-	const step_s = (times_s[last] as number) / last;
-	const tolerance_s = Math.min(1.01 * resolution_s, 0.1 * step_s);
-	for (let sample = 0; sample <= last; sample++) {
-		if (Math.abs((times_s[sample] as number) - sample * step_s) > tolerance_s) return null;
-	}
-	return 1 / step_s;
+/** Whether the stamps lie on a straight line within one unit of their resolution. */
+function isEven(header: ComtradeHeader, data: ComtradeTiming, step_s: number): boolean {
+	const tolerance_s = Math.min(1.01 * header.stampUnit_s, 0.1 * step_s);
+	for (const { from, times_s } of stampTimes(header, data))
+		for (let i = 0; i < times_s.length; i++)
+			if (Math.abs((times_s[i] as number) - (from + i) * step_s) > tolerance_s) return false;
+	return true;
 }
