@@ -6,6 +6,7 @@ import { parseConfig } from '../src/lib/server/config';
 import { CLIENTS, DEMO_PASSWORD, STAFF } from '../seeds/demo/people';
 import { seedDemo } from '../seeds/demo/seed-demo';
 import { prepareDatabase } from './prepare-database';
+import { PRODUCT_PROGRAMS } from './product-programs';
 import { runTogether } from './run-together';
 import { settledEnvironment } from './settled-environment';
 
@@ -52,12 +53,4 @@ function announce(): void {
 	);
 }
 
-await runTogether(
-	[
-		{ name: 'web', command: process.execPath, args: ['build/index.js'] },
-		{ name: 'worker', command: process.execPath, args: ['build/worker/main.js'] }
-	],
-	env,
-	`http://${config.host}:${config.port}/healthz`,
-	announce
-);
+await runTogether(PRODUCT_PROGRAMS, env, `http://${config.host}:${config.port}/healthz`, announce);

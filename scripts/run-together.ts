@@ -5,6 +5,8 @@ export interface Program {
 	name: string;
 	command: string;
 	args: string[];
+	/** Beside what both programs get. */
+	env?: Record<string, string>;
 }
 
 const STOP_WITHIN_MS = 8000;
@@ -49,7 +51,7 @@ export async function runTogether(
 			new Promise<void>((resolve) => {
 				// The ipc channel lets a child notice that its parent is gone.
 				const child = spawn(program.command, program.args, {
-					env,
+					env: { ...env, ...program.env },
 					stdio: ['ignore', 'inherit', 'inherit', 'ipc']
 				});
 				children.set(program.name, child);

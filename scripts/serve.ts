@@ -4,6 +4,7 @@
  * so that a service manager sees one thing that is either up or down.
  */
 import { existsSync } from 'node:fs';
+import { PRODUCT_PROGRAMS } from './product-programs';
 import { runTogether } from './run-together';
 import { prepareDatabase } from './prepare-database';
 import { parseConfig } from '../src/lib/server/config';
@@ -21,10 +22,7 @@ try {
 	const config = parseConfig(env);
 	await prepareDatabase(config.dataDir);
 	await runTogether(
-		[
-			{ name: 'web', command: process.execPath, args: ['build/index.js'] },
-			{ name: 'worker', command: process.execPath, args: ['build/worker/main.js'] }
-		],
+		PRODUCT_PROGRAMS,
 		env,
 		`${config.origin}/healthz`.replace(config.origin, `http://${config.host}:${config.port}`)
 	);

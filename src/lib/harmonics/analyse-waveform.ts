@@ -76,7 +76,7 @@ export function* analyseWaveformSteps(
  * are analysed one by one, and the train of windows starts anew at every ten-minute tick of UTC. Captures whose time
  * stamps do not lie on an even grid go the way of analyseUnevenCapture.
  *
- * onSpan   receives at most ten minutes of windows at a time, in order of time
+ * onSpan   receives about two minutes of windows at a time, in order of time
  * returns  what holds for the whole capture, or a problem whose sentence says what is needed
  * error    docs/accuracy.md
  * source   IEC 61000-4-7:2002+A1:2008, 4.4 and 5.3 to 5.6; IEC 61000-4-30:2015, 4.4, 4.5 and 4.7 (clauses from memory)

@@ -18,8 +18,8 @@ export interface AssemblyOptions {
 	phaseNames?: PhaseNames | undefined;
 }
 
-/** Windows that one span holds at most: five minutes at 50 Hz, and some. Memory does not grow beyond it. */
-const MOST_WINDOWS_PER_SPAN = 1550;
+/** Windows that one span holds at most: two minutes, and some. Memory does not grow beyond it. */
+const MOST_WINDOWS_PER_SPAN = 620;
 
 /** Collects blocks in order of time and hands on spans of windows; what holds for the whole capture stays. */
 export class CaptureAssembly {

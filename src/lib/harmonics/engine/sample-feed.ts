@@ -24,6 +24,11 @@ export class SampleFeed {
 		this.layout = source.kind === 'rows' ? layoutOf(source.layout, channelIndexes) : null;
 	}
 
+	/** Forgets what is held, so that the next stretch begins a buffer whatever was asked for before. */
+	restart(): void {
+		this.held = 0;
+	}
+
 	/** Makes samples [from, to) of the capture available; at most as many as the buffers hold. */
 	cover(from: number, to: number): void {
 		const { capacity } = this.kernels.shape;

@@ -74,6 +74,8 @@ export class WindowAnalyst {
 	/** windows  consecutive, in order of time; they may overlap at a tick */
 	analyse(windows: readonly TrackedWindow[]): WindowBlock {
 		const { mappings, pairs, plan } = this.setup;
+		// Places in the buffer round differently by where it begins; figures must not depend on which thread had what before.
+		this.feed.restart();
 		const block: WindowBlock = {
 			windows: [...windows],
 			channels: mappings.map((m) => emptyChannel(this.source.channels[m.channelIndex]!, m, windows.length)),

@@ -37,7 +37,7 @@ const EVEN_RATE_REMARKS = ['rate-too-low', 'little-filter-margin'];
  * could lose more than 5 % of the reading are not given, and a remark says what the highest one loses. A step of more
  * than five median steps is a gap, which no window spans.
  *
- * onSpan   receives at most ten minutes of windows at a time, in order of time
+ * onSpan   receives about two minutes of windows at a time, in order of time
  * returns  what holds for the whole capture, or a problem whose sentence says what is needed
  * error    beside the stated attenuation: leakage as that of even captures
  * source   Fourier integral by parts; IEC 61000-4-7:2002+A1:2008, 4.4 and 5.3 to 5.6 (clauses from memory) for windows,

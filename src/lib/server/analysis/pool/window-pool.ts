@@ -31,6 +31,9 @@ export interface WindowPool {
 /** Threads end when nothing was asked of them for so long. */
 const IDLE_MS = 30_000;
 
+/** A thread's own objects are few; a small nursery keeps what the garbage collector has not looked at yet from piling up. */
+const THREAD_MEMORY = { maxYoungGenerationSizeMb: 4, maxOldGenerationSizeMb: 128 } as const;
+
 /**
  * threadFile  compiled window-thread, or its source where the process itself runs sources
  */
@@ -42,6 +45,7 @@ export function createWindowPool(threadFile: string): WindowPool {
 		minThreads: 0,
 		maxThreads: threadCount,
 		idleTimeout: IDLE_MS,
+		resourceLimits: THREAD_MEMORY,
 		...(threadFile.endsWith('.ts') ? { execArgv: ['--import', 'tsx'] } : {})
 	});
 	return {

@@ -1,5 +1,4 @@
 /** What runs in each thread of the window pool: decodes, interpolates and transforms the windows it is given. */
-import { move, transferableSymbol, valueSymbol } from 'piscina';
 import { WindowAnalyst, type WindowBlock } from '../../../harmonics/engine/window-analyst';
 import { rowsInFile } from '../../../recording/sample-source';
 import { openFileHandle, type FileHandle } from '../../storage/file-handle';
@@ -27,24 +26,10 @@ function sourceIn({ frame, layout, firstByte }: ThreadCapture, file: FileHandle)
 	return { ...frame, samples: rowsInFile(layout, file, firstByte) };
 }
 
-/** Buffers of all typed arrays in a block: they are handed over, not copied. */
-function buffersOf(value: unknown, found: Set<ArrayBuffer> = new Set()): Set<ArrayBuffer> {
-	if (ArrayBuffer.isView(value)) found.add(value.buffer as ArrayBuffer);
-	else if (typeof value === 'object' && value !== null)
-		for (const member of Object.values(value)) buffersOf(member, found);
-	return found;
-}
-
-/** What the pool calls with each task. */
+/**
+ * What the pool calls with each task. The block is copied to the caller, not handed over: pages that were handed over would
+ * have to be asked of the system anew for every block, which costs more than the copying.
+ */
 export function analyseWindows(task: ThreadTask): WindowBlock {
-	const block = hold(task).analyst.analyse(task.windows);
-	const handedOver = {
-		get [transferableSymbol]() {
-			return [...buffersOf(block.channels), ...buffersOf(block.powers), ...buffersOf(block.halfCycles)];
-		},
-		get [valueSymbol]() {
-			return block;
-		}
-	};
-	return move(handedOver as never) as never;
+	return hold(task).analyst.analyse(task.windows);
 }
