@@ -5,7 +5,7 @@ import { analyseWaveform } from '$lib/harmonics/analyse-waveform';
 import { ORDER_STRIDE } from '$lib/harmonics/intervals';
 import type { ChannelAnalysis } from '$lib/harmonics/waveform-analysis';
 import { rootMeanSquare } from '$lib/numerics/stats/root-mean-square';
-import { readComtrade } from '$lib/recording/readers/comtrade/read-comtrade';
+import { readCapture } from '$lib/recording/read-capture';
 import { readDelimitedText } from '$lib/recording/readers/delimited-text/read-delimited-text';
 import type { Recording } from '$lib/recording/recording';
 import { sampleCapture, samplesArePresent, samplesFolder, skipReason } from './sample-files';
@@ -39,9 +39,14 @@ interface ExpectedChannel {
 /**
  * Every recording whose stretch holds a window of ten or twelve cycles at one rate and that the product reads. Not among
  * them: eight cycles of 50 kS/s and their copies, forty samples in all, two rates with four cycles each; 83 rates, which
- * the reference takes for one. Sound files are no captures that the product reads.
+ * the reference takes for one. A sound file means volts and amperes by `fullScale`, which expected.json states as its scale.
  */
-const RECORDINGS: { path: string; samplingRate_Hz?: number; comparisons: number }[] = [
+const RECORDINGS: {
+	path: string;
+	samplingRate_Hz?: number;
+	fullScale?: Record<string, number>;
+	comparisons: number;
+}[] = [
 	{ path: 'comtrade/gen50_binary_1999.cfg', comparisons: 12 },
 	{ path: 'comtrade/gen60_binary_1999.cfg', comparisons: 12 },
 	{ path: 'comtrade/relay_ascii_1991_cp866.cfg', comparisons: 3 },
@@ -56,20 +61,30 @@ const RECORDINGS: { path: string; samplingRate_Hz?: number; comparisons: number 
 		'scope_preamble_negative_time',
 		'rounded_microseconds',
 		'tabs_milli_units_cr'
-	].map((name) => ({ path: `derived/csv/${name}.csv`, comparisons: 2 }))
+	].map((name) => ({ path: `derived/csv/${name}.csv`, comparisons: 2 })),
+	...['pcm16_stereo', 'pcm24_extensible', 'float32_stereo'].map((form) => ({
+		path: `derived/wav/plugload_398_${form}.wav`,
+		fullScale: { V: 250, A: 25 },
+		comparisons: 2
+	})),
+	...['092', '117'].map((number) => ({
+		path: `wav/mains_reference_400hz_${number}.wav`,
+		fullScale: { '(counts)': 32_768 },
+		comparisons: 1
+	}))
 ];
 
 function load(path: string, samplingRate_Hz?: number): Recording {
 	const files = sampleCapture(path);
-	const read = path.endsWith('.cfg')
-		? readComtrade(files)
-		: readDelimitedText(files, samplingRate_Hz === undefined ? {} : { samplingRate_Hz });
+	const read =
+		samplingRate_Hz === undefined ? readCapture(files) : readDelimitedText(files, { samplingRate_Hz });
 	if (!read.ok) throw new Error(read.problem.sentence);
 	if (read.value.kind !== 'waveform') throw new Error(`${path} was taken for a trend`);
 	return read.value;
 }
 
-const isVoltage = (unit: string) => unit.toUpperCase().endsWith('V');
+/** Counts of a converter at the mains are a voltage in a scale of their own. */
+const isVoltage = (unit: string) => unit.toUpperCase().endsWith('V') || unit === '(counts)';
 
 /** Mean of the line phasors over windows: what single lines over the whole stretch see. */
 function coherentLine(channel: ChannelAnalysis, windows: readonly number[], order: number): number {
@@ -119,7 +134,7 @@ describe.skipIf(!samplesArePresent)(`recordings of live networks${skipReason}`, 
 			})
 		: { files: {} };
 
-	describe.each(RECORDINGS)('$path', ({ path, samplingRate_Hz, comparisons }) => {
+	describe.each(RECORDINGS)('$path', ({ path, samplingRate_Hz, fullScale, comparisons }) => {
 		it('orders 1 … 15, THD to 40 and 50, rms and frequency agree within the stated errors', () => {
 			const recording = load(path, samplingRate_Hz);
 			const listed = expected.files[path]!.channels.filter((c) => (c.windows ?? []).length > 0);
@@ -129,7 +144,7 @@ describe.skipIf(!samplesArePresent)(`recordings of live networks${skipReason}`, 
 				for (const truth of entry.windows!) {
 					// Where the reference itself is unsure by half a percent there is nothing to hold on to.
 					if (truth.err_pct_of_h1 > 0.5) continue;
-					compare(recording, positionOf(entry), entry, truth);
+					compare(recording, positionOf(entry), entry, truth, fullScale?.[entry.unit] ?? 1);
 					compared++;
 				}
 			}
@@ -141,7 +156,8 @@ describe.skipIf(!samplesArePresent)(`recordings of live networks${skipReason}`, 
 		recording: Recording,
 		position: number,
 		entry: ExpectedChannel,
-		truth: ExpectedWindow
+		truth: ExpectedWindow,
+		toPrimary: number
 	): void {
 		const outcome = analyseWaveform(
 			cutOut(recording, truth),
@@ -150,7 +166,7 @@ describe.skipIf(!samplesArePresent)(`recordings of live networks${skipReason}`, 
 					channelIndex: recording.channels[position]!.index,
 					quantity: isVoltage(entry.unit) ? 'voltage' : 'current',
 					phase: 'L1',
-					toPrimary: 1
+					toPrimary
 				}
 			],
 			{ nominalFrequency_Hz: null }

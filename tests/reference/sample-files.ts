@@ -52,6 +52,9 @@ export interface ExpectedFile {
 	samples?: number;
 	rows?: number;
 	fs_hz?: number;
+	form?: string;
+	frames?: number;
+	f1_hz_per_10s?: number[];
 	first_stamp?: string;
 	step_s?: number;
 	step_s_most_common?: number;

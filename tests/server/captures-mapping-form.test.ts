@@ -4,6 +4,7 @@ import {
 	hasErrors,
 	parseFactor,
 	readLines,
+	scalingOf,
 	trendLines,
 	typedLines,
 	waveformLines
@@ -36,6 +37,67 @@ describe('the factor to primary', () => {
 	it.each(['', 'eighty', '400/', '400/0', '-80', '1/2/3', '0'])('refuses "%s"', (text) =>
 		expect(parseFactor(text)).toBeNull()
 	);
+});
+
+describe('a capture without units', () => {
+	const channels = [channel('Channel 1 (left)', { unitAsWritten: '' }), channel('Channel 2 (right)')];
+	const blank = waveformLines(channels, [], null, 'full-scale');
+	const lines = (...typed: [quantity: '' | 'voltage' | 'current', factor: string][]) =>
+		blank.map((line, i) => ({ ...line, phase: 'L1' as const, quantity: typed[i]![0], factor: typed[i]![1] }));
+	const read = (...typed: [quantity: '' | 'voltage' | 'current', factor: string][]) =>
+		readLines(lines(...typed), DEFAULT_PHASE_NAMES, 'full-scale');
+
+	it('is a WAV, and no other', () => {
+		expect(['WAV', 'COMTRADE', 'delimited text', 'PQDIF'].map(scalingOf)).toEqual([
+			'full-scale',
+			'ratio',
+			'ratio',
+			'ratio'
+		]);
+	});
+
+	it('asks for full scale and assumes none', () => {
+		expect(blank.map(({ factor, written }) => [factor, written])).toEqual([
+			['', 'no unit, in parts of full scale'],
+			['', 'no unit, in parts of full scale']
+		]);
+	});
+
+	it.each([
+		['voltage', '250 V', 250],
+		['voltage', '6 kV', 6000],
+		['voltage', '6,5 kV', 6500],
+		['current', '25 A', 25],
+		['current', '25', 25],
+		['current', '800 mA', 0.8]
+	] as const)('%s: %s', (quantity, typed, toPrimary) => {
+		const { mappings, errors } = read([quantity, typed], ['', '']);
+		expect(hasErrors(errors)).toBe(false);
+		expect(mappings).toEqual([{ index: 0, quantity, phase: 'L1', toPrimary, fullScale: typed }]);
+	});
+
+	it.each([
+		['voltage', '', 'Enter what full scale means, such as 250 V or 6 kV'],
+		['current', '', 'cannot be analysed'],
+		['voltage', '25 A', '“A” is not a unit of voltage'],
+		['current', 'loud', '“loud” is not a current'],
+		['voltage', '0 V', 'Full scale must be above 0'],
+		['voltage', '-5 V', 'Full scale must be above 0']
+	] as const)('refuses a channel of %s with “%s”', (quantity, typed, words) => {
+		const { mappings, errors } = read([quantity, typed], ['', '']);
+		expect(mappings).toEqual([]);
+		expect(errors.lines[0]?.factor).toContain(words);
+	});
+
+	it('keeps what was typed, turned round or not', () => {
+		const confirmed = [
+			{ channelIndex: 0, quantity: 'voltage', phase: 'L1', toPrimary: -6000, fullScale: '6 kV' } as const
+		];
+		expect(waveformLines(channels, [], confirmed, 'full-scale')[0]).toMatchObject({
+			factor: '6 kV',
+			reversed: true
+		});
+	});
 });
 
 describe('the mapping form', () => {
@@ -101,6 +163,7 @@ describe('the start of a recording', () => {
 		});
 		expect(startText(start, '2026-01-10T14:05:00.250Z', 'Europe/Berlin')).toEqual({
 			told: false,
+			written: true,
 			local: '2026-01-10T15:05:00.250'
 		});
 	});

@@ -51,10 +51,16 @@ export interface ChannelFacts {
 /** Orders above this are never asked for (IEEE Std 519, IEC 61000-4-30 class A). */
 const MAX_ORDER_ANALYSED = 50;
 
-/** A capture read into memory or one whose samples are still in their file. */
-export function captureFacts(content: CaptureContent | OpenedCapture): CaptureFacts {
+/**
+ * A capture read into memory or one whose samples are still in their file.
+ * pointFrequency_Hz  nominal frequency of the point, for the highest order where the file states none
+ */
+export function captureFacts(
+	content: CaptureContent | OpenedCapture,
+	pointFrequency_Hz: number | null = null
+): CaptureFacts {
 	if (content.kind === 'trend') return trendFacts(content);
-	return waveformFacts('samples' in content ? content : sourceOf(content));
+	return waveformFacts('samples' in content ? content : sourceOf(content), pointFrequency_Hz);
 }
 
 /** Seconds from the first sample to the end of the last one, gaps included. */
@@ -71,7 +77,7 @@ export function recordingDuration_s(recording: Pick<Recording, 'segments' | 'tim
 	);
 }
 
-function waveformFacts(recording: CaptureSource): CaptureFacts {
+function waveformFacts(recording: CaptureSource, pointFrequency_Hz: number | null): CaptureFacts {
 	const rates = recording.segments.map(({ samplingRate_Hz }) => samplingRate_Hz);
 	const samplingRate_Hz =
 		rates.length === 0 ? null : { lowest: Math.min(...rates), highest: Math.max(...rates) };
@@ -86,7 +92,10 @@ function waveformFacts(recording: CaptureSource): CaptureFacts {
 		sampleCount: recording.sampleCount,
 		duration_s: recordingDuration_s(recording),
 		valuesAre: sideOfAll(recording.channels),
-		highestOrder: highestOrderOf(samplingRate_Hz?.lowest ?? null, recording.nominalFrequency_Hz)
+		highestOrder: highestOrderOf(
+			samplingRate_Hz?.lowest ?? null,
+			recording.nominalFrequency_Hz ?? pointFrequency_Hz
+		)
 	};
 }
 

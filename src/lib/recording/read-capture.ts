@@ -2,9 +2,11 @@ import { ok, type Result } from '../result';
 import { handleOf, loadFile, type CaptureHandle } from './capture-handle';
 import { incompleteGroupSentence } from './group-capture-files';
 import { loadSamples } from './load-samples';
+import { memoryScratch } from './memory-scratch';
 import { openComtrade } from './readers/comtrade/read-comtrade';
 import { readDelimitedText, type DelimitedTextOptions } from './readers/delimited-text/read-delimited-text';
 import { refuse } from './readers/read-problem';
+import { openWav } from './readers/wav/read-wav';
 import type { CaptureContent, CaptureFile, CapturePart, ReadProblem, Trend } from './recording';
 import type { SampleScratch } from './sample-scratch';
 import { sourceOf, type CaptureSource } from './sample-source';
@@ -17,7 +19,6 @@ const OTHER_FORMATS: { bytes: number[]; words: string }[] = [
 	},
 	{ bytes: [0xd0, 0xcf, 0x11, 0xe0], words: 'an office document; save the table as CSV' },
 	{ bytes: [0x25, 0x50, 0x44, 0x46], words: 'a PDF document; export the samples as COMTRADE or CSV' },
-	{ bytes: [0x52, 0x49, 0x46, 0x46], words: 'a RIFF (WAV) file; export the samples as COMTRADE or CSV' },
 	{ bytes: [0x40, 0x14, 0x11, 0x4a], words: 'a PQDIF file; export the samples as COMTRADE or CSV' },
 	{ bytes: [0x1f, 0x8b], words: 'a gzip archive; unpack it' },
 	{ bytes: [0x89, 0x50, 0x4e, 0x47], words: 'a picture; upload the samples themselves' },
@@ -35,8 +36,8 @@ export function readCapture(
 	const [first] = files;
 	if (first === undefined)
 		return refuse('no-files', '', null, 'No file was given; a capture of one file or a set was expected.');
-	const comtrade = openComtrade(files.map(handleOf));
-	if (comtrade !== null) return comtrade.ok ? ok(loadSamples(comtrade.value)) : comtrade;
+	const waveform = openWaveform(files.map(handleOf), memoryScratch());
+	if (waveform !== null) return waveform.ok ? ok(loadSamples(waveform.value)) : waveform;
 	const incomplete = incompleteGroupSentence(files.map(({ name }) => name));
 	if (incomplete !== null && !isTableByName(first))
 		return refuse('capture-incomplete', first.name, null, incomplete);
@@ -47,7 +48,7 @@ export function readCapture(
 				'format-not-read',
 				file.name,
 				'byte 0',
-				`${file.name} begins (byte 0) like ${other.words}. COMTRADE (CFG with DAT, or CFF) or delimited text was expected.`
+				`${file.name} begins (byte 0) like ${other.words}. COMTRADE (CFG with DAT, or CFF), WAV or delimited text was expected.`
 			);
 	}
 	return readDelimitedText(files, options);
@@ -95,13 +96,24 @@ export function openCapture(
 	);
 }
 
+/** Formats whose samples are rows of bytes, in their file or in scratch; null for any other. */
+function openWaveform(
+	files: readonly CaptureHandle[],
+	scratch: SampleScratch
+): Result<CaptureSource, ReadProblem> | null {
+	const comtrade = openComtrade(files, scratch);
+	if (comtrade !== null) return comtrade;
+	const [only, ...others] = files;
+	return only !== undefined && others.length === 0 ? openWav(only) : null;
+}
+
 /** Formats that hold one recording or one trend. */
 function openSingle(
 	files: readonly CaptureHandle[],
 	options: OpenOptions
 ): Result<OpenedCapture, ReadProblem> {
-	const comtrade = openComtrade(files, options.scratch);
-	if (comtrade !== null) return comtrade;
+	const waveform = openWaveform(files, options.scratch ?? memoryScratch());
+	if (waveform !== null) return waveform;
 	const read = readCapture(files.map(loadFile), options);
 	if (!read.ok || read.value.kind === 'trend') return read as Result<Trend, ReadProblem>;
 	return ok(sourceOf(read.value));

@@ -5,7 +5,9 @@ const conductor = {
 	quantity: z.enum(['voltage', 'current']),
 	phase: z.enum(PHASES),
 	/** Factor from the recorded value to the primary one: ratio × (−1 when reversed). */
-	toPrimary: z.number().refine((factor) => Number.isFinite(factor) && factor !== 0)
+	toPrimary: z.number().refine((factor) => Number.isFinite(factor) && factor !== 0),
+	/** What full scale means ("250 V"), as it was stated for samples that carry no unit; toPrimary then holds it in V or A. */
+	fullScale: z.string().optional()
 };
 
 /** What the engineer confirmed about a capture; its shape follows the kind of capture. */

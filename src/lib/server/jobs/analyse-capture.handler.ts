@@ -101,6 +101,14 @@ async function prepare(
 		nominalVoltages_V: nominalVoltagesByPhase_V(survey.facts.system, survey.facts.nominalVoltage_V),
 		phaseNames: survey.facts.phaseNames
 	};
+	const isUncalibrated =
+		content.format === 'WAV' &&
+		settings.kind === 'waveform' &&
+		settings.channels.some(({ fullScale }) => fullScale === undefined);
+	if (isUncalibrated)
+		throw new JobFailed(
+			'A channel of this capture is not calibrated. State what its full scale means, such as 250 V, and confirm again.'
+		);
 	if (content.kind === 'waveform' && settings.kind === 'waveform')
 		return prepareWaveform(container, content, settings.channels, basis, context, storePart);
 	if (content.kind === 'trend' && settings.kind === 'trend')

@@ -64,7 +64,7 @@ async function addCapture(
 	{ key, title, content }: CapturePart<OpenedCapture>
 ): Promise<void> {
 	const facts: StoredFacts = {
-		...captureFacts(content),
+		...captureFacts(content, survey.facts.nominalFrequency_Hz),
 		suggestions: suggestMappings(content, survey.facts)
 	};
 	const id = await capturesRepository(trx, context).add({

@@ -3,7 +3,7 @@ import { AppError } from '$lib/server/app-error';
 import { container } from '$lib/server/container';
 import { guard } from '$lib/server/http/guard';
 import type { PageServerLoadEvent, RequestEvent } from './$types';
-import { hasErrors, readLines, trendLines, typedLines, waveformLines } from './mapping-form';
+import { hasErrors, readLines, scalingOf, trendLines, typedLines, waveformLines } from './mapping-form';
 import { readStart, startText } from './start-field';
 
 type Detail = Awaited<ReturnType<ReturnType<typeof container>['services']['captures']['detail']>>;
@@ -14,7 +14,8 @@ function linesOf({ capture }: Detail) {
 		? waveformLines(
 				facts.channels,
 				facts.suggestions,
-				settings?.kind === 'waveform' ? settings.channels : null
+				settings?.kind === 'waveform' ? settings.channels : null,
+				scalingOf(facts.format)
 			)
 		: trendLines(facts.channels, facts.suggestions, settings?.kind === 'trend' ? settings.columns : null);
 }
@@ -31,6 +32,7 @@ export const load = guard('capture.read', async (event: PageServerLoadEvent, act
 		isConfirmed: detail.capture.settings !== null,
 		jobs: detail.jobs,
 		lines: linesOf(detail),
+		scaling: scalingOf(facts.format),
 		start: startText(facts.start, detail.capture.startedAt, detail.survey.timeZone)
 	};
 });
@@ -42,7 +44,11 @@ export const actions = {
 		const detail = await captures.detail(actor, surveyId, captureId);
 		const form = await event.request.formData();
 		const lines = typedLines(linesOf(detail), form);
-		const { mappings, errors } = readLines(lines, detail.survey.facts.phaseNames);
+		const { mappings, errors } = readLines(
+			lines,
+			detail.survey.facts.phaseNames,
+			scalingOf(detail.capture.facts.format)
+		);
 		const start = readStart(form.get('start'), detail.capture.facts.start, detail.survey.timeZone);
 		if (!start.ok) errors.start = start.problem;
 		if (hasErrors(errors) || !start.ok)

@@ -1,4 +1,6 @@
 import { formatPhase, PHASES, type Phase, type PhaseNames } from '$lib/recording/phase';
+import { err, ok, type Result } from '$lib/result';
+import { parseQuantity } from '$lib/units/quantity-input';
 import { parseTypedNumber } from '$lib/units/typed-number';
 
 /** One line of the mapping form: a channel of a waveform, or the columns of a trend that belong together. */
@@ -11,8 +13,17 @@ export interface MappingLine {
 	reason: string;
 	quantity: '' | 'voltage' | 'current';
 	phase: Phase | '';
+	/** As typed: a factor or ratio, or what full scale means. */
 	factor: string;
 	reversed: boolean;
+}
+
+/** How the values of a capture become primary ones: by a transformer ratio, or by what full scale of its numbers means. */
+export type Scaling = 'ratio' | 'full-scale';
+
+/** Samples without a unit have to be calibrated; all others only need a ratio. */
+export function scalingOf(format: string): Scaling {
+	return format === 'WAV' ? 'full-scale' : 'ratio';
 }
 
 interface Suggested {
@@ -28,7 +39,13 @@ interface Described {
 	valuesAre: string;
 	ratio: { primary: number; secondary: number } | null;
 }
-type Confirmed = { quantity: 'voltage' | 'current'; phase: Phase; toPrimary: number };
+interface Confirmed {
+	quantity: 'voltage' | 'current';
+	phase: Phase;
+	toPrimary: number;
+	/** What full scale means, as it was typed; only where that had to be stated. */
+	fullScale?: string | undefined;
+}
 
 const SIDE = { primary: 'primary', secondary: 'secondary', unknown: 'side not stated' } as Record<
 	string,
@@ -49,8 +66,10 @@ function lineOf(
 	title: string,
 	written: string,
 	reason: string,
-	mapping: Confirmed | null
+	mapping: Confirmed | null,
+	scaling: Scaling = 'ratio'
 ): MappingLine {
+	const factor = mapping ? String(Number(Math.abs(mapping.toPrimary).toPrecision(12))) : '1';
 	return {
 		indexes,
 		title,
@@ -58,7 +77,7 @@ function lineOf(
 		reason,
 		quantity: mapping?.quantity ?? '',
 		phase: mapping?.phase ?? '',
-		factor: mapping ? String(Number(Math.abs(mapping.toPrimary).toPrecision(12))) : '1',
+		factor: scaling === 'full-scale' ? (mapping?.fullScale ?? '') : factor,
 		reversed: mapping !== null && mapping.toPrimary < 0
 	};
 }
@@ -67,14 +86,16 @@ function lineOf(
 export function waveformLines(
 	channels: readonly Described[],
 	suggestions: readonly Suggested[],
-	confirmed: readonly (Confirmed & { channelIndex: number })[] | null
+	confirmed: readonly (Confirmed & { channelIndex: number })[] | null,
+	scaling: Scaling = 'ratio'
 ): MappingLine[] {
 	return channels.map((channel, index) => {
 		const suggestion = suggestions.find((candidate) => candidate.channelIndex === index);
 		const mapping = confirmed
 			? (confirmed.find((candidate) => candidate.channelIndex === index) ?? null)
 			: (suggestion?.mapping ?? null);
-		return lineOf([index], channel.name, describe(channel), suggestion?.reason ?? '', mapping);
+		const written = scaling === 'full-scale' ? 'no unit, in parts of full scale' : describe(channel);
+		return lineOf([index], channel.name, written, suggestion?.reason ?? '', mapping, scaling);
 	});
 }
 
@@ -137,10 +158,34 @@ export interface MappingErrors {
 	start: string;
 }
 
+interface Factor {
+	toPrimary: number;
+	fullScale?: string;
+}
+
+function readFactor({ quantity, factor: typed }: MappingLine, scaling: Scaling): Result<Factor, string> {
+	if (scaling === 'ratio' || quantity === '') {
+		const toPrimary = parseFactor(typed);
+		return toPrimary === null
+			? err('Enter a factor such as 80, or a ratio such as 400/5; 1 for primary values.')
+			: ok({ toPrimary });
+	}
+	const example = quantity === 'voltage' ? '250 V or 6 kV' : '25 A or 1.2 kA';
+	if (typed === '')
+		return err(
+			`Enter what full scale means, such as ${example}: without it the channel has no ${quantity} and cannot be analysed.`
+		);
+	const parsed = parseQuantity(quantity, typed);
+	if (!parsed.ok) return parsed;
+	if (parsed.value <= 0) return err(`Full scale must be above 0, such as ${example}.`);
+	return ok({ toPrimary: parsed.value, fullScale: typed });
+}
+
 /** The mapping of each index of the lines in use, or what has to be mended. */
 export function readLines(
 	lines: readonly MappingLine[],
-	names: PhaseNames
+	names: PhaseNames,
+	scaling: Scaling = 'ratio'
 ): { mappings: (Confirmed & { index: number })[]; errors: MappingErrors } {
 	const errors: MappingErrors = { lines: {}, form: '', start: '' };
 	const mappings: (Confirmed & { index: number })[] = [];
@@ -148,14 +193,10 @@ export function readLines(
 	for (const [i, line] of lines.entries()) {
 		const { quantity, phase } = line;
 		if (quantity === '') continue;
-		const factor = parseFactor(line.factor);
+		const factor = readFactor(line, scaling);
 		if (phase === '') errors.lines[i] = { phase: 'Choose the conductor, or set the channel to not used.' };
-		if (factor === null)
-			errors.lines[i] = {
-				...errors.lines[i],
-				factor: 'Enter a factor such as 80, or a ratio such as 400/5; 1 for primary values.'
-			};
-		if (phase === '' || factor === null) continue;
+		if (!factor.ok) errors.lines[i] = { ...errors.lines[i], factor: factor.problem };
+		if (phase === '' || !factor.ok) continue;
 		const key = `${quantity}/${phase}`;
 		const twin = taken.get(key);
 		if (twin !== undefined)
@@ -163,8 +204,9 @@ export function readLines(
 				phase: `The ${quantity} of ${formatPhase(phase, names)} is already taken from ${twin}. Choose another conductor, or set one of them to not used.`
 			};
 		taken.set(key, line.title);
-		const toPrimary = line.reversed ? -factor : factor;
-		for (const index of line.indexes) mappings.push({ index, quantity, phase, toPrimary });
+		const { toPrimary, ...stated } = factor.value;
+		const turned = line.reversed ? -toPrimary : toPrimary;
+		for (const index of line.indexes) mappings.push({ index, quantity, phase, toPrimary: turned, ...stated });
 	}
 	if (mappings.length === 0 && Object.keys(errors.lines).length === 0)
 		errors.form = 'Nothing is mapped. Say for at least one channel what it measures.';

@@ -6,6 +6,8 @@ import { err, ok, type Result } from '$lib/result';
 export interface StartField {
 	/** The file tells the instant, zone included: nothing to decide. */
 	told: boolean;
+	/** The file tells a date and time, with or without a zone. */
+	written: boolean;
 	/** Local time at the site, for the field; empty when nobody has told it yet. */
 	local: string;
 }
@@ -22,8 +24,9 @@ export function startText(
 	zone: string
 ): StartField {
 	const told = start !== null && start.utcOffset_min !== null;
-	if (confirmedAt !== null) return { told, local: localIso(Date.parse(confirmedAt), zone) };
-	return { told, local: '' };
+	const written = start !== null;
+	if (confirmedAt !== null) return { told, written, local: localIso(Date.parse(confirmedAt), zone) };
+	return { told, written, local: '' };
 }
 
 /** The confirmed start; the field counts only where the file leaves it open. */
