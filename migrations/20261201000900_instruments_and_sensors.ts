@@ -39,8 +39,9 @@ export async function up(knex: Knex): Promise<void> {
 		t.integer('position').notNullable();
 		t.text('name').notNullable();
 		t.text('quantity').notNullable().checkIn(['voltage', 'current']);
-		// Greatest rms value that the input takes, in V or A at the input.
+		// Greatest rms value that the input takes, at the input itself: V at a current input where a sensor gives volts.
 		t.double('range_rms');
+		t.text('range_unit').notNullable().defaultTo('V').checkIn(['A', 'V']);
 		t.integer('resolution_bits');
 		t.text('sensor_id').references('sensors.id');
 		t.index(['practice_id', 'instrument_id', 'position']);

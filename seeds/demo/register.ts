@@ -90,12 +90,17 @@ export async function registerDemo(
 	for (const instrument of INSTRUMENTS) {
 		story.at(instrument.calibratedDaysAgo - 2, 9);
 		const id = await services.instruments.create(owner, instrument.facts);
-		await services.instruments.addCalibration(owner, id, {
-			certificateNumber: instrument.certificate,
-			laboratory: 'Calder Metrology (invented)',
-			calibratedOn: isoDay(new Date(today.getTime() - instrument.calibratedDaysAgo * 86_400_000)),
-			dueOn: isoDay(new Date(today.getTime() + instrument.dueInDays * 86_400_000))
-		});
+		await services.calibrations.add(
+			owner,
+			{ instrumentId: id },
+			{
+				note: '',
+				certificateNumber: instrument.certificate,
+				laboratory: 'Calder Metrology (invented)',
+				calibratedOn: isoDay(new Date(today.getTime() - instrument.calibratedDaysAgo * 86_400_000)),
+				dueOn: isoDay(new Date(today.getTime() + instrument.dueInDays * 86_400_000))
+			}
+		);
 		instruments.push(id);
 	}
 	return { staff, clientPeople, points, instruments };

@@ -161,6 +161,7 @@ export const INSTRUMENTS: {
 			harmonicClass: 'I',
 			channels: '4 voltages, 4 currents',
 			sensors: 'split-core current sensors 2000 A, class 0.5',
+			inputs: [],
 			currentSensorError_pct: 0.5,
 			voltageSensorError_pct: null,
 			notes: ''
@@ -177,6 +178,7 @@ export const INSTRUMENTS: {
 			harmonicClass: 'II',
 			channels: '4 voltages, 4 currents',
 			sensors: 'flexible current sensors 3000 A, class 1',
+			inputs: [],
 			currentSensorError_pct: 1,
 			voltageSensorError_pct: null,
 			notes: ''

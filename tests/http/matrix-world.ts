@@ -41,7 +41,14 @@ async function oneOfEverything(container: Container, owner: Actor, clientName: s
 		'later.csv',
 		new Blob(['t,u\n']).stream() as unknown as Parameters<typeof container.services.uploads.receive>[3]
 	);
-	const ids = { instrument: newId(), query: newId(), action: newId(), mail: newId() };
+	const ids = {
+		instrument: newId(),
+		sensor: newId(),
+		certificate: newId(),
+		query: newId(),
+		action: newId(),
+		mail: newId()
+	};
 	await db('instruments').insert({
 		id: ids.instrument,
 		practice_id: owner.practiceId,
@@ -49,6 +56,24 @@ async function oneOfEverything(container: Container, owner: Actor, clientName: s
 		model: 'R1',
 		serial_number: '1',
 		harmonic_class: 'I',
+		created_at: NOW
+	});
+	await db('sensors').insert({
+		id: ids.sensor,
+		practice_id: owner.practiceId,
+		name: `Clamp of ${clientName}`,
+		kind: 'clamp',
+		created_at: NOW
+	});
+	await db('calibrations').insert({
+		id: ids.certificate,
+		practice_id: owner.practiceId,
+		sensor_id: ids.sensor,
+		certificate_number: 'C-1',
+		calibrated_on: '2026-01-05',
+		due_on: '2027-01-05',
+		certificate_sha256: pdf.sha256,
+		certificate_file_name: 'certificate.pdf',
 		created_at: NOW
 	});
 	await db('queries').insert({

@@ -65,6 +65,10 @@ export const ROUTE_TABLE: Readonly<Record<string, RouteRule>> = {
 	'/(app)/instruments/[instrument]': consultants(['calibrate', 'archive', 'restore']),
 	'/(app)/instruments/[instrument]/edit': consultants(['default']),
 	'/(app)/instruments/new': consultants(['default']),
+	'/(app)/instruments/sensors': consultants(),
+	'/(app)/instruments/sensors/[sensor]': consultants(['calibrate', 'archive', 'restore']),
+	'/(app)/instruments/sensors/[sensor]/edit': consultants(['default']),
+	'/(app)/instruments/sensors/new': consultants(['default']),
 	'/(app)/limit-library': consultants(),
 	'/(app)/limit-library/[limitSet]': consultants(),
 	'/(app)/practice': { for: OWNER, status: 303 },
@@ -120,6 +124,7 @@ export const ROUTE_TABLE: Readonly<Record<string, RouteRule>> = {
 		query: 'from_s=0&to_s=0.1&points=100',
 		methods: { GET: [200] }
 	},
+	'/(api)/api/v1/certificates/[certificate]': { for: CONSULTANTS, methods: { GET: [200] } },
 	'/(api)/api/v1/jobs/[job]': { for: CONSULTANTS, methods: { GET: [200] } },
 	'/(api)/api/v1/jobs/[job]/cancel': { for: CONSULTANTS, methods: { POST: [200, 409] } },
 	'/(api)/api/v1/jobs/[job]/events': { for: CONSULTANTS, methods: { GET: [200] } },

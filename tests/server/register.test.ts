@@ -274,25 +274,33 @@ describe('surveys', () => {
 
 describe('instruments', () => {
 	it('take their state from the latest due day', async () => {
-		const { instruments } = built.services;
+		const { instruments, calibrations } = built.services;
 		const list = async (address: string) => ({
 			...parseListQuery(new URLSearchParams(address), INSTRUMENT_SORTS, 'name'),
 			archived: false,
 			calibration: null
 		});
 		expect((await instruments.page(a, mine.instrument)).calibration).toBe('none');
-		const certificate = { certificateNumber: 'C-1', laboratory: 'Lab' };
-		await instruments.addCalibration(a, mine.instrument, {
-			...certificate,
-			calibratedOn: '2024-03-01',
-			dueOn: '2025-03-01'
-		});
+		const certificate = { certificateNumber: 'C-1', laboratory: 'Lab', note: '' };
+		await calibrations.add(
+			a,
+			{ instrumentId: mine.instrument },
+			{
+				...certificate,
+				calibratedOn: '2024-03-01',
+				dueOn: '2025-03-01'
+			}
+		);
 		expect((await instruments.page(a, mine.instrument)).calibration).toBe('overdue');
-		await instruments.addCalibration(a, mine.instrument, {
-			...certificate,
-			calibratedOn: '2025-05-01',
-			dueOn: '2026-05-01'
-		});
+		await calibrations.add(
+			a,
+			{ instrumentId: mine.instrument },
+			{
+				...certificate,
+				calibratedOn: '2025-05-01',
+				dueOn: '2026-05-01'
+			}
+		);
 		// 43 days ahead of the clock.
 		expect((await instruments.page(a, mine.instrument)).calibration).toBe('soon');
 		expect((await instruments.list(a, await list(''))).rows).toMatchObject([
@@ -301,11 +309,15 @@ describe('instruments', () => {
 		const filtered = { ...(await list('')), calibration: 'overdue' as const };
 		expect((await instruments.list(a, filtered)).total).toBe(0);
 		await expect(
-			instruments.addCalibration(a, mine.instrument, {
-				...certificate,
-				calibratedOn: '2026-04-01',
-				dueOn: '2027-04-01'
-			})
+			calibrations.add(
+				a,
+				{ instrumentId: mine.instrument },
+				{
+					...certificate,
+					calibratedOn: '2026-04-01',
+					dueOn: '2027-04-01'
+				}
+			)
 		).rejects.toMatchObject({ code: 'invalid' });
 	});
 });
@@ -385,12 +397,17 @@ describe('another practice’s rows', () => {
 		[
 			'calibration',
 			() =>
-				built.services.instruments.addCalibration(a, theirs.instrument, {
-					certificateNumber: 'x',
-					laboratory: '',
-					calibratedOn: '2026-01-01',
-					dueOn: '2027-01-01'
-				})
+				built.services.calibrations.add(
+					a,
+					{ instrumentId: theirs.instrument },
+					{
+						note: '',
+						certificateNumber: 'x',
+						laboratory: '',
+						calibratedOn: '2026-01-01',
+						dueOn: '2027-01-01'
+					}
+				)
 		]
 	];
 

@@ -14,7 +14,9 @@ import { createMailboxService } from './services/mailbox.service';
 import { createPeopleService } from './services/people.service';
 import { createPracticeService } from './services/practice.service';
 import { createDeskService } from './services/desk.service';
+import { createCalibrationsService } from './services/calibrations.service';
 import { createInstrumentsService } from './services/instruments.service';
+import { createSensorsService } from './services/sensors.service';
 import { createPortalService } from './services/portal.service';
 import { createQueriesService } from './services/queries.service';
 import { createRegisterService } from './services/register.service';
@@ -46,6 +48,8 @@ function buildServices(deps: ServiceDeps) {
 		register: createRegisterService(deps),
 		surveys: createSurveysService(deps),
 		instruments: createInstrumentsService(deps),
+		sensors: createSensorsService(deps),
+		calibrations: createCalibrationsService(deps),
 		limitLibrary: createLimitLibraryService(deps),
 		account: createAccountService(deps),
 		invitations: createInvitationsService(deps),

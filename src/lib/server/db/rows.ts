@@ -283,6 +283,7 @@ export interface InstrumentChannelRow {
 	name: string;
 	quantity: 'voltage' | 'current';
 	range_rms: number | null;
+	range_unit: 'A' | 'V';
 	resolution_bits: number | null;
 	sensor_id: string | null;
 }

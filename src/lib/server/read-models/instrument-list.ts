@@ -1,12 +1,18 @@
 import {
 	calibrationState,
-	DUE_SOON_DAYS,
 	type CalibrationState,
 	type InstrumentFacts
 } from '../../register/instrument-facts';
+import type { SensorFacts } from '../../register/sensor-facts';
 import type { Db } from '../db/database';
-import type { CalibrationRow, InstrumentRow } from '../db/rows';
+import type { InstrumentChannelRow, InstrumentRow } from '../db/rows';
+import { calibrationsRepository, toCertificateSpan } from '../repositories/calibrations.repository';
+import { instrumentsRepository, toInputFacts } from '../repositories/instruments.repository';
 import type { Scope } from '../repositories/scope';
+import { sensorsRepository, toSensorFacts } from '../repositories/sensors.repository';
+import { CALIBRATION_STATE_SQL, lastDueDay, soonUntil } from './calibration-filter';
+import { certificateRows, type CertificateRow } from './certificate-rows';
+import { instrumentUses, type InstrumentUse } from './instrument-use';
 import { likePattern, type ListPage, type ListQuery } from './list-query';
 
 export const INSTRUMENT_SORTS = ['name', 'due'] as const;
@@ -15,13 +21,6 @@ export type InstrumentSort = (typeof INSTRUMENT_SORTS)[number];
 export interface InstrumentListQuery extends ListQuery<InstrumentSort> {
 	archived: boolean;
 	calibration: CalibrationState | null;
-}
-
-const STATES: readonly CalibrationState[] = ['valid', 'soon', 'overdue', 'none'];
-
-/** The state asked for in an address; null for none or one that is not known. */
-export function parseCalibrationFilter(value: string | null): CalibrationState | null {
-	return STATES.find((state) => state === value) ?? null;
 }
 
 export interface InstrumentListRow {
@@ -39,26 +38,14 @@ export interface InstrumentPage {
 	id: string;
 	facts: InstrumentFacts;
 	archivedAt: string | null;
-	calibrations: CalibrationRow[];
+	certificates: CertificateRow[];
 	dueOn: string | null;
 	calibration: CalibrationState;
-	surveys: { id: string; number: string; title: string }[];
+	today: string;
+	/** Sensors plugged into its inputs, by id, with the state of their own calibration. */
+	sensors: Record<string, SensorFacts & { dueOn: string | null; calibration: CalibrationState }>;
+	uses: InstrumentUse[];
 }
-
-/** The day DUE_SOON_DAYS after an ISO day. */
-function soonUntil(today: string): string {
-	const day = new Date(`${today}T00:00:00Z`);
-	day.setUTCDate(day.getUTCDate() + DUE_SOON_DAYS);
-	return day.toISOString().slice(0, 10);
-}
-
-/** The same rule as calibrationState(), as a filter on the last due day. */
-const STATE_SQL: Record<CalibrationState, string> = {
-	none: 'due_on is null',
-	overdue: 'due_on < :today',
-	soon: 'due_on >= :today and due_on <= :soon',
-	valid: 'due_on > :soon'
-};
 
 /** Instruments of a practice with the state of their calibration on a day. */
 export async function listInstruments(
@@ -77,7 +64,10 @@ export async function listInstruments(
 		const rows = db.from(withDue.clone());
 		void (query.archived ? rows.whereNotNull('archived_at') : rows.whereNull('archived_at'));
 		if (query.calibration !== null)
-			void rows.andWhereRaw(`(${STATE_SQL[query.calibration]})`, { today, soon: soonUntil(today) });
+			void rows.andWhereRaw(`(${CALIBRATION_STATE_SQL[query.calibration]})`, {
+				today,
+				soon: soonUntil(today)
+			});
 		if (query.q !== '')
 			void rows.andWhereRaw(
 				"(name like ? escape '\\' or model like ? escape '\\' or serial_number like ? escape '\\')",
@@ -111,7 +101,10 @@ export async function listInstruments(
 	};
 }
 
-export function toInstrumentFacts(row: InstrumentRow): InstrumentFacts {
+export function toInstrumentFacts(
+	row: InstrumentRow,
+	inputs: readonly InstrumentChannelRow[]
+): InstrumentFacts {
 	return {
 		name: row.name,
 		model: row.model,
@@ -119,6 +112,7 @@ export function toInstrumentFacts(row: InstrumentRow): InstrumentFacts {
 		harmonicClass: row.harmonic_class,
 		channels: row.channels,
 		sensors: row.sensors,
+		inputs: inputs.map(toInputFacts),
 		currentSensorError_pct: row.current_sensor_error_pct,
 		voltageSensorError_pct: row.voltage_sensor_error_pct,
 		notes: row.notes
@@ -131,29 +125,38 @@ export async function loadInstrumentPage(
 	instrumentId: string,
 	today: string
 ): Promise<InstrumentPage | null> {
-	const instrument = await db('instruments')
-		.where({ practice_id: scope.practiceId, id: instrumentId })
-		.first();
+	const instruments = instrumentsRepository(db, scope);
+	const instrument = await instruments.byId(instrumentId);
 	if (!instrument) return null;
-	const calibrations = await db('calibrations')
-		.where({ practice_id: scope.practiceId, instrument_id: instrumentId })
-		.orderBy('calibrated_on', 'desc');
-	const dueOn =
-		calibrations
-			.map((row) => row.due_on)
-			.sort()
-			.at(-1) ?? null;
+	const inputs = await instruments.inputs([instrumentId]);
+	const calibrations = await calibrationsRepository(db, scope).ofInstruments([instrumentId]);
+	const dueOn = lastDueDay(calibrations);
 	return {
 		id: instrument.id,
-		facts: toInstrumentFacts(instrument),
+		facts: toInstrumentFacts(instrument, inputs),
 		archivedAt: instrument.archived_at,
-		calibrations,
+		certificates: certificateRows(calibrations),
 		dueOn,
 		calibration: calibrationState(dueOn, today),
-		surveys: await db('surveys')
-			.where({ practice_id: scope.practiceId, instrument_id: instrumentId })
-			.orderBy('updated_at', 'desc')
-			.limit(20)
-			.select('id', 'number', 'title')
+		today,
+		sensors: await sensorsOf(db, scope, inputs, today),
+		uses: await instrumentUses(db, scope, instrumentId, calibrations.map(toCertificateSpan))
 	};
+}
+
+async function sensorsOf(
+	db: Db,
+	scope: Pick<Scope, 'practiceId'>,
+	inputs: readonly InstrumentChannelRow[],
+	today: string
+): Promise<InstrumentPage['sensors']> {
+	const ids = inputs.flatMap((input) => input.sensor_id ?? []);
+	const rows = await sensorsRepository(db, scope).byIds(ids);
+	const calibrations = await calibrationsRepository(db, scope).ofSensors(ids);
+	return Object.fromEntries(
+		rows.map((row) => {
+			const dueOn = lastDueDay(calibrations.filter((one) => one.sensor_id === row.id));
+			return [row.id, { ...toSensorFacts(row), dueOn, calibration: calibrationState(dueOn, today) }];
+		})
+	);
 }

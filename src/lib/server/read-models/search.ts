@@ -9,7 +9,7 @@ export interface SearchHit {
 }
 
 export interface SearchGroup {
-	kind: 'clients' | 'sites' | 'points' | 'surveys' | 'captures' | 'reports';
+	kind: 'clients' | 'sites' | 'points' | 'surveys' | 'captures' | 'instruments' | 'sensors' | 'reports';
 	label: string;
 	hits: SearchHit[];
 	/** More were found than are shown. */
@@ -28,6 +28,8 @@ interface Source {
 	join: string;
 	select: { title: string; detail: string; href: string };
 	where?: string;
+	/** The practice's own, of no client: nobody who acts for a client finds them. */
+	ofPractice?: true;
 }
 
 /** `x` is the row found. Each join carries the practice along, and each is filtered by it below. */
@@ -86,6 +88,32 @@ const SOURCES: Source[] = [
 		where: 'x.removed_at is null'
 	},
 	{
+		kind: 'instruments',
+		label: 'Instruments',
+		table: 'instruments',
+		columns: ['x.name', 'x.model', 'x.serial_number'],
+		join: '',
+		select: {
+			title: 'x.name',
+			detail: "trim(x.model || ' · ' || x.serial_number, ' ·')",
+			href: "'/instruments/' || x.id"
+		},
+		ofPractice: true
+	},
+	{
+		kind: 'sensors',
+		label: 'Sensors',
+		table: 'sensors',
+		columns: ['x.name', 'x.serial_number', "replace(x.kind, '-', ' ')"],
+		join: '',
+		select: {
+			title: 'x.name',
+			detail: "trim(replace(x.kind, '-', ' ') || ' · ' || x.serial_number, ' ·')",
+			href: "'/instruments/sensors/' || x.id"
+		},
+		ofPractice: true
+	},
+	{
 		kind: 'reports',
 		label: 'Reports',
 		table: 'reports',
@@ -100,6 +128,8 @@ const SOURCES: Source[] = [
 ];
 
 async function find(db: Db, scope: Scope, source: Source, q: string): Promise<SearchGroup> {
+	if (source.ofPractice && scope.clientId !== undefined)
+		return { kind: source.kind, label: source.label, hits: [], more: false };
 	const words = likePattern(q);
 	const clientColumn = source.table === 'clients' ? 'x.id' : 'x.client_id';
 	const conditions = [

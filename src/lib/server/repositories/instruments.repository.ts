@@ -1,7 +1,7 @@
-import type { CalibrationFacts, InstrumentFacts } from '../../register/instrument-facts';
+import type { InputFacts, InstrumentFacts } from '../../register/instrument-facts';
 import type { Db } from '../db/database';
 import { newId } from '../db/ids';
-import type { CalibrationRow, InstrumentRow } from '../db/rows';
+import type { InstrumentChannelRow, InstrumentRow } from '../db/rows';
 import type { Scope } from './scope';
 
 function columns(facts: InstrumentFacts) {
@@ -18,19 +18,50 @@ function columns(facts: InstrumentFacts) {
 	};
 }
 
-/** Instruments and their calibrations. They belong to the practice; no client sees them. */
+export function toInputFacts(row: InstrumentChannelRow): InputFacts {
+	return {
+		name: row.name,
+		quantity: row.quantity,
+		rangeRms: row.range_rms,
+		rangeUnit: row.range_unit,
+		resolution_bits: row.resolution_bits,
+		sensorId: row.sensor_id
+	};
+}
+
+/** Instruments and their inputs. They belong to the practice; no client sees them. */
 export function instrumentsRepository(db: Db, scope: Pick<Scope, 'practiceId'>) {
 	const mine = () => db('instruments').where({ practice_id: scope.practiceId });
+
+	/** The list as it now is; nothing refers to an input by its id. */
+	async function setInputs(instrumentId: string, inputs: readonly InputFacts[]): Promise<void> {
+		const own = { practice_id: scope.practiceId, instrument_id: instrumentId };
+		await db('instrument_channels').where(own).delete();
+		for (const [position, input] of inputs.entries())
+			await db('instrument_channels').insert({
+				...own,
+				id: newId(),
+				position,
+				name: input.name,
+				quantity: input.quantity,
+				range_rms: input.rangeRms,
+				range_unit: input.rangeUnit,
+				resolution_bits: input.resolution_bits,
+				sensor_id: input.sensorId
+			});
+	}
 
 	return {
 		byId: (id: string): Promise<InstrumentRow | undefined> => mine().where({ id }).first(),
 
 		inUse: (): Promise<InstrumentRow[]> => mine().whereNull('archived_at').orderBy('name'),
 
-		calibrations: (instrumentId: string): Promise<CalibrationRow[]> =>
-			db('calibrations')
-				.where({ practice_id: scope.practiceId, instrument_id: instrumentId })
-				.orderBy('calibrated_on', 'desc'),
+		/** Of one instrument or of several, each in the order of its terminals. */
+		inputs: (instrumentIds: readonly string[]): Promise<InstrumentChannelRow[]> =>
+			db('instrument_channels')
+				.where({ practice_id: scope.practiceId })
+				.whereIn('instrument_id', instrumentIds)
+				.orderBy(['instrument_id', 'position']),
 
 		async add(facts: InstrumentFacts, at: string): Promise<string> {
 			const id = newId();
@@ -41,30 +72,17 @@ export function instrumentsRepository(db: Db, scope: Pick<Scope, 'practiceId'>) 
 				created_at: at,
 				archived_at: null
 			});
+			await setInputs(id, facts.inputs);
 			return id;
 		},
 
 		async update(id: string, facts: InstrumentFacts): Promise<void> {
 			await mine().where({ id }).update(columns(facts));
+			await setInputs(id, facts.inputs);
 		},
 
 		async setArchived(id: string, at: string | null): Promise<void> {
 			await mine().where({ id }).update({ archived_at: at });
-		},
-
-		async addCalibration(instrumentId: string, facts: CalibrationFacts, at: string): Promise<string> {
-			const id = newId();
-			await db('calibrations').insert({
-				id,
-				practice_id: scope.practiceId,
-				instrument_id: instrumentId,
-				certificate_number: facts.certificateNumber,
-				laboratory: facts.laboratory,
-				calibrated_on: facts.calibratedOn,
-				due_on: facts.dueOn,
-				created_at: at
-			});
-			return id;
 		}
 	};
 }

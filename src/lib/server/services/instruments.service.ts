@@ -1,9 +1,9 @@
 import type { Actor } from '../../access/access';
-import type { CalibrationFacts, InstrumentFacts } from '../../register/instrument-facts';
+import type { InstrumentFacts } from '../../register/instrument-facts';
 import { AppError, requireFound } from '../app-error';
 import { appendAudit } from '../audit/audit-log';
 import { requirePermission } from '../auth/require-permission';
-import { withTransaction } from '../db/database';
+import { withTransaction, type Db } from '../db/database';
 import {
 	listInstruments,
 	loadInstrumentPage,
@@ -12,10 +12,22 @@ import {
 } from '../read-models/instrument-list';
 import { instrumentsRepository } from '../repositories/instruments.repository';
 import { scopeOf } from '../repositories/scope';
+import { sensorsRepository } from '../repositories/sensors.repository';
 import type { ServiceDeps } from '../service-deps';
 import { queueReassessment } from './assessments/queue-reassessment';
 
-/** Instruments of the practice and the calibrations that make their readings count. */
+/** A sensor of another practice is as good as none. */
+async function requireOwnSensors(trx: Db, actor: Actor, { inputs }: InstrumentFacts): Promise<void> {
+	const wanted = new Set(inputs.flatMap((input) => input.sensorId ?? []));
+	const found = await sensorsRepository(trx, scopeOf(actor)).byIds([...wanted]);
+	if (found.length !== wanted.size)
+		throw new AppError(
+			'invalid',
+			'A sensor chosen at an input is no longer in the register. Choose it again from the list.'
+		);
+}
+
+/** Instruments of the practice, their inputs, and what they were used for. */
 export function createInstrumentsService({ db, clock, jobs }: ServiceDeps) {
 	const today = () => clock().toISOString().slice(0, 10);
 
@@ -34,6 +46,7 @@ export function createInstrumentsService({ db, clock, jobs }: ServiceDeps) {
 			requirePermission(actor, 'register.write');
 			const now = clock();
 			return withTransaction(db, async (trx) => {
+				await requireOwnSensors(trx, actor, facts);
 				const id = await instrumentsRepository(trx, scopeOf(actor)).add(facts, now.toISOString());
 				await appendAudit(
 					trx,
@@ -56,6 +69,8 @@ export function createInstrumentsService({ db, clock, jobs }: ServiceDeps) {
 			await withTransaction(db, async (trx) => {
 				const instruments = instrumentsRepository(trx, scopeOf(actor));
 				const before = requireFound(await instruments.byId(instrumentId), 'instrument');
+				const inputsBefore = await instruments.inputs([instrumentId]);
+				await requireOwnSensors(trx, actor, facts);
 				await instruments.update(instrumentId, facts);
 				await queueReassessment(trx, jobs, actor.practiceId, { instrumentId });
 				await appendAudit(
@@ -65,7 +80,7 @@ export function createInstrumentsService({ db, clock, jobs }: ServiceDeps) {
 						action: 'instrument.changed',
 						subjectKind: 'instrument',
 						subjectId: instrumentId,
-						detail: { before: toInstrumentFacts(before), after: facts }
+						detail: { before: toInstrumentFacts(before, inputsBefore), after: facts }
 					},
 					clock()
 				);
@@ -87,32 +102,6 @@ export function createInstrumentsService({ db, clock, jobs }: ServiceDeps) {
 						subjectKind: 'instrument',
 						subjectId: instrumentId,
 						detail: { name: instrument.name }
-					},
-					now
-				);
-			});
-		},
-
-		async addCalibration(actor: Actor, instrumentId: string, facts: CalibrationFacts): Promise<void> {
-			requirePermission(actor, 'register.write');
-			if (facts.calibratedOn > today())
-				throw new AppError(
-					'invalid',
-					'The day of calibration lies in the future. Enter the day on the certificate.'
-				);
-			const now = clock();
-			await withTransaction(db, async (trx) => {
-				const instruments = instrumentsRepository(trx, scopeOf(actor));
-				requireFound(await instruments.byId(instrumentId), 'instrument');
-				const id = await instruments.addCalibration(instrumentId, facts, now.toISOString());
-				await appendAudit(
-					trx,
-					actor,
-					{
-						action: 'calibration.added',
-						subjectKind: 'instrument',
-						subjectId: instrumentId,
-						detail: { calibrationId: id, ...facts }
 					},
 					now
 				);

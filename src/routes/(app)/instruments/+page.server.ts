@@ -1,6 +1,7 @@
 import { container } from '$lib/server/container';
 import { guard } from '$lib/server/http/guard';
-import { INSTRUMENT_SORTS, parseCalibrationFilter } from '$lib/server/read-models/instrument-list';
+import { parseCalibrationFilter } from '$lib/server/read-models/calibration-filter';
+import { INSTRUMENT_SORTS } from '$lib/server/read-models/instrument-list';
 import { parseListQuery } from '$lib/server/read-models/list-query';
 import type { PageServerLoadEvent } from './$types';
 
@@ -10,5 +11,9 @@ export const load = guard('register.read', async ({ url }: PageServerLoadEvent, 
 		archived: url.searchParams.get('show') === 'archived',
 		calibration: parseCalibrationFilter(url.searchParams.get('calibration'))
 	};
-	return { query, list: await container().services.instruments.list(actor, query) };
+	return {
+		query,
+		today: container().clock().toISOString().slice(0, 10),
+		list: await container().services.instruments.list(actor, query)
+	};
 });

@@ -15,12 +15,23 @@ export async function queueReassessment(
 	practiceId: string,
 	changed: ChangedBasis
 ): Promise<void> {
-	const column = 'pointId' in changed ? 's.point_id' : 'surveyId' in changed ? 's.id' : 's.instrument_id';
-	const [value] = Object.values(changed);
 	const surveys: { id: string }[] = await trx('surveys as s')
 		.join('assessments as a', 'a.survey_id', 's.id')
 		.where({ 's.practice_id': practiceId, 's.status': 'open', 'a.is_current': 1 })
-		.andWhere(column, value as string)
+		.andWhere((basis) => {
+			if ('pointId' in changed) void basis.where('s.point_id', changed.pointId);
+			else if ('surveyId' in changed) void basis.where('s.id', changed.surveyId);
+			else
+				void basis
+					.where('s.instrument_id', changed.instrumentId)
+					.orWhereIn(
+						's.id',
+						trx('captures')
+							.where({ practice_id: practiceId, instrument_id: changed.instrumentId })
+							.whereNull('removed_at')
+							.select('survey_id')
+					);
+		})
 		.distinct('s.id as id');
 	for (const { id } of surveys) await jobs.enqueue(trx, assessSurvey, { surveyId: id }, { practiceId });
 }

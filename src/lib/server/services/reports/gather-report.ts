@@ -22,6 +22,7 @@ import type {
 import { actionsRepository } from '../../repositories/actions.repository';
 import { analysesRepository } from '../../repositories/analyses.repository';
 import { assessmentsRepository, type AssessmentInputRecord } from '../../repositories/assessments.repository';
+import { calibrationsRepository } from '../../repositories/calibrations.repository';
 import { capturesRepository } from '../../repositories/captures.repository';
 import { instrumentsRepository } from '../../repositories/instruments.repository';
 import { limitSetsRepository } from '../../repositories/limit-sets.repository';
@@ -179,7 +180,7 @@ async function instrumentOf(
 	const instruments = instrumentsRepository(db, scope);
 	const row = await instruments.byId(instrumentId);
 	if (row === undefined) return null;
-	const calibrations = await instruments.calibrations(instrumentId);
+	const calibrations = await calibrationsRepository(db, scope).ofInstruments([instrumentId]);
 	const { from, to } = period;
 	const covers =
 		from === null || to === null || calibrations.length === 0

@@ -1,10 +1,10 @@
-import { fail, redirect } from '@sveltejs/kit';
+import { redirect } from '@sveltejs/kit';
 import { superValidate } from 'sveltekit-superforms';
 import { zod4 } from 'sveltekit-superforms/adapters';
 import { calibrationSchema } from '$lib/register/instrument-facts';
 import { container } from '$lib/server/container';
+import { keepCertificate } from '$lib/server/http/certificate-action';
 import { guard } from '$lib/server/http/guard';
-import { saveForm } from '$lib/server/http/save-form';
 import type { PageServerLoadEvent, RequestEvent } from './$types';
 
 export const load = guard('register.read', async (event: PageServerLoadEvent, actor) => ({
@@ -15,14 +15,9 @@ export const load = guard('register.read', async (event: PageServerLoadEvent, ac
 const here = (event: RequestEvent) => `/instruments/${event.params.instrument}`;
 
 export const actions = {
-	calibrate: guard('register.write', async (event: RequestEvent, actor) => {
-		const form = await superValidate(event, zod4(calibrationSchema));
-		if (!form.valid) return fail(422, { form });
-		return saveForm(form, async () => {
-			await container().services.instruments.addCalibration(actor, event.params.instrument, form.data);
-			return here(event);
-		});
-	}),
+	calibrate: guard('register.write', (event: RequestEvent, actor) =>
+		keepCertificate(event, actor, { instrumentId: event.params.instrument }, here(event))
+	),
 	archive: guard('register.write', async (event: RequestEvent, actor) => {
 		await container().services.instruments.setArchived(actor, event.params.instrument, true);
 		redirect(303, '/instruments');

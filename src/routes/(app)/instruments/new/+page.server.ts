@@ -11,7 +11,8 @@ import { guard } from '$lib/server/http/guard';
 import { saveForm } from '$lib/server/http/save-form';
 import type { PageServerLoadEvent, RequestEvent } from './$types';
 
-export const load = guard('register.write', async (_event: PageServerLoadEvent) => ({
+export const load = guard('register.write', async (_event: PageServerLoadEvent, actor) => ({
+	sensors: await container().services.sensors.choices(actor),
 	form: await superValidate(EMPTY_INSTRUMENT, zod4(instrumentFormSchema), { errors: false })
 }));
 

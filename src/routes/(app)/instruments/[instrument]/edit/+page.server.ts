@@ -15,6 +15,7 @@ export const load = guard('register.write', async (event: PageServerLoadEvent, a
 	const { id, facts } = await container().services.instruments.page(actor, event.params.instrument);
 	return {
 		instrument: { id, name: facts.name },
+		sensors: await container().services.sensors.choices(actor),
 		form: await superValidate(instrumentFormFromFacts(facts), zod4(instrumentFormSchema))
 	};
 });
