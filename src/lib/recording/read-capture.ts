@@ -40,7 +40,7 @@ export function readCapture(
 	if (waveform !== null) return waveform.ok ? ok(loadSamples(waveform.value)) : waveform;
 	const incomplete = incompleteGroupSentence(files.map(({ name }) => name));
 	if (incomplete !== null && !isTableByName(first))
-		return refuse('capture-incomplete', first.name, null, incomplete);
+		return refuse('capture-incomplete', leftAlone(files, incomplete), null, incomplete);
 	for (const file of files) {
 		const other = OTHER_FORMATS.find(({ bytes }) => bytes.every((byte, at) => file.bytes[at] === byte));
 		if (other !== undefined)
@@ -117,6 +117,11 @@ function openSingle(
 	const read = readCapture(files.map(loadFile), options);
 	if (!read.ok || read.value.kind === 'trend') return read as Result<Trend, ReadProblem>;
 	return ok(sourceOf(read.value));
+}
+
+/** Name of the file that a sentence about an incomplete group begins with. */
+function leftAlone(files: readonly CaptureFile[], sentence: string): string {
+	return files.find(({ name }) => sentence.startsWith(`${name} `))?.name ?? '';
 }
 
 /** A ".dat" with headings is a table of its own; rows of bare numbers, or binary, belong to a configuration. */

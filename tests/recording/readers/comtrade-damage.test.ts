@@ -46,6 +46,8 @@ describe('a configuration with one bad line is refused with file, line and expec
 		[2, '3,2B,1D', 'line 2', 'channel counts'],
 		[3, '1,VA,A,,kV,0,0045,0,0,-99998,99998,1,1,P,extra', 'line 3', 'decimal commas'],
 		[4, '2,IA,A,,A,abc,0,0,-99998,99998,1,1,P', 'line 4', 'multiplier a'],
+		[4, '2,IA,A,,A,1e300,0,0,-99998,99998,1,1,P', 'line 4', 'multiplier a'],
+		[8, '1920,1e300', 'line 8', 'sampling rate 1 of 1'],
 		[4, '2,IA,A', 'line 4', 'analogue channel 2 of 2'],
 		[5, 'Trip', 'line 5', 'status channel 1 of 1'],
 		[6, 'sixty', 'line 6', 'line frequency'],
@@ -74,6 +76,24 @@ describe('a configuration with one bad line is refused with file, line and expec
 		const result = readComtrade([{ name: cfg.name, bytes: encode(lines) }, dat]);
 		expect(!result.ok && result.problem.sentence).toBe(
 			'survey.cfg ends after line 7; sampling rate 1 of 1 (rate in Hz, number of the last sample at this rate, more than 0) was expected on line 8.'
+		);
+	});
+});
+
+describe('what a damaged configuration says of itself', () => {
+	it('names no control characters to people', () => {
+		const result = readComtrade(withLine(3, '1,V\u0000\u0012A,A,,kV,3.92e-06,0,7.5,-99998,99998,1,1,P'));
+		if (!result.ok) throw new Error(result.problem.sentence);
+		expect(result.value.channels[0]?.name).toBe('V A');
+		// eslint-disable-next-line no-control-regex -- what must not be there
+		for (const { sentence } of result.value.remarks) expect(sentence).not.toMatch(/[\u0000-\u001f]/);
+	});
+
+	it('names the line that lists no analogue channel, wherever it stands', () => {
+		const result = readComtrade(withLine(1, 'Bellwether,R1,2013\r\n\r\n1,0A,1D\r\n1,Trip,,,0'));
+		expect(!result.ok && result.problem.place).toBe('line 3');
+		expect(!result.ok && result.problem.sentence).toBe(
+			'survey.cfg, line 3 lists no analogue channel; at least one voltage or current was expected.'
 		);
 	});
 });

@@ -17,7 +17,7 @@ describe('a number in bytes', () => {
 				const at = Math.max(plain.startsWith('-') ? 2 : 1, plain.length - places);
 				return `${plain.slice(0, at)}.${plain.slice(at)}`;
 			}),
-			fc.tuple(fc.integer(), fc.integer({ min: -330, max: 330 })).map(([m, e]) => `${m}E${e}`)
+			fc.tuple(fc.integer(), fc.integer({ min: -330, max: 298 })).map(([m, e]) => `${m}E${e}`)
 		);
 		fc.assert(
 			fc.property(text, (written) => {
@@ -38,10 +38,24 @@ describe('a number in bytes', () => {
 		['000123', 123]
 	])('%j is %d', (text, value) => expect(parse(text)).toBe(value));
 
-	it.each(['', '  ', '-', '.', 'abc', '1.2.3', '1,2', '12 V', '1e', '1e+', 'NaN', 'inf', '--1', '0x10'])(
-		'%j is no number',
-		(text) => expect(parse(text)).toBeNaN()
-	);
+	it.each([
+		'',
+		'  ',
+		'-',
+		'.',
+		'abc',
+		'1.2.3',
+		'1,2',
+		'12 V',
+		'1e',
+		'1e+',
+		'NaN',
+		'inf',
+		'--1',
+		'0x10',
+		'1e400',
+		'-1e400'
+	])('%j is no number', (text) => expect(parse(text)).toBeNaN());
 
 	it('keeps the sign of zero', () => expect(Object.is(parse('-0'), -0)).toBe(true));
 

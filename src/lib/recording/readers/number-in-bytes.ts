@@ -31,7 +31,7 @@ function textOf(bytes: Uint8Array, start: number, end: number, decimalByte: numb
  * Decimal number written in ASCII at [start, end), surrounding blanks and quotation marks allowed.
  * decimalByte  DOT or COMMA
  * returns      the double nearest to the text, as Number() gives it; NaN for anything that is not a number
- *              (an empty field and the words "nan" and "inf" included)
+ *              (an empty field, the words "nan" and "inf", and what no double holds, such as 1e400, included)
  * method       up to 15 digits and |exponent| ≤ 22 need one exact product or quotient (both operands exact,
  *              so the one rounding is the right one); longer texts go through Number()
  */
@@ -84,7 +84,7 @@ export function numberInBytes(bytes: Uint8Array, start: number, end: number, dec
 		if (negativeExponent) exponent = -exponent;
 	}
 	const power = exponent - fractionDigits;
-	if (!exact || power > 22 || power < -22) return Number(textOf(bytes, start, end, decimalByte));
+	if (!exact || power > 22 || power < -22) return finiteOrNaN(Number(textOf(bytes, start, end, decimalByte)));
 	const magnitude =
 		power >= 0 ? mantissa * (EXACT_POWERS[power] as number) : mantissa / (EXACT_POWERS[-power] as number);
 	return negative ? -magnitude : magnitude;
@@ -95,5 +95,10 @@ const NUMBER_TEXT = /^[+-]?(\d+\.?\d*|\.\d+)([eE][+-]?\d+)?$/;
 /** The same for a short text field with a decimal point; NaN when it is not a number. */
 export function numberInText(text: string): number {
 	const trimmed = text.trim();
-	return NUMBER_TEXT.test(trimmed) ? Number(trimmed) : NaN;
+	return NUMBER_TEXT.test(trimmed) ? finiteOrNaN(Number(trimmed)) : NaN;
+}
+
+/** Nothing that was measured is infinite: what a double cannot hold is damage. */
+function finiteOrNaN(value: number): number {
+	return Number.isFinite(value) ? value : NaN;
 }

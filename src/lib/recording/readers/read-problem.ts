@@ -24,9 +24,14 @@ export function counted(count: number, noun: string): string {
 	return `${count} ${noun}${count === 1 ? '' : 's'}`;
 }
 
+/** Text of a file as people may see it: control characters, which only damage puts there, are blanks. */
+export function withoutControls(text: string): string {
+	// eslint-disable-next-line no-control-regex -- control characters are what is taken out
+	return text.replace(/[\u0000-\u001f\u007f]+/g, ' ').trim();
+}
+
 /** What was found, fit for a sentence: quoted, control characters shown as blanks, cut after 40 characters. */
 export function quoted(text: string): string {
-	// eslint-disable-next-line no-control-regex -- unreadable bytes are exactly what has to be made visible
-	const plain = text.replace(/[\u0000-\u001f\u007f]+/g, ' ').trim();
+	const plain = withoutControls(text);
 	return plain === '' ? 'nothing' : `“${plain.length > 40 ? `${plain.slice(0, 40)}…` : plain}”`;
 }

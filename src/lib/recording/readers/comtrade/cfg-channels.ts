@@ -11,7 +11,7 @@ const ANALOGUE_FIELDS_1991 = 10;
 export function parseChannelCounts(
 	cursor: CfgCursor,
 	remarks: ReadRemark[]
-): Result<{ analogue: number; status: number }, ReadProblem> {
+): Result<{ analogue: number; status: number; line: number }, ReadProblem> {
 	const expected = 'the channel counts, such as “8,4A,4D”,';
 	const row = nextRow(cursor, expected);
 	if (!row.ok) return row;
@@ -35,7 +35,7 @@ export function parseChannelCounts(
 			)
 		);
 	}
-	return ok({ analogue, status });
+	return ok({ analogue, status, line: row.value.line });
 }
 
 /** "1,IA,A,GER 1,A,2.458,0,0,-32768,32767,2500,5,P"; the last three are absent in the 1991 form. */
@@ -63,8 +63,8 @@ export function parseAnalogueLine(
 
 function analogueOf(cursor: CfgCursor, row: CfgRow, expected: string): Result<AnalogueLine, ReadProblem> {
 	const field = (index: number) => row.fields[index] ?? '';
-	const a = finiteNumber(field(5));
-	const b = field(6) === '' ? 0 : finiteNumber(field(6));
+	const a = scaleNumber(field(5));
+	const b = field(6) === '' ? 0 : scaleNumber(field(6));
 	if (a === null || b === null)
 		return unexpected(
 			cursor,
@@ -84,6 +84,14 @@ function analogueOf(cursor: CfgCursor, row: CfgRow, expected: string): Result<An
 		ratio: ratioOf(finiteNumber(field(10)), finiteNumber(field(11))),
 		valuesAre: sideOf(field(12))
 	});
+}
+
+/** Nothing that is measured has a value as great as this; with it samples would be infinite. */
+const GREATEST_SCALE = 1e30;
+
+function scaleNumber(text: string): number | null {
+	const value = finiteNumber(text);
+	return value !== null && Math.abs(value) < GREATEST_SCALE ? value : null;
 }
 
 function ratioOf(primary: number | null, secondary: number | null): AnalogueLine['ratio'] {

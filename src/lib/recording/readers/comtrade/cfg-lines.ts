@@ -1,7 +1,7 @@
 import { err, ok, type Result } from '../../../result';
 import type { ReadProblem } from '../../recording';
 import { numberInText } from '../number-in-bytes';
-import { quoted, refuse } from '../read-problem';
+import { quoted, refuse, withoutControls } from '../read-problem';
 
 /** Lines of a configuration, walked from top to bottom; blank lines are passed over. */
 export interface CfgCursor {
@@ -40,7 +40,7 @@ export function nextRow(cursor: CfgCursor, expected: string): Result<CfgRow, Rea
 export function peekRow(cursor: CfgCursor): CfgRow | null {
 	const line = cursor.lines[cursor.at];
 	if (line === undefined) return null;
-	return { fields: line.text.split(',').map((field) => field.trim()), text: line.text, line: line.number };
+	return { fields: line.text.split(',').map(withoutControls), text: line.text, line: line.number };
 }
 
 function endsTooSoon(cursor: CfgCursor, expected: string): Result<never, ReadProblem> {

@@ -102,8 +102,8 @@ function parseChannels(
 		return refuse(
 			'no-analogue-channels',
 			cursor.file,
-			'line 2',
-			`${cursor.file} lists no analogue channel on its second line; at least one voltage or current was expected.`
+			`line ${counts.value.line}`,
+			`${cursor.file}, line ${counts.value.line} lists no analogue channel; at least one voltage or current was expected.`
 		);
 	return ok({ analogues, statuses });
 }
@@ -166,7 +166,7 @@ function parseRateLine(
 		samplingRate_Hz !== null &&
 		samplingRate_Hz >= 0 &&
 		lastSample !== null &&
-		Number.isInteger(lastSample) &&
+		Number.isSafeInteger(lastSample) &&
 		lastSample > lastBefore;
 	if (!isReadable) return unexpected(cursor, row.value, 'cfg-rate-line', expected);
 	return ok({ samplingRate_Hz, lastSample, line: row.value.line });

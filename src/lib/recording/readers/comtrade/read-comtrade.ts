@@ -192,7 +192,7 @@ function openBinary(
 ): Result<ComtradeData, ReadProblem> {
 	const format = header.dataFormat as Exclude<typeof header.dataFormat, 'ASCII'>;
 	if (!isNumericText(headOf(part, SNIFFED_BYTES))) return readBinaryData(part, header, format);
-	const found = `${part.file.name} holds text, although ${header.file}, line ${header.dataFormatLine} announces ${format} data`;
+	const found = `${part.file.name} holds text from byte ${part.start} on, although ${header.file}, line ${header.dataFormatLine} announces ${format} data`;
 	const data = readAsciiData(part, header, scratch);
 	if (!data.ok || !data.value.keepsLimits)
 		return refuse(

@@ -2,6 +2,7 @@ import type { Heading } from './heading-text';
 import { splitHeading, timeUnit_s, withoutBrackets } from './heading-text';
 import type { ColumnKind } from './table-body';
 import { isNumberField, isStampField, splitFields, type HeadLine, type TableLayout } from './table-layout';
+import { withoutControls } from '../read-problem';
 
 /** One column of a table before its values are read. */
 export interface TableColumn extends Heading {
@@ -35,7 +36,7 @@ export function tableColumns(layout: TableLayout, lines: HeadLine[]): TableColum
 		.filter(({ text }) => text.trim() !== '')
 		.map(({ text }) => splitFields(text, layout.separator));
 	return Array.from({ length: layout.columnCount }, (_, index) => {
-		const heading = (layout.headings?.[index] ?? '').trim();
+		const heading = withoutControls(layout.headings?.[index] ?? '');
 		const sample = rows.map((fields) => fields[index] ?? '');
 		const split = splitHeading(heading);
 		const unitBelow = withoutBrackets(layout.units?.[index] ?? '');

@@ -2,7 +2,7 @@ import { ok, type Result } from '../../../result';
 import type { CaptureHandle } from '../../capture-handle';
 import type { ReadProblem, ReadRemark, RecordingNote } from '../../recording';
 import { rowsInFile, type CaptureSource, type SourceChannel } from '../../sample-source';
-import { counted, note, refuse, warning } from '../read-problem';
+import { counted, note, quoted, refuse, warning } from '../read-problem';
 import { riffChunks, riffForm, type RiffChunk, type RiffForm } from './riff-chunks';
 import { readWaveFormat, type WaveFormat } from './wave-format';
 import { readBroadcastExtension, readInfo } from './wave-texts';
@@ -23,7 +23,7 @@ export function openWav(file: CaptureHandle): Result<CaptureSource, ReadProblem>
 			'wav-not-wave',
 			file.name,
 			'byte 0',
-			`${file.name} begins (byte 0) as ${riff.form} and holds ${riff.form === 'RIFX' ? 'numbers of the other byte order' : `“${riff.of.trim()}”, not sound`}; a WAV file (RIFF … WAVE) was expected. Export the recording again as WAV.`
+			`${file.name} begins (byte 0) as ${riff.form} and holds ${riff.form === 'RIFX' ? 'numbers of the other byte order' : `${quoted(riff.of)}, not sound`}; a WAV file (RIFF … WAVE) was expected. Export the recording again as WAV.`
 		);
 	const chunks = riffChunks(file);
 	const format = chunks.find(({ id }) => id === 'fmt ');
