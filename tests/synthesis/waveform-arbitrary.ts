@@ -47,9 +47,10 @@ export const waveformArbitrary: fc.Arbitrary<WaveformToWrite> = fc
 		channelCount: fc.integer({ min: 1, max: 5 }),
 		statusCount: fc.constantFrom(0, 1, 16, 17),
 		rates: fc.constantFrom([10_240], [50_000], [7_680, 15_360]),
-		utcOffset_min: fc.constantFrom(null, 0, -330, 120)
+		utcOffset_min: fc.constantFrom(null, 0, -330, 120),
+		statusSeed: fc.nat(1000)
 	})
-	.chain(({ sampleCount, channelCount, statusCount, rates, utcOffset_min }) =>
+	.chain(({ sampleCount, channelCount, statusCount, rates, utcOffset_min, statusSeed }) =>
 		fc
 			.tuple(...Array.from({ length: channelCount }, (_, index) => channelArbitrary(index, sampleCount)))
 			.map((channels) => ({
@@ -60,6 +61,13 @@ export const waveformArbitrary: fc.Arbitrary<WaveformToWrite> = fc
 				sampleCount,
 				segments: segmentsOf(sampleCount, rates),
 				channels,
-				statusChannelNames: Array.from({ length: statusCount }, (_, index) => `D${index + 1}`)
+				statusChannelNames: Array.from({ length: statusCount }, (_, index) => `D${index + 1}`),
+				// A third of the channels never change; the others turn over every few samples.
+				statusStates: Array.from({ length: statusCount }, (_, index) =>
+					Uint8Array.from({ length: sampleCount }, (__, n) =>
+						(statusSeed + index) % 3 === 0 ? index % 2 : Math.floor((n + statusSeed) / (3 + index)) % 2
+					)
+				),
+				normalStates: Array.from({ length: statusCount }, (_, index) => (index % 2) as 0 | 1)
 			}))
 	);

@@ -36,10 +36,7 @@ export function suggestMappings(
 		return content.series.map((series, index) => suggestSeries(series, index, point));
 	if (content.format === 'WAV')
 		return content.channels.map(({ index }) =>
-			leftOut(
-				index,
-				'A sound file tells neither what a channel measures nor in which unit. Choose both, and state full scale.'
-			)
+			leftOut(index, 'A sound file tells neither what a channel measures nor in which unit.')
 		);
 	const taken = new Map<string, string>();
 	return content.channels.map((channel) => suggestChannel(channel, point, taken));

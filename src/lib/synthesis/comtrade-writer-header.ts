@@ -14,6 +14,10 @@ export interface WaveformToWrite {
 	timeStamps_s?: Float64Array | null;
 	channels: WaveformChannelToWrite[];
 	statusChannelNames?: string[];
+	/** One for each status channel, [sampleCount] 0 or 1; all 0 where absent. */
+	statusStates?: Uint8Array[];
+	/** One for each status channel: its state in normal service; 0 where absent. */
+	normalStates?: (0 | 1)[];
 }
 
 export type WaveformChannelToWrite = Pick<RecordingChannel, 'name' | 'unitAsWritten' | 'samples'> &
@@ -22,13 +26,42 @@ export type WaveformChannelToWrite = Pick<RecordingChannel, 'name' | 'unitAsWrit
 export type WrittenDataFormat = 'ASCII' | 'BINARY' | 'BINARY32' | 'FLOAT32';
 
 export interface ComtradeWriteOptions {
-	revision: '1999' | '2013';
+	revision: '1991' | '1999' | '2013';
 	dataFormat: WrittenDataFormat;
 	/** File name without extension. */
 	stem: string;
 	/** One combined file instead of two; 2013 only. */
 	combined?: boolean;
+	/** How the recorder's clock stood, as the 2013 revision writes it; locked, at the place of the times, where absent. */
+	clock?: { localOffset_min: number | null; quality: string; leapSecond: 0 | 1 | 2 | 3 };
+	/** What stands in ASCII data where a value is missing; an empty field where absent. */
+	missingMark?: '' | '99999' | '999999';
+	/** Binary and ASCII data without a time stamp in any row. */
+	withoutStamps?: boolean;
+	/** Text for people: HDR and INF, as sections or files of their own. */
+	notes?: { hdr?: string; inf?: string };
+	/** What recorders do to their text. */
+	text?: TextHabits;
 }
+
+export interface TextHabits {
+	lineEnd?: '\r\n' | '\n' | '\r' | 'mixed';
+	encoding?: TextEncoding;
+	/** Blanks around the fields and at the ends of the lines. */
+	padded?: boolean;
+	/** A 0x1A byte behind the last line. */
+	endMark?: boolean;
+}
+
+export type TextEncoding =
+	| 'utf-8'
+	| 'utf-8 with mark'
+	| 'utf-16le'
+	| 'utf-16be'
+	| 'windows-1251'
+	| 'ibm866'
+	| 'windows-1252'
+	| 'gb18030';
 
 /** How raw values of one channel are made: value in the written unit = a × raw; limits as written. */
 export interface ChannelScale {
@@ -63,11 +96,12 @@ export function needsNanoseconds(start: RecordingStart): boolean {
 	return clockOf(start).fraction.length > 6;
 }
 
-function timeLine(start: RecordingStart): string {
+function timeLine(start: RecordingStart, isMonthFirst: boolean): string {
 	const clock = clockOf(start);
 	const two = (value: number) => String(value).padStart(2, '0');
 	const fraction = clock.fraction.padEnd(clock.fraction.length > 6 ? 9 : 6, '0');
-	return `${two(clock.day)}/${two(clock.month)}/${clock.year},${two(clock.hour)}:${two(clock.minute)}:${two(clock.second)}.${fraction}`;
+	const [one, other] = isMonthFirst ? [clock.month, clock.day] : [clock.day, clock.month];
+	return `${two(one)}/${two(other)}/${clock.year},${two(clock.hour)}:${two(clock.minute)}:${two(clock.second)}.${fraction}`;
 }
 
 /** −330 → "-5h30", 120 → "+2", 0 → "0"; "x" where the zone is not known. */
@@ -79,12 +113,17 @@ function timeCode(utcOffset_min: number | null): string {
 	return `${utcOffset_min < 0 ? '-' : '+'}${Math.floor(size / 60)}${minutes}`;
 }
 
-function analogueLine(channel: WaveformChannelToWrite, index: number, scale: ChannelScale): string {
+function analogueLine(
+	channel: WaveformChannelToWrite,
+	index: number,
+	scale: ChannelScale,
+	is1991: boolean
+): string {
 	const side = channel.valuesAre === 'secondary' ? 'S' : 'P';
 	const ratio = channel.ratio ?? { primary: 1, secondary: 1 };
 	const phase = channel.phaseHint ? PHASE_FIELDS[channel.phaseHint] : '';
 	const skew_us = (channel.skew_s ?? 0) * 1e6;
-	return [
+	const fields = [
 		index + 1,
 		field(channel.name),
 		phase,
@@ -94,11 +133,11 @@ function analogueLine(channel: WaveformChannelToWrite, index: number, scale: Cha
 		0,
 		skew_us,
 		scale.minimum,
-		scale.maximum,
-		ratio.primary,
-		ratio.secondary,
-		side
-	].join(',');
+		scale.maximum
+	];
+	// The first revision ends after the limits.
+	if (!is1991) fields.push(ratio.primary, ratio.secondary, side);
+	return fields.join(',');
 }
 
 function rateLines(waveform: WaveformToWrite): string[] {
@@ -115,22 +154,30 @@ export function configurationLines(
 	timeMultiplier: number
 ): string[] {
 	const status = waveform.statusChannelNames ?? [];
-	const time = timeLine(waveform.start);
+	const is1991 = options.revision === '1991';
+	const time = timeLine(waveform.start, is1991);
+	const normalState = (index: number) => waveform.normalStates?.[index] ?? 0;
 	const lines = [
-		`${field(waveform.stationName)},${field(waveform.recorderName)},${options.revision}`,
+		[field(waveform.stationName), field(waveform.recorderName), ...(is1991 ? [] : [options.revision])].join(
+			','
+		),
 		`${waveform.channels.length + status.length},${waveform.channels.length}A,${status.length}D`,
-		...waveform.channels.map((channel, index) => analogueLine(channel, index, scales[index] as ChannelScale)),
-		...status.map((name, index) => `${index + 1},${field(name)},,,0`),
+		...waveform.channels.map((channel, index) =>
+			analogueLine(channel, index, scales[index] as ChannelScale, is1991)
+		),
+		...status.map((name, index) => `${index + 1},${field(name)},${is1991 ? '' : ',,'}${normalState(index)}`),
 		String(waveform.nominalFrequency_Hz ?? 0),
 		...rateLines(waveform),
 		time,
 		time,
 		options.dataFormat,
-		String(timeMultiplier)
+		...(is1991 ? [] : [String(timeMultiplier)])
 	];
 	if (options.revision === '2013') {
 		const code = timeCode(waveform.start.utcOffset_min);
-		lines.push(`${code},${code}`, '0,0');
+		const { clock } = options;
+		const place = clock === undefined ? code : timeCode(clock.localOffset_min);
+		lines.push(`${code},${place}`, `${clock?.quality ?? '0'},${clock?.leapSecond ?? 0}`);
 	}
 	return lines;
 }

@@ -5,10 +5,12 @@ import {
 	needsNanoseconds,
 	type ChannelScale,
 	type ComtradeWriteOptions,
+	type TextHabits,
 	type WaveformChannelToWrite,
 	type WaveformToWrite,
 	type WrittenDataFormat
 } from './comtrade-writer-header';
+import { writeLines } from './recorder-text';
 
 /** Greatest raw magnitude per data format; ASCII stays below the mark 99999 for "missing". */
 const FULL_SCALE: Record<Exclude<WrittenDataFormat, 'FLOAT32'>, number> = {
@@ -18,10 +20,11 @@ const FULL_SCALE: Record<Exclude<WrittenDataFormat, 'FLOAT32'>, number> = {
 };
 
 const LARGEST_STAMP = 0xffff_fffe;
+const STAMP_MISSING = 0xffff_ffff;
 const LARGEST_FLOAT32 = 3.4028234e38;
 
 /**
- * Writes a waveform as COMTRADE: "stem.cfg" with "stem.dat", or "stem.cff" alone.
+ * Writes a waveform as COMTRADE: "stem.cfg" with "stem.dat" (and "stem.hdr", "stem.inf"), or "stem.cff" alone.
  * Samples in volts and amperes are written in each channel's `unitAsWritten`, quantised to the steps of the
  * data format over the channel's range (or over its own largest sample); NaN becomes the format's mark.
  */
@@ -29,34 +32,55 @@ export function writeComtrade(waveform: WaveformToWrite, options: ComtradeWriteO
 	if (options.combined && options.revision !== '2013')
 		throw new Error('Only the 2013 revision has a combined file.');
 	const scales = waveform.channels.map((channel) => scaleOf(channel, options.dataFormat));
-	const { stamps, timeMultiplier } = stampsOf(waveform);
-	const data =
-		options.dataFormat === 'ASCII'
-			? asciiData(waveform, scales, stamps)
-			: binaryData(waveform, scales, stamps, options.dataFormat);
+	const { stamps, timeMultiplier } = stampsOf(waveform, options);
 	const lines = configurationLines(waveform, options, scales, timeMultiplier);
-	if (!options.combined) {
-		return [
-			{ name: `${options.stem}.cfg`, bytes: encode(`${lines.join('\r\n')}\r\n`) },
-			{ name: `${options.stem}.dat`, bytes: data }
-		];
-	}
-	const size = options.dataFormat === 'ASCII' ? '' : `: ${data.length}`;
+	const { stem, dataFormat, notes = {} } = options;
+	if (options.combined) return [combinedFile(waveform, options, lines, scales, stamps)];
+	const data =
+		dataFormat === 'ASCII'
+			? writeLines(asciiLines(waveform, options, scales, stamps), dataHabits(options.text))
+			: binaryData(waveform, scales, stamps, dataFormat);
+	const note = (extension: string, text: string | undefined): CaptureFile[] =>
+		text === undefined
+			? []
+			: [{ name: `${stem}.${extension}`, bytes: writeLines(text.split('\n'), options.text) }];
+	return [
+		{ name: `${stem}.cfg`, bytes: writeLines(lines, options.text) },
+		{ name: `${stem}.dat`, bytes: data },
+		...note('hdr', notes.hdr),
+		...note('inf', notes.inf)
+	];
+}
+
+/** Numbers are the same in every 8-bit encoding, so data only know UTF-16 and the others as one. */
+function dataHabits(habits: TextHabits | undefined): TextHabits | undefined {
+	return habits?.encoding?.startsWith('utf-16') ? habits : { ...habits, encoding: 'utf-8' };
+}
+
+function combinedFile(
+	waveform: WaveformToWrite,
+	options: ComtradeWriteOptions,
+	lines: readonly string[],
+	scales: ChannelScale[],
+	stamps: Float64Array
+): CaptureFile {
+	const { dataFormat, notes = {}, text } = options;
+	const name = `${options.stem}.cff`;
 	const head = [
 		'--- file type: CFG ---',
 		...lines,
 		'--- file type: INF ---',
-		'',
+		...(notes.inf ?? '').split('\n'),
 		'--- file type: HDR ---',
-		'',
-		`--- file type: DAT ${options.dataFormat}${size} ---`,
-		''
+		...(notes.hdr ?? '').split('\n')
 	];
-	return [{ name: `${options.stem}.cff`, bytes: joined(encode(head.join('\r\n')), data) }];
-}
-
-function encode(text: string): Uint8Array {
-	return new TextEncoder().encode(text);
+	if (dataFormat === 'ASCII') {
+		const data = asciiLines(waveform, options, scales, stamps);
+		return { name, bytes: writeLines([...head, '--- file type: DAT ASCII ---', ...data], text) };
+	}
+	const data = binaryData(waveform, scales, stamps, dataFormat);
+	const marker = `--- file type: DAT ${dataFormat}: ${data.length} ---`;
+	return { name, bytes: joined(writeLines([...head, marker], { ...text, endMark: false }), data) };
 }
 
 function joined(first: Uint8Array, second: Uint8Array): Uint8Array {
@@ -108,28 +132,40 @@ function sampleTimes_s(waveform: WaveformToWrite): Float64Array {
 	return times_s;
 }
 
-function stampsOf(waveform: WaveformToWrite): { stamps: Float64Array; timeMultiplier: number } {
+function stampsOf(
+	waveform: WaveformToWrite,
+	{ revision, withoutStamps }: ComtradeWriteOptions
+): { stamps: Float64Array; timeMultiplier: number } {
+	if (withoutStamps) return { stamps: new Float64Array(waveform.sampleCount).fill(NaN), timeMultiplier: 1 };
 	const unit_s = needsNanoseconds(waveform.start) ? 1e-9 : 1e-6;
 	const times_s = sampleTimes_s(waveform);
 	const last = (times_s[times_s.length - 1] ?? 0) / unit_s;
 	let timeMultiplier = 1;
-	while (last / timeMultiplier > LARGEST_STAMP) timeMultiplier *= 10;
+	// The first revision has no multiplier: its stamps simply go on.
+	while (revision !== '1991' && last / timeMultiplier > LARGEST_STAMP) timeMultiplier *= 10;
 	const stamps = times_s.map((time_s) => Math.round(time_s / unit_s / timeMultiplier));
 	return { stamps, timeMultiplier };
 }
 
-function asciiData(waveform: WaveformToWrite, scales: ChannelScale[], stamps: Float64Array): Uint8Array {
-	const statusFields = ',0'.repeat((waveform.statusChannelNames ?? []).length);
+function asciiLines(
+	waveform: WaveformToWrite,
+	{ missingMark = '' }: ComtradeWriteOptions,
+	scales: ChannelScale[],
+	stamps: Float64Array
+): string[] {
+	const names = waveform.statusChannelNames ?? [];
 	const rows: string[] = [];
 	for (let sample = 0; sample < waveform.sampleCount; sample++) {
-		let row = `${sample + 1},${stamps[sample]}`;
+		const stamp = stamps[sample]!;
+		let row = `${sample + 1},${Number.isNaN(stamp) ? '' : stamp}`;
 		for (const [index, channel] of waveform.channels.entries()) {
 			const raw = rawValue(channel.samples[sample] as number, channel, scales[index] as ChannelScale);
-			row += Number.isNaN(raw) ? ',' : `,${raw === 0 ? 0 : raw}`;
+			row += Number.isNaN(raw) ? `,${missingMark}` : `,${raw === 0 ? 0 : raw}`;
 		}
-		rows.push(row + statusFields);
+		for (const index of names.keys()) row += `,${waveform.statusStates?.[index]?.[sample] ?? 0}`;
+		rows.push(row);
 	}
-	return encode(`${rows.join('\r\n')}\r\n`);
+	return rows;
 }
 
 function binaryData(
@@ -146,12 +182,18 @@ function binaryData(
 	for (let sample = 0; sample < waveform.sampleCount; sample++) {
 		const row = sample * rowBytes;
 		view.setUint32(row, sample + 1, true);
-		view.setUint32(row + 4, stamps[sample] as number, true);
+		const stamp = stamps[sample]!;
+		view.setUint32(row + 4, Number.isNaN(stamp) ? STAMP_MISSING : stamp, true);
 		for (const [index, channel] of waveform.channels.entries()) {
 			const at = row + 8 + width * index;
 			const value = channel.samples[sample] as number;
 			if (format === 'FLOAT32') view.setFloat32(at, inWrittenUnit(value, channel), true);
 			else writeInteger(view, at, rawValue(value, channel, scales[index] as ChannelScale), width);
+		}
+		const statusAt = row + 8 + width * waveform.channels.length;
+		for (const [index, states] of (waveform.statusStates ?? []).entries()) {
+			const at = statusAt + 2 * (index >> 4);
+			if (states[sample] === 1) view.setUint16(at, view.getUint16(at, true) | (1 << (index & 15)), true);
 		}
 	}
 	return bytes;

@@ -143,7 +143,7 @@ function describeStatus(
 	if (changed.length > 0) {
 		const changes = changed.map((status) => {
 			const sample = status.firstChangeAtSample ?? 0;
-			const after_s = Number(timeOfSample_s(frame, sample).toPrecision(6));
+			const after_s = Number(timeOfSample_s(frame, sample).toPrecision(4));
 			const often = status.changeCount === 1 ? 'once' : `${status.changeCount} times, first`;
 			return `${nameOf(status)} ${often} after ${after_s} s (sample ${sample + 1}, to ${1 - (status.startsAs ?? 0)})`;
 		});

@@ -65,7 +65,8 @@ export function splitCff(file: CaptureHandle): Result<CffSections, ReadProblem> 
 			`${file.name} has no line “--- file type: ${missing} ---”; a combined file needs a CFG and a DAT section.`
 		);
 	}
-	const remarks = markers.filter(({ isRegular }) => !isRegular).map((marker) => oddMarker(file.name, marker));
+	const odd = markers.filter(({ isRegular }) => !isRegular);
+	const remarks = odd.length === 0 ? [] : [oddMarkers(file.name, odd)];
 	const sectionOf = (marker: Marker): CffSection => ({
 		start: marker.end,
 		end: markers.find(({ start }) => start > marker.start)?.start ?? file.size_bytes,
@@ -85,10 +86,13 @@ export function splitCff(file: CaptureHandle): Result<CffSections, ReadProblem> 
 	});
 }
 
-function oddMarker(file: string, marker: Marker): ReadRemark {
+function oddMarkers(file: string, odd: Marker[]): ReadRemark {
+	const { line, kind, text } = odd[0]!;
+	const others = odd.slice(1).map((marker) => `the ${marker.kind} section on line ${marker.line}`);
+	const more = others.length === 0 ? '' : `, and likewise ${others.join(', ')}`;
 	return warning(
 		'cff-odd-section-line',
-		`${file}, line ${marker.line}: “--- file type: ${marker.kind} ---” was expected, but ${quoted(marker.text)} was found; it was taken as the ${marker.kind} section.`
+		`${file}, line ${line}: “--- file type: ${kind} ---” was expected, but ${quoted(text)} was found; it was taken as the ${kind} section${more}.`
 	);
 }
 

@@ -83,7 +83,7 @@ function openSamples(
 	const broadcast = bext ? readBroadcastExtension(file, bext, samplingRate_Hz, remarks) : null;
 	const notes = notesOf(file, chunks, broadcast?.description ?? '');
 	remarks.push(
-		warning(
+		note(
 			'wav-no-units',
 			`${file.name} carries no units: its samples are parts of full scale. State for each channel what full scale means, such as 250 V or 25 A, before it is analysed.`
 		),
