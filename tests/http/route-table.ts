@@ -69,6 +69,7 @@ export const ROUTE_TABLE: Readonly<Record<string, RouteRule>> = {
 	'/(app)/instruments/sensors/[sensor]': consultants(['calibrate', 'archive', 'restore']),
 	'/(app)/instruments/sensors/[sensor]/edit': consultants(['default']),
 	'/(app)/instruments/sensors/new': consultants(['default']),
+	'/(app)/instruments/table-layouts': consultants(['rename', 'archive', 'restore']),
 	'/(app)/limit-library': consultants(),
 	'/(app)/limit-library/[limitSet]': consultants(),
 	'/(app)/practice': { for: OWNER, status: 303 },
@@ -83,6 +84,8 @@ export const ROUTE_TABLE: Readonly<Record<string, RouteRule>> = {
 	'/(app)/surveys/[survey]': { for: CONSULTANTS, status: 303 },
 	'/(app)/surveys/[survey]/captures': consultants(),
 	'/(app)/surveys/[survey]/captures/[capture]': consultants(['confirm', 'remove']),
+	// The matrix's capture is COMTRADE, whose columns nobody has to tell.
+	'/(app)/surveys/[survey]/captures/[capture]/table': { for: CONSULTANTS, status: 303, actions: ['apply'] },
 	'/(app)/surveys/[survey]/point': consultants(['save', 'close', 'reopen']),
 	'/(app)/surveys/[survey]/readings': consultants(),
 	'/(app)/surveys/[survey]/remedies': consultants([
@@ -119,6 +122,7 @@ export const ROUTE_TABLE: Readonly<Record<string, RouteRule>> = {
 	'/(portal)/portal/sites/[site]': client(),
 
 	'/(api)/api/v1/captures/[capture]/files/[file]': { for: CONSULTANTS, methods: { GET: [200] } },
+	'/(api)/api/v1/captures/[capture]/table-preview': { for: CONSULTANTS, methods: { POST: [422] } },
 	'/(api)/api/v1/captures/[capture]/waveform': {
 		for: CONSULTANTS,
 		query: 'from_s=0&to_s=0.1&points=100',

@@ -81,7 +81,8 @@ describe.skipIf(!samplesArePresent)(`a table of six channels with stamps${skipRe
 			'current L2',
 			'current L3'
 		]);
-		expect(recording.start).toEqual({ local: '2020-02-24T18:15:21.499998208', utcOffset_min: null });
+		// Its heading is “Time_UTC”.
+		expect(recording.start).toEqual({ local: '2020-02-24T18:15:21.499998208', utcOffset_min: 0 });
 	});
 });
 

@@ -1,15 +1,22 @@
 import { ok, type Result } from '../result';
-import { handleOf, loadFile, type CaptureHandle } from './capture-handle';
+import { handleOf, type CaptureHandle } from './capture-handle';
 import { incompleteGroupSentence } from './group-capture-files';
 import { loadSamples } from './load-samples';
 import { memoryScratch } from './memory-scratch';
+import { sortComtradeFiles } from './readers/comtrade/comtrade-files';
 import { openComtrade } from './readers/comtrade/read-comtrade';
-import { readDelimitedText, type DelimitedTextOptions } from './readers/delimited-text/read-delimited-text';
+import type { LayoutGuess } from './readers/delimited-text/guess-layout';
+import {
+	guessTableOf,
+	openDelimitedText,
+	readDelimitedText,
+	type DelimitedTextOptions
+} from './readers/delimited-text/read-delimited-text';
 import { refuse } from './readers/read-problem';
 import { openWav } from './readers/wav/read-wav';
 import type { CaptureContent, CaptureFile, CapturePart, ReadProblem, Trend } from './recording';
 import type { SampleScratch } from './sample-scratch';
-import { sourceOf, type CaptureSource } from './sample-source';
+import type { CaptureSource } from './sample-source';
 
 /** First bytes of files that are no captures, or of formats that are not read, with what to do instead. */
 const OTHER_FORMATS: { bytes: number[]; words: string }[] = [
@@ -33,25 +40,48 @@ export function readCapture(
 	files: CaptureFile[],
 	options: DelimitedTextOptions = {}
 ): Result<CaptureContent, ReadProblem> {
-	const [first] = files;
-	if (first === undefined)
-		return refuse('no-files', '', null, 'No file was given; a capture of one file or a set was expected.');
 	const waveform = openWaveform(files.map(handleOf), memoryScratch());
 	if (waveform !== null) return waveform.ok ? ok(loadSamples(waveform.value)) : waveform;
-	const incomplete = incompleteGroupSentence(files.map(({ name }) => name));
+	return refusalOf(files.map(headOfBytes)) ?? readDelimitedText(files, options);
+}
+
+/** The start of a file, by which its format is told. */
+interface FileHead {
+	name: string;
+	bytes: Uint8Array;
+}
+
+const HEAD_BYTES = 4096;
+
+function headOfBytes({ name, bytes }: CaptureFile): FileHead {
+	return { name, bytes: bytes.subarray(0, HEAD_BYTES) };
+}
+
+function headOfHandle(handle: CaptureHandle): FileHead {
+	const bytes = new Uint8Array(Math.min(handle.size_bytes, HEAD_BYTES));
+	handle.read(0, bytes);
+	return { name: handle.name, bytes };
+}
+
+/** Why files are no delimited text; null where they may be. */
+function refusalOf(heads: readonly FileHead[]): Result<never, ReadProblem> | null {
+	const [first] = heads;
+	if (first === undefined)
+		return refuse('no-files', '', null, 'No file was given; a capture of one file or a set was expected.');
+	const incomplete = incompleteGroupSentence(heads.map(({ name }) => name));
 	if (incomplete !== null && !isTableByName(first))
-		return refuse('capture-incomplete', leftAlone(files, incomplete), null, incomplete);
-	for (const file of files) {
-		const other = OTHER_FORMATS.find(({ bytes }) => bytes.every((byte, at) => file.bytes[at] === byte));
+		return refuse('capture-incomplete', leftAlone(heads, incomplete), null, incomplete);
+	for (const head of heads) {
+		const other = OTHER_FORMATS.find(({ bytes }) => bytes.every((byte, at) => head.bytes[at] === byte));
 		if (other !== undefined)
 			return refuse(
 				'format-not-read',
-				file.name,
+				head.name,
 				'byte 0',
-				`${file.name} begins (byte 0) like ${other.words}. COMTRADE (CFG with DAT, or CFF), WAV or delimited text was expected.`
+				`${head.name} begins (byte 0) like ${other.words}. COMTRADE (CFG with DAT, or CFF), WAV or delimited text was expected.`
 			);
 	}
-	return readDelimitedText(files, options);
+	return null;
 }
 
 /** A waveform whose samples are fetched when they are needed, or a trend log. */
@@ -114,19 +144,24 @@ function openSingle(
 ): Result<OpenedCapture, ReadProblem> {
 	const waveform = openWaveform(files, options.scratch ?? memoryScratch());
 	if (waveform !== null) return waveform;
-	const read = readCapture(files.map(loadFile), options);
-	if (!read.ok || read.value.kind === 'trend') return read as Result<Trend, ReadProblem>;
-	return ok(sourceOf(read.value));
+	return refusalOf(files.map(headOfHandle)) ?? openDelimitedText(files, options);
 }
 
 /** Name of the file that a sentence about an incomplete group begins with. */
-function leftAlone(files: readonly CaptureFile[], sentence: string): string {
+function leftAlone(files: readonly FileHead[], sentence: string): string {
 	return files.find(({ name }) => sentence.startsWith(`${name} `))?.name ?? '';
 }
 
 /** A ".dat" with headings is a table of its own; rows of bare numbers, or binary, belong to a configuration. */
-function isTableByName({ name, bytes }: CaptureFile): boolean {
+function isTableByName({ name, bytes }: FileHead): boolean {
 	if (!/\.dat$/i.test(name)) return false;
 	const head = new TextDecoder('windows-1252').decode(bytes.subarray(0, 200));
 	return /^\s*["#%A-Za-z]/.test(head) && !head.includes('\u0000');
+}
+
+/** How a table of text seems to be written, with its headings; null for files of other formats. */
+export function guessTable(files: readonly CaptureHandle[]): (LayoutGuess & { headings: string[] }) | null {
+	const [first] = files;
+	if (first === undefined || sortComtradeFiles(files) !== null) return null;
+	return refusalOf(files.map(headOfHandle)) === null ? guessTableOf(first) : null;
 }

@@ -18,6 +18,8 @@ export interface ReadProblem {
 	place: string | null;
 	/** A full sentence that names the file, the place and what was expected there. */
 	sentence: string;
+	/** A table of text that a person can still tell the meaning of. */
+	isTable?: true;
 }
 
 export type ChannelQuantity = 'voltage' | 'current' | 'other';

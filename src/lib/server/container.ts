@@ -29,6 +29,7 @@ import { createAssessmentsService } from './services/assessments.service';
 import { createReportsService } from './services/reports.service';
 import { createCapturesService } from './services/captures.service';
 import { createReadingsService } from './services/readings.service';
+import { createTablesService } from './services/tables.service';
 import { createUploadsService } from './services/uploads.service';
 import { createDiskBlobStore } from './storage/disk-blob-store';
 
@@ -61,6 +62,7 @@ function buildServices(deps: ServiceDeps) {
 		desk: createDeskService(deps),
 		uploads: createUploadsService(deps),
 		captures: createCapturesService(deps),
+		tables: createTablesService(deps),
 		readings: createReadingsService(deps),
 		assessments: createAssessmentsService(deps),
 		actions: createActionsService(deps),

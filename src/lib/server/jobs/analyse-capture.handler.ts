@@ -1,6 +1,7 @@
 import { ENGINE_VERSION } from '../../harmonics/engine-version';
 import { nominalVoltagesByPhase_V } from '../../harmonics/nominal-voltages';
 import { openCapture, type OpenedCapture } from '../../recording/read-capture';
+import { parseToldLayout } from '../../recording/readers/delimited-text/table-layout-told';
 import { parseSettings } from '../analysis/capture-settings';
 import {
 	prepareTrend,
@@ -73,7 +74,11 @@ async function openOriginals(
 			handles.push(openFileHandle(file.name, await container.blobs.localFile(file.sha256)));
 			done_bytes += file.size_bytes;
 		}
-		const opened = openCapture(handles, { part: capture.part_key, scratch });
+		const opened = openCapture(handles, {
+			part: capture.part_key,
+			scratch,
+			...(capture.layout_json === null ? {} : { layout: parseToldLayout(capture.layout_json) })
+		});
 		if (!opened.ok) throw new JobFailed(opened.problem.sentence);
 		return { content: opened.value, close };
 	} catch (cause) {

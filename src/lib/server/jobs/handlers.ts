@@ -6,6 +6,7 @@ export type JobHandler = (container: Container, payload: unknown, context: JobCo
 /** Kind → handler, loaded when first needed: the web process never pays for what only the worker runs. */
 export const JOB_HANDLERS: Record<string, () => Promise<JobHandler>> = {
 	'recognise-capture': async () => (await import('./recognise-capture.handler')).handle,
+	'read-table': async () => (await import('./read-table.handler')).handle,
 	'analyse-capture': async () => (await import('./analyse-capture.handler')).handle,
 	'assess-survey': async () => (await import('./assess-survey.handler')).handle,
 	'render-report': async () => (await import('./render-report.handler')).handle,

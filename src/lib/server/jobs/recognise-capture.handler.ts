@@ -1,26 +1,20 @@
-import { captureFacts } from '../../recording/capture-facts';
-import { suggestMappings } from '../../recording/channel-suggestion';
 import { openCaptureParts, type OpenedCapture } from '../../recording/read-capture';
 import type { CapturePart } from '../../recording/recording';
-import { startToUtc_ms } from '../../recording/recording-start';
+import { factsOfContent, factsOfUntoldTable, startedAt } from '../analysis/recognised-facts';
+import { templateFor, type FittingTemplate } from '../analysis/template-for-table';
 import { appendAudit } from '../audit/audit-log';
 import type { Container } from '../container';
 import { withTransaction, type Db } from '../db/database';
 import type { UploadRow } from '../db/rows';
-import { captureSurvey, type CaptureSurvey, type StoredFacts } from '../read-models/capture-list';
+import { captureSurvey, type CaptureSurvey } from '../read-models/capture-list';
 import { capturesRepository } from '../repositories/captures.repository';
+import { layoutTemplatesRepository } from '../repositories/layout-templates.repository';
 import { uploadsRepository } from '../repositories/uploads.repository';
 import { openFileHandle, type FileHandle } from '../storage/file-handle';
 import { createScratchFolder, scratchRoot } from '../storage/scratch-folder';
 import type { JobHandler } from './handlers';
 import { JobCancelled, JobFailed, type JobContext } from './job-definition';
 import { recogniseCapture } from './recognise-capture.job';
-
-/** The start instant, where the file alone tells it or the site's zone completes it. */
-function startedAt(content: OpenedCapture, survey: CaptureSurvey): string | null {
-	if (!content.start) return null;
-	return new Date(startToUtc_ms(content.start, survey.timeZone).utc_ms).toISOString();
-}
 
 /** Opens the uploads; binary samples are not read. */
 async function openFiles(
@@ -61,12 +55,11 @@ async function addCapture(
 	payload: ReturnType<typeof recogniseCapture.payload.parse>,
 	survey: CaptureSurvey,
 	uploads: readonly UploadRow[],
-	{ key, title, content }: CapturePart<OpenedCapture>
+	{ key, title, content }: CapturePart<OpenedCapture>,
+	fitting: FittingTemplate | null
 ): Promise<void> {
-	const facts: StoredFacts = {
-		...captureFacts(content, survey.facts.nominalFrequency_Hz),
-		suggestions: suggestMappings(content, survey.facts)
-	};
+	const facts = factsOfContent(content, survey);
+	if (fitting) facts.remarks = [fitting.remark, ...facts.remarks];
 	const id = await capturesRepository(trx, context).add({
 		capture: {
 			client_id: survey.clientId,
@@ -80,7 +73,9 @@ async function addCapture(
 			duration_s: facts.duration_s,
 			uploaded_by: payload.requestedBy.userId,
 			created_at: clock().toISOString(),
-			part_key: key
+			part_key: key,
+			layout_json: fitting ? JSON.stringify(fitting.layout) : null,
+			layout_template_id: fitting?.templateId ?? null
 		},
 		files: uploads.map(({ name, sha256, size_bytes }) => ({ name, sha256, size_bytes }))
 	});
@@ -93,6 +88,45 @@ async function addCapture(
 			subjectId: id,
 			detail: { format: content.format, variant: content.variant }
 		},
+		clock()
+	);
+}
+
+/** A table of numbers whose columns only a person can tell: it is kept, and waits. */
+async function addUntoldTable(
+	{ clock }: Container,
+	trx: Db,
+	context: JobContext,
+	payload: ReturnType<typeof recogniseCapture.payload.parse>,
+	survey: CaptureSurvey,
+	uploads: readonly UploadRow[],
+	handles: readonly FileHandle[],
+	sentence: string
+): Promise<void> {
+	const facts = factsOfUntoldTable(handles);
+	const id = await capturesRepository(trx, context).add({
+		capture: {
+			client_id: survey.clientId,
+			survey_id: survey.id,
+			name: payload.name,
+			kind: 'table',
+			status: 'unread',
+			format: facts.format,
+			variant: facts.variant,
+			facts_json: JSON.stringify(facts),
+			started_at: null,
+			duration_s: 0,
+			problem: sentence,
+			uploaded_by: payload.requestedBy.userId,
+			created_at: clock().toISOString(),
+			part_key: ''
+		},
+		files: uploads.map(({ name, sha256, size_bytes }) => ({ name, sha256, size_bytes }))
+	});
+	await appendAudit(
+		trx,
+		{ ...payload.requestedBy, practiceId: context.practiceId },
+		{ action: 'capture.kept-untold', subjectKind: 'capture', subjectId: id, detail: { problem: sentence } },
 		clock()
 	);
 }
@@ -113,12 +147,24 @@ export const handle: JobHandler = async (container, rawPayload, context) => {
 	const scratch = createScratchFolder(scratchRoot(container.config.dataDir));
 	try {
 		await openFiles(container, uploads, context, handles);
-		const read = openCaptureParts(handles, { scratch });
-		if (!read.ok) return await giveUp(container, context, payload.uploadIds, read.problem.sentence);
+		const fitting = await templateFor(db, context, handles);
+		const read = openCaptureParts(handles, { scratch, ...(fitting ? { layout: fitting.layout } : {}) });
+		if (!read.ok && read.problem.isTable !== true)
+			return await giveUp(container, context, payload.uploadIds, read.problem.sentence);
 		await context.progress(0, 1, 'storing what was recognised');
 		await withTransaction(db, async (trx) => {
-			for (const part of read.value)
-				await addCapture(container, trx, context, payload, survey, uploads, part);
+			if (!read.ok) {
+				const { sentence } = read.problem;
+				await addUntoldTable(container, trx, context, payload, survey, uploads, handles, sentence);
+			} else {
+				for (const part of read.value)
+					await addCapture(container, trx, context, payload, survey, uploads, part, fitting);
+				if (fitting)
+					await layoutTemplatesRepository(trx, context).noteUse(
+						fitting.templateId,
+						container.clock().toISOString()
+					);
+			}
 			await uploadsRepository(trx, context).remove(payload.uploadIds);
 			await context.finish(trx);
 		});

@@ -7,6 +7,7 @@ import type { Db } from '../db/database';
 import type { CaptureRow, PointRow } from '../db/rows';
 import { analyseCapture } from '../jobs/analyse-capture.job';
 import type { JobState } from '../jobs/job-queue';
+import { readTable } from '../jobs/read-table.job';
 import { recogniseCapture } from '../jobs/recognise-capture.job';
 import { toPointFacts } from '../repositories/point-mapping';
 import type { Scope } from '../repositories/scope';
@@ -168,6 +169,8 @@ export interface CaptureDetail {
 	createdAt: string;
 	uploadedBy: string;
 	facts: StoredFacts;
+	/** A person, or a template, told how the table is to be read. */
+	isTold: boolean;
 	settings: CaptureSettings | null;
 	files: { id: string; name: string; sha256: string; size_bytes: number }[];
 	analysis: { id: string; createdAt: string; engineVersion: string; summary: AnalysisSummary } | null;
@@ -203,6 +206,7 @@ export async function captureDetail(
 		createdAt: row.created_at,
 		uploadedBy: row.uploader,
 		facts: JSON.parse(row.facts_json) as StoredFacts,
+		isTold: row.layout_json !== null,
 		settings: row.mappings_json === null ? null : parseSettings(row.mappings_json),
 		files: files.map(({ id, name, sha256, size_bytes }) => ({ id, name, sha256, size_bytes })),
 		analysis: analysis
@@ -228,7 +232,7 @@ export interface SurveyJob extends JobState {
 export async function surveyJobs(db: Db, scope: Scope, surveyId: string, now: Date): Promise<SurveyJob[]> {
 	const rows = await db('jobs')
 		.where('jobs.practice_id', scope.practiceId)
-		.whereIn('jobs.kind', [recogniseCapture.kind, analyseCapture.kind])
+		.whereIn('jobs.kind', [recogniseCapture.kind, readTable.kind, analyseCapture.kind])
 		.whereRaw(`json_extract(jobs.payload_json, '$.surveyId') = ?`, [surveyId])
 		.andWhere((recent) =>
 			recent

@@ -89,6 +89,10 @@ export function analysesRepository(db: Db, scope: Scope) {
 		async discardUnfinished(captureId: string): Promise<void> {
 			await own().where({ capture_id: captureId, is_finished: 0 }).delete();
 		},
+		/** Lets no analysis of a capture count any more, as its files are understood anew. They stay, for the reports that rest on them. */
+		async retire(captureId: string): Promise<void> {
+			await own().where({ capture_id: captureId, is_current: 1 }).update({ is_current: 0 });
+		},
 		async currentOf(captureId: string): Promise<AnalysisRow | null> {
 			return (await own().where({ capture_id: captureId, is_current: 1 }).first()) ?? null;
 		},

@@ -19,7 +19,7 @@ export interface NewCapture {
 		| 'pyramid_sha256'
 		| 'pyramid_json'
 	> &
-		Partial<Pick<CaptureRow, 'status' | 'layout_json' | 'layout_template_id'>>;
+		Partial<Pick<CaptureRow, 'status' | 'problem' | 'layout_json' | 'layout_template_id'>>;
 	files: { name: string; sha256: string; size_bytes: number }[];
 }
 
@@ -76,7 +76,21 @@ export function capturesRepository(db: Db, scope: Scope) {
 		async update(
 			id: string,
 			change: Partial<
-				Pick<CaptureRow, 'name' | 'status' | 'mappings_json' | 'started_at' | 'problem' | 'removed_at'>
+				Pick<
+					CaptureRow,
+					| 'name'
+					| 'kind'
+					| 'variant'
+					| 'status'
+					| 'facts_json'
+					| 'mappings_json'
+					| 'started_at'
+					| 'duration_s'
+					| 'problem'
+					| 'removed_at'
+					| 'layout_json'
+					| 'layout_template_id'
+				>
 			>,
 			now: Date
 		): Promise<void> {

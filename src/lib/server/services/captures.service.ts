@@ -104,6 +104,11 @@ export function createCapturesService(deps: ServiceDeps) {
 			const captures = capturesRepository(trx, scope);
 			const capture = await captures.byId(captureId);
 			if (capture?.survey_id !== surveyId) return requireFound<never>(null, 'capture');
+			if (capture.status === 'unread')
+				throw new AppError(
+					'conflict',
+					'Nobody has told yet what the columns of this table are. Tell them first.'
+				);
 			const work = await surveyJobs(trx, scope, surveyId, clock());
 			if (work.some((job) => job.captureId === captureId && job.status !== 'failed'))
 				throw new AppError(

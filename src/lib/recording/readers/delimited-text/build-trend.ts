@@ -1,63 +1,61 @@
 import { ok, type Result } from '../../../result';
-import { phaseHints } from '../../phase-hint';
-import type { ReadProblem, ReadRemark, Trend, TrendSeries } from '../../recording';
+import type { ReadProblem, ReadRemark, RecordingStart, Trend, TrendSeries } from '../../recording';
+import { parseUnit } from '../../unit-text';
 import { note, refuse, warning } from '../read-problem';
 import type { PreambleFacts } from './preamble';
-import type { TableBody } from './table-body';
-import type { TableColumn } from './table-columns';
-import type { TimeAxis } from './time-axis';
-import { parseTrendHeading, type TrendHeading } from './trend-heading';
+import type { ToldLayout, ValueColumn } from './table-layout-told';
+
+/** One column of values as told; `values` gives them as written, each time anew where they lie on scratch. */
+export interface NamedValues {
+	heading: string;
+	column: ValueColumn;
+	values: () => Float64Array;
+}
 
 export interface TrendTable {
 	file: string;
 	variant: string;
-	/** Columns of values, without time, flags and row numbers. */
-	columns: TableColumn[];
-	flagColumn: TableColumn | null;
-	body: TableBody;
-	axis: TimeAxis;
+	layout: ToldLayout;
+	columns: NamedValues[];
+	/** [rows] 1 where the log marks the interval. */
+	flagged: Uint8Array | null;
+	/** [rows] seconds from the first row. */
+	times_s: Float64Array;
+	start: RecordingStart | null;
 	interval_s: number;
 	preamble: PreambleFacts;
+	/** Headings of the columns that are not read, for the refusal of a log without any. */
+	otherHeadings: string[];
 	remarks: ReadRemark[];
-}
-
-interface ReadColumn {
-	column: TableColumn;
-	heading: TrendHeading;
 }
 
 const USUAL_INTERVALS_S = [3, 600];
 
-/** Rows of a log to a trend: one value per interval, by the words of the headings. */
+/** Rows of a log to a trend: one value per interval and column. */
 export function buildTrend(table: TrendTable): Result<Trend, ReadProblem> {
-	const { file, body, axis, preamble, interval_s } = table;
-	const remarks = [...table.remarks, ...body.remarks, ...axis.remarks];
-	const start = axis.start;
+	const { file, layout, preamble, interval_s, start, columns } = table;
+	const remarks = [...table.remarks];
 	if (start === null)
 		return refuse(
 			'trend-without-date',
 			file,
-			`line ${body.firstLine}`,
-			`${file} is a log with a row every ${interval_s} s, but its rows carry no date; a column with date and time was expected from line ${body.firstLine} on, because limits count by days and weeks of the clock.`
+			`line ${layout.firstDataLine}`,
+			`${file} is a log with a row every ${interval_s} s, but its rows carry no date; a column with date and time was expected from line ${layout.firstDataLine} on, because limits count by days and weeks of the clock.`
 		);
-	const { read, leftOut } = headingsOf(table);
-	if (!read.some(({ heading }) => heading.extreme === null))
+	if (!columns.some(({ column }) => column.extreme === 'none'))
 		return refuse(
 			'trend-columns',
 			file,
 			null,
-			`${file} is a log with a row every ${interval_s} s, but no heading names an rms value, an order, a THD or the frequency (such as “U_L1 h5 (%)” or “I_L2 rms (A)”); found: ${leftOut.slice(0, 6).join(', ')}.`
+			`${file} is a log with a row every ${interval_s} s, but no heading names an rms value, an order, a THD or the frequency (such as “U_L1 h5 (%)” or “I_L2 rms (A)”); found: ${table.otherHeadings.slice(0, 6).join(', ')}.`
 		);
 	const starts = ascendingStarts(table, remarks);
 	if (!starts.ok) return starts;
-	describeColumns(file, read, leftOut, remarks);
+	describeUnits(table, remarks);
 	describeInterval(file, interval_s, starts.value, remarks);
-	const hints = phaseHints(read.map(({ heading }) => ({ field: '', name: heading.nameForPhase })));
-	const all = read.map(({ column, heading }, index) => ({
-		extreme: heading.extreme,
-		series: seriesOf(column, heading, hints[index] ?? null, body)
-	}));
-	const extremes = all.flatMap(({ extreme, series }) => (extreme === null ? [] : [{ ...series, extreme }]));
+	const extremes = columns.flatMap((named) =>
+		named.column.extreme === 'none' ? [] : [seriesOf(named, { extreme: named.column.extreme })]
+	);
 	return ok({
 		kind: 'trend',
 		format: 'delimited text',
@@ -68,46 +66,53 @@ export function buildTrend(table: TrendTable): Result<Trend, ReadProblem> {
 		start,
 		interval_s,
 		intervalStarts_s: starts.value,
-		flagged: table.flagColumn === null ? null : flagsOf(table.flagColumn, body),
-		series: all.flatMap(({ extreme, series }) => (extreme === null ? [series] : [])),
+		flagged: table.flagged,
+		series: columns.flatMap((named) => (named.column.extreme === 'none' ? [seriesOf(named, {})] : [])),
 		...(extremes.length > 0 ? { extremes } : {}),
 		remarks
 	});
 }
 
-function headingsOf(table: TrendTable): { read: ReadColumn[]; leftOut: string[] } {
-	const read: ReadColumn[] = [];
-	const leftOut: string[] = [];
-	for (const column of table.columns) {
-		const heading = parseTrendHeading(column.name, column.unit);
-		if ('leftOut' in heading) leftOut.push(`“${column.heading}” (${heading.leftOut})`);
-		else read.push({ column, heading });
-	}
-	return { read, leftOut };
-}
-
-function seriesOf(
-	column: TableColumn,
-	heading: TrendHeading,
-	phaseHint: TrendSeries['phaseHint'],
-	body: TableBody
-): TrendSeries {
-	const values = body.values[column.index] as Float64Array;
-	const { times, over } = heading;
-	if (times !== 1 || over !== 1)
-		for (let row = 0; row < values.length; row++) values[row] = ((values[row] as number) * times) / over;
+/** The values stay where they are until somebody asks for them, and are asked for one column at a time. */
+function seriesOf<More extends object>(
+	{ heading, column, values }: NamedValues,
+	more: More
+): TrendSeries & More {
+	const isPercent = isPercentOf(column);
+	const { times, over } = isPercent ? { times: 1, over: 1 } : parseUnit(column.unit);
+	const scaled = () => {
+		const written = values();
+		const { factor } = column;
+		if (times === 1 && over === 1 && factor === 1) return written;
+		return written.map((value) => (factor * value * times) / over);
+	};
 	return {
-		name: column.heading,
-		quantity: heading.quantity,
-		phaseHint: heading.measure.kind === 'frequency' ? null : phaseHint,
-		measure: heading.measure,
-		unit: heading.unit,
-		values
+		name: heading,
+		quantity: column.quantity,
+		phaseHint: column.phase,
+		measure: measureOf(column),
+		unit:
+			column.measure === 'frequency'
+				? 'Hz'
+				: isPercent
+					? 'percent-of-fundamental'
+					: column.quantity === 'voltage'
+						? 'V'
+						: 'A',
+		...more,
+		get values() {
+			return scaled();
+		}
 	};
 }
 
-function flagsOf(column: TableColumn, body: TableBody): Uint8Array {
-	return Uint8Array.from(body.values[column.index] as Float64Array, (value) => (value > 0 ? 1 : 0));
+/** A distortion without a unit is in percent. */
+function isPercentOf({ unit, measure }: ValueColumn): boolean {
+	return unit.startsWith('%') || (unit === '' && measure === 'thd');
+}
+
+function measureOf({ measure, order }: ValueColumn): TrendSeries['measure'] {
+	return measure === 'order' ? { kind: 'order', order: order ?? 0 } : { kind: measure };
 }
 
 const HOUR_S = 3600;
@@ -117,12 +122,12 @@ const HOUR_S = 3600;
  * usual interval; any other step backwards is a refusal.
  */
 function ascendingStarts(table: TrendTable, remarks: ReadRemark[]): Result<Float64Array, ReadProblem> {
-	const { file, axis, body, interval_s } = table;
-	const starts_s = new Float64Array(axis.times_s.length);
+	const { file, times_s, layout, interval_s } = table;
+	const starts_s = new Float64Array(times_s.length);
 	let shift_s = 0;
 	for (let row = 1; row < starts_s.length; row++) {
-		const step_s = (axis.times_s[row] as number) - (axis.times_s[row - 1] as number);
-		const line = body.firstLine + row;
+		const step_s = (times_s[row] as number) - (times_s[row - 1] as number);
+		const line = layout.firstDataLine + row;
 		if (step_s <= 0) {
 			const setBack_s = interval_s - step_s;
 			const isSetBack = setBack_s <= 2 * HOUR_S && setBack_s % (HOUR_S / 2) === 0;
@@ -147,32 +152,25 @@ function ascendingStarts(table: TrendTable, remarks: ReadRemark[]): Result<Float
 					`${file}, about line ${line}: one hour has no rows. If the clock was set forward then, nothing is missing, but all later times are an hour late.`
 				)
 			);
-		starts_s[row] = (axis.times_s[row] as number) + shift_s;
+		starts_s[row] = (times_s[row] as number) + shift_s;
 	}
 	return ok(starts_s);
 }
 
-function describeColumns(file: string, read: ReadColumn[], leftOut: string[], remarks: ReadRemark[]): void {
-	if (leftOut.length > 0)
-		remarks.push(
-			note(
-				'columns-left-out',
-				`${file}: ${leftOut.length === 1 ? 'one column was' : `${leftOut.length} columns were`} left out: ${leftOut.slice(0, 12).join(', ')}${leftOut.length > 12 ? ', …' : ''}.`
-			)
-		);
-	const assumed = read.filter(({ heading }) => heading.unitIsAssumed);
-	if (assumed.length > 0)
-		remarks.push(
-			note(
-				'unit-assumed',
-				`${file} gives no unit for ${assumed
-					.slice(0, 12)
-					.map(({ column }) => column.heading)
-					.join(
-						', '
-					)}${assumed.length > 12 ? ', …' : ''}; volts, amperes, hertz and, for a THD, percent of the fundamental were taken.`
-			)
-		);
+function describeUnits({ file, columns }: TrendTable, remarks: ReadRemark[]): void {
+	const assumed = columns.filter(({ column }) => column.unit === '');
+	if (assumed.length === 0) return;
+	remarks.push(
+		note(
+			'unit-assumed',
+			`${file} gives no unit for ${assumed
+				.slice(0, 12)
+				.map(({ heading }) => heading)
+				.join(
+					', '
+				)}${assumed.length > 12 ? ', …' : ''}; volts, amperes, hertz and, for a THD, percent of the fundamental were taken.`
+		)
+	);
 }
 
 function describeInterval(

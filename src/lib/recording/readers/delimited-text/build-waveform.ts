@@ -1,19 +1,27 @@
 import { ok, type Result } from '../../../result';
-import { isoLocal } from '../../calendar';
-import { phaseHints } from '../../phase-hint';
-import type { ReadProblem, ReadRemark, Recording, RecordingChannel, RecordingStart } from '../../recording';
-import { parseUnit, toBaseUnit } from '../../unit-text';
+import type { ReadProblem, ReadRemark, Recording, RecordingStart } from '../../recording';
+import type { CaptureSource, SampleSource, SourceChannel } from '../../sample-source';
+import { parseUnit } from '../../unit-text';
 import { note, refuse, warning } from '../read-problem';
 import type { PreambleFacts } from './preamble';
-import type { TableBody } from './table-body';
-import type { TableColumn } from './table-columns';
-import { evenSpacing, type TimeAxis } from './time-axis';
+import type { ToldLayout, SampleColumn } from './table-layout-told';
+import { evenSpacing, firstStepBack, localOf, type TimeAxis } from './time-axis';
+
+/** One column of samples as told. */
+export interface NamedSample {
+	name: string;
+	column: SampleColumn;
+}
 
 export interface WaveformTable {
 	file: string;
 	variant: string;
-	columns: TableColumn[];
-	body: TableBody;
+	layout: ToldLayout;
+	columns: NamedSample[];
+	samples: SampleSource;
+	rowCount: number;
+	/** [columns] samples without a value. */
+	missing: ArrayLike<number>;
 	axis: TimeAxis | null;
 	preamble: PreambleFacts;
 	/** Rate that the person stated, for tables that tell no time at all. */
@@ -21,25 +29,15 @@ export interface WaveformTable {
 	remarks: ReadRemark[];
 }
 
-/** Columns of samples to a recording; times, headings and units as the table gives them. */
-export function buildWaveform(table: WaveformTable): Result<Recording, ReadProblem> {
-	const { file, columns, body, preamble } = table;
-	const remarks = [...table.remarks, ...body.remarks, ...(table.axis?.remarks ?? [])];
-	if (columns.length === 0)
-		return refuse(
-			'no-channels',
-			file,
-			`line ${body.firstLine}`,
-			`${file} has no column of samples beside the time; at least one column of voltages or currents was expected from line ${body.firstLine} on.`
-		);
+/** Columns of samples to a recording; times, headings and units as the table gives them or as they were told. */
+export function buildWaveform(table: WaveformTable): Result<CaptureSource, ReadProblem> {
+	const { file, columns, preamble, rowCount } = table;
+	const remarks = [...table.remarks];
 	const timeBase = timeBaseOf(table, remarks);
 	if (!timeBase.ok) return timeBase;
-	const hints = phaseHints(columns.map(({ name }) => ({ field: '', name })));
-	const channels = columns.map((column, index) =>
-		channelOf(column, index, hints[index] ?? null, body.values[column.index] as Float64Array)
-	);
+	const channels = columns.map(channelOf);
 	describeUnits(file, channels, remarks);
-	describeMissing(file, channels, body.rowCount, remarks);
+	describeMissing(table, remarks);
 	return ok({
 		kind: 'waveform',
 		format: 'delimited text',
@@ -48,30 +46,29 @@ export function buildWaveform(table: WaveformTable): Result<Recording, ReadProbl
 		recorderName: preamble.recorderName,
 		nominalFrequency_Hz: preamble.nominalFrequency_Hz,
 		start: startOf(table),
-		sampleCount: body.rowCount,
+		sampleCount: rowCount,
 		...timeBase.value,
 		channels,
 		statusChannelNames: [],
-		remarks
+		remarks,
+		samples: table.samples
 	});
 }
 
 type TimeBase = Pick<Recording, 'segments' | 'timeStamps_s'>;
 
 function timeBaseOf(table: WaveformTable, remarks: ReadRemark[]): Result<TimeBase, ReadProblem> {
-	const { file, axis, body, preamble } = table;
+	const { file, axis, layout, preamble, rowCount } = table;
 	if (axis === null) return rateAlone(table, remarks);
 	const even = evenSpacing(axis);
 	if (even === null) {
-		const backwards = axis.times_s.findIndex(
-			(time, row) => row > 0 && time <= (axis.times_s[row - 1] as number)
-		);
+		const backwards = firstStepBack(axis.times);
 		if (backwards > 0)
 			return refuse(
 				'time-not-rising',
 				file,
-				`line ${body.firstLine + backwards}`,
-				`${file}, about line ${body.firstLine + backwards}: a time later than in the row before was expected.`
+				`line ${layout.firstDataLine + backwards}`,
+				`${file}, about line ${layout.firstDataLine + backwards}: a time later than in the row before was expected.`
 			);
 		remarks.push(
 			warning(
@@ -79,7 +76,7 @@ function timeBaseOf(table: WaveformTable, remarks: ReadRemark[]): Result<TimeBas
 				`${file}: the times of the samples are not evenly spaced; the samples were kept with their own times.`
 			)
 		);
-		return ok({ segments: [], timeStamps_s: axis.times_s });
+		return ok({ segments: [], timeStamps_s: axis.times.column(0) });
 	}
 	const stated = preamble.samplingRate;
 	if (stated !== null && Math.abs(stated.rate_Hz / even.samplingRate_Hz - 1) > 0.01)
@@ -96,7 +93,7 @@ function timeBaseOf(table: WaveformTable, remarks: ReadRemark[]): Result<TimeBas
 				`${file}: the time column is written more coarsely than the samples follow each other; ${Number(even.samplingRate_Hz.toPrecision(6))} Hz is their average rate, and a missing sample would not show.`
 			)
 		);
-	return ok(oneSegment(even.samplingRate_Hz, body.rowCount));
+	return ok(oneSegment(even.samplingRate_Hz, rowCount));
 }
 
 function oneSegment(samplingRate_Hz: number, toSample: number): TimeBase {
@@ -105,14 +102,9 @@ function oneSegment(samplingRate_Hz: number, toSample: number): TimeBase {
 
 /** Never assumed: the rate stands above the table, or a person states it. */
 function rateAlone(table: WaveformTable, remarks: ReadRemark[]): Result<TimeBase, ReadProblem> {
-	const { file, body, preamble, statedSamplingRate_Hz } = table;
-	if (preamble.samplingRate !== null) {
-		const { rate_Hz, line } = preamble.samplingRate;
-		remarks.push(
-			note('rate-from-preamble', `${file}, line ${line} states the sampling rate: ${rate_Hz} Hz.`)
-		);
-		return ok(oneSegment(rate_Hz, body.rowCount));
-	}
+	const { file, layout, rowCount, statedSamplingRate_Hz } = table;
+	const told_Hz = layout.time.samplingRate_Hz;
+	if (told_Hz !== null) return ok(oneSegment(told_Hz, rowCount));
 	if (statedSamplingRate_Hz !== null) {
 		remarks.push(
 			note(
@@ -120,50 +112,38 @@ function rateAlone(table: WaveformTable, remarks: ReadRemark[]): Result<TimeBase
 				`${file} has no time column; the sampling rate of ${statedSamplingRate_Hz} Hz was entered by hand.`
 			)
 		);
-		return ok(oneSegment(statedSamplingRate_Hz, body.rowCount));
+		return ok(oneSegment(statedSamplingRate_Hz, rowCount));
 	}
 	return refuse(
 		'sampling-rate-missing',
 		file,
-		`line ${body.firstLine}`,
-		`${file} has neither a time column nor a sampling rate above the table, which begins on line ${body.firstLine}; add a column “Time (s)” or a line “Sampling rate (Hz)” in front. None is ever assumed.`
+		`line ${layout.firstDataLine}`,
+		`${file} has neither a time column nor a sampling rate above the table, which begins on line ${layout.firstDataLine}; add a column “Time (s)” or a line “Sampling rate (Hz)” in front. None is ever assumed.`
 	);
 }
 
-function channelOf(
-	column: TableColumn,
-	index: number,
-	phaseHint: RecordingChannel['phaseHint'],
-	samples: Float64Array
-): RecordingChannel {
-	const unit = parseUnit(column.unit);
-	const byName = column.unit === '' ? quantityByName(column.name) : null;
-	if (unit.times !== 1 || unit.over !== 1)
-		for (let row = 0; row < samples.length; row++) samples[row] = toBaseUnit(samples[row] as number, unit);
+/** Factor from the written value to the base unit. */
+export function sampleFactor({ unit, factor }: SampleColumn): number {
+	const { times, over } = parseUnit(unit);
+	return (factor * times) / over;
+}
+
+function channelOf({ name, column }: NamedSample, index: number): SourceChannel {
+	const { quantity, unit, phase } = column;
 	return {
 		index,
-		name: column.name,
-		phaseHint,
-		unitAsWritten: column.unit,
-		baseUnit: byName === null ? unit.base : byName === 'voltage' ? 'V' : 'A',
-		quantity: byName ?? unit.quantity,
-		samples,
+		name,
+		phaseHint: phase,
+		unitAsWritten: unit,
+		baseUnit: quantity === 'other' ? parseUnit(unit).base : quantity === 'voltage' ? 'V' : 'A',
+		quantity,
 		valuesAre: 'unknown',
 		ratio: null,
 		range: null
 	};
 }
 
-/** "V_ch1", "Ia_I", "Voltage L1", "Spannung", "Strom": a quantity by its symbol or word. */
-export function quantityByName(name: string): 'voltage' | 'current' | null {
-	if (/^(u|v)(?![a-z]*alue)([^a-z]|rms|l?[1-3]|[abcrstn]{1,2}([^a-z]|$)|$)|volt|spann|tension/i.test(name))
-		return 'voltage';
-	if (/^i([^a-z]|rms|l?[1-3]|[abcrstn]([^a-z]|$)|$)|current|amp|strom|courant|corrente/i.test(name))
-		return 'current';
-	return null;
-}
-
-function describeUnits(file: string, channels: RecordingChannel[], remarks: ReadRemark[]): void {
+function describeUnits(file: string, channels: SourceChannel[], remarks: ReadRemark[]): void {
 	const assumed = channels.filter(
 		({ unitAsWritten, quantity }) => unitAsWritten === '' && quantity !== 'other'
 	);
@@ -184,17 +164,8 @@ function describeUnits(file: string, channels: RecordingChannel[], remarks: Read
 		);
 }
 
-function describeMissing(
-	file: string,
-	channels: RecordingChannel[],
-	rowCount: number,
-	remarks: ReadRemark[]
-): void {
-	const gaps = channels.flatMap(({ name, samples }) => {
-		let missing = 0;
-		for (let row = 0; row < samples.length; row++) if (Number.isNaN(samples[row] as number)) missing++;
-		return missing === 0 ? [] : [`${name} ${missing}`];
-	});
+function describeMissing({ file, columns, missing, rowCount }: WaveformTable, remarks: ReadRemark[]): void {
+	const gaps = columns.flatMap(({ name }, at) => (missing[at] === 0 ? [] : [`${name} ${missing[at]}`]));
 	if (gaps.length === 0) return;
 	remarks.push(
 		warning(
@@ -205,22 +176,13 @@ function describeMissing(
 }
 
 /** The table's own clock, else a date above it; times counted from a trigger leave the start open. */
-function startOf({ axis, preamble }: WaveformTable): RecordingStart | null {
+function startOf({ axis, preamble, layout }: WaveformTable): RecordingStart | null {
 	if (axis?.start) return axis.start;
+	const { start } = layout.time;
+	if (start !== null) return { local: start, utcOffset_min: null };
 	const stamp = preamble.date;
 	if (stamp === null || stamp.day === null || stamp.second === null) return null;
 	if (axis !== null && axis.first_s !== 0) return null;
-	const whole = Math.floor(stamp.second);
-	const date = new Date(stamp.day * 86_400_000);
-	const fraction = stamp.second === whole ? '' : (stamp.second - whole).toFixed(6).slice(2);
-	const local = isoLocal({
-		year: date.getUTCFullYear(),
-		month: date.getUTCMonth() + 1,
-		day: date.getUTCDate(),
-		hour: Math.floor(whole / 3600),
-		minute: Math.floor((whole % 3600) / 60),
-		second: whole % 60,
-		fraction
-	});
-	return { local, utcOffset_min: stamp.utcOffset_min };
+	const digits = Number.isInteger(stamp.second) ? 0 : 6;
+	return { local: localOf(stamp.day, stamp.second, digits), utcOffset_min: stamp.utcOffset_min };
 }

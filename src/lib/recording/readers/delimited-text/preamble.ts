@@ -1,5 +1,6 @@
 import { numberInText } from '../number-in-bytes';
-import { splitFields, type HeadLine, type TableLayout } from './table-layout';
+import { splitFields, type HeadLine } from './table-layout';
+import type { DecimalSign, Separator } from './table-layout-told';
 import { guessDateOrder, parseStamp, type Stamp } from './stamp-text';
 import { timeUnit_s, withoutBrackets } from './heading-text';
 
@@ -33,9 +34,9 @@ const RATE_UNITS: Record<string, number> = {
 	'msa/s': 1e6
 };
 
-function entriesOf(lines: HeadLine[], layout: TableLayout): Entry[] {
+function entriesOf(lines: readonly HeadLine[], separator: Separator): Entry[] {
 	return lines.flatMap(({ text, number }) => {
-		const fields = splitFields(text, layout.separator).map((field) => field.trim());
+		const fields = splitFields(text, separator).map((field) => field.trim());
 		const pair = fields.length >= 2 && fields[1] !== '' ? [fields[0], fields[1]] : splitByMark(text);
 		if (pair === null) return [];
 		const [rawKey = '', value = ''] = pair;
@@ -54,7 +55,7 @@ function splitByMark(text: string): [string, string] | null {
 }
 
 /** "30000", "12.8 kHz", "3,33E-05 s": number and unit; the unit of the key counts where the value has none. */
-function quantityOf(entry: Entry, decimal: '.' | ','): { value: number; unit: string } | null {
+function quantityOf(entry: Entry, decimal: DecimalSign): { value: number; unit: string } | null {
 	const match = /^([+-]?[\d.,]+(?:[eE][+-]?\d+)?)\s*(.*)$/.exec(entry.value);
 	if (match === null) return null;
 	const value = numberInText(decimal === ',' ? (match[1] ?? '').replace(',', '.') : (match[1] ?? ''));
@@ -62,7 +63,7 @@ function quantityOf(entry: Entry, decimal: '.' | ','): { value: number; unit: st
 	return Number.isFinite(value) ? { value, unit: unit.toLowerCase() } : null;
 }
 
-function samplingRateOf(entries: Entry[], decimal: '.' | ','): PreambleFacts['samplingRate'] {
+function samplingRateOf(entries: Entry[], decimal: DecimalSign): PreambleFacts['samplingRate'] {
 	for (const entry of entries) {
 		const isRate = /sampl\w*[\s_-]*(rate|freq)|abtast(rate|freq)|^fs$|^rate$/.test(entry.key);
 		const isStep =
@@ -99,12 +100,16 @@ function textOf(entries: Entry[], keys: RegExp): string {
 	return entries.find(({ key, value }) => keys.test(key) && value !== '')?.value ?? '';
 }
 
-export function preambleFacts(layout: TableLayout): PreambleFacts {
-	const entries = entriesOf(layout.preamble, layout);
+/** What the lines above the headings say. */
+export function preambleFacts(
+	lines: readonly HeadLine[],
+	writing: { separator: Separator; decimal: DecimalSign }
+): PreambleFacts {
+	const entries = entriesOf(lines, writing.separator);
 	const nominal = entries.find(({ key }) => /(nominal|line|mains|network)[\s_-]*freq/.test(key));
-	const frequency = nominal === undefined ? null : quantityOf(nominal, layout.decimal);
+	const frequency = nominal === undefined ? null : quantityOf(nominal, writing.decimal);
 	return {
-		samplingRate: samplingRateOf(entries, layout.decimal),
+		samplingRate: samplingRateOf(entries, writing.decimal),
 		nominalFrequency_Hz: frequency !== null && frequency.value > 0 ? frequency.value : null,
 		date: dateOf(entries),
 		stationName: textOf(entries, /^(station|site|location|place|measuring point|point)\b/),

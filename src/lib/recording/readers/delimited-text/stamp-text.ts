@@ -10,8 +10,8 @@ export interface Stamp {
 	utcOffset_min: number | null;
 }
 
-/** Which of the first two numbers of a date like 03/04/2024 is the day. */
-export type DateOrder = 'day-first' | 'month-first';
+/** Which of the first two numbers of a date like 03/04/2024 is the day; "year-first" takes no such date at all. */
+export type DateOrder = 'year-first' | 'day-first' | 'month-first';
 
 const YEAR_FIRST = /^(\d{4})[-/.](\d{1,2})[-/.](\d{1,2})/;
 const YEAR_LAST = /^(\d{1,2})([-/.])(\d{1,2})\2(\d{4}|\d{2})/;
@@ -28,7 +28,7 @@ function dateOf(
 		if (!isRealDate(year, month, day)) return null;
 		return { day: dayNumber(year, month, day), length: first[0].length, numbers: null };
 	}
-	const last = YEAR_LAST.exec(text);
+	const last = order === 'year-first' ? null : YEAR_LAST.exec(text);
 	if (last === null) return null;
 	const [one, two] = [Number(last[1]), Number(last[3])];
 	const written = Number(last[4]);

@@ -1,8 +1,10 @@
 import type { Heading } from './heading-text';
 import { splitHeading, timeUnit_s, withoutBrackets } from './heading-text';
-import type { ColumnKind } from './table-body';
 import { isNumberField, isStampField, splitFields, type HeadLine, type TableLayout } from './table-layout';
 import { withoutControls } from '../read-problem';
+
+/** What the cells of a column look like. */
+export type ColumnKind = 'number' | 'stamp' | 'flag' | 'text';
 
 /** One column of a table before its values are read. */
 export interface TableColumn extends Heading {
@@ -20,11 +22,12 @@ export function isFlagHeading(heading: string): boolean {
 	return /(^|[^a-z])flag(ged|s)?([^a-z]|$)|markier/i.test(heading);
 }
 
-function kindOf(heading: string, sample: string[], decimal: '.' | ','): ColumnKind {
+function kindOf(heading: string, sample: string[], layout: TableLayout): ColumnKind {
+	const isNumber = (cell: string) => isNumberField(cell, layout.decimal, layout.grouping);
 	if (isFlagHeading(heading)) return 'flag';
 	const written = sample.filter((cell) => cell.trim() !== '');
-	const numbers = written.filter((cell) => isNumberField(cell, decimal)).length;
-	const stamps = written.filter((cell) => !isNumberField(cell, decimal) && isStampField(cell)).length;
+	const numbers = written.filter(isNumber).length;
+	const stamps = written.filter((cell) => !isNumber(cell) && isStampField(cell)).length;
 	if (written.length > 0 && stamps >= 0.8 * written.length) return 'stamp';
 	return numbers > 0 && numbers >= 0.3 * written.length ? 'number' : 'text';
 }
@@ -42,7 +45,7 @@ export function tableColumns(layout: TableLayout, lines: HeadLine[]): TableColum
 		const unitBelow = withoutBrackets(layout.units?.[index] ?? '');
 		const name = split.name === '' && layout.headings === null ? `Column ${index + 1}` : split.name;
 		const unit = split.unit !== '' ? split.unit : unitBelow === '-' ? '' : unitBelow;
-		return { index, heading, name, unit, kind: kindOf(heading, sample, layout.decimal), sample };
+		return { index, heading, name, unit, kind: kindOf(heading, sample, layout), sample };
 	});
 }
 

@@ -1,114 +1,80 @@
-import { err, ok, type Result } from '../../../result';
-import { isoLocal } from '../../calendar';
-import type { ReadProblem, ReadRemark, RecordingStart } from '../../recording';
-import { note, warning } from '../read-problem';
-import { guessDateOrder } from './stamp-text';
-import type { TableBody } from './table-body';
-import type { TimeColumns } from './table-columns';
+import { dayNumber, isoLocal, parseIsoLocal, type WallClock } from '../../calendar';
+import type { RecordingStart } from '../../recording';
+import type { ColumnStore } from './column-store';
+import type { RowTimes } from './row-times';
+import { numericTimeUnit_s, type ToldLayout, type ToldZone } from './table-layout-told';
 
 /** The rows' times as the table tells them. */
 export interface TimeAxis {
-	/** [rows] seconds from the first row. */
-	times_s: Float64Array;
+	/** Seconds from the first row, as the only column. */
+	times: ColumnStore;
 	/** Smallest difference that the written times can show, s. */
 	resolution_s: number;
-	/** Clock time of the first row, where the table tells it with a date. */
+	/** Clock time of the first row, where the table or a person tells it with a date. */
 	start: RecordingStart | null;
 	/** Time of the first row as written, s; negative where a trigger is the origin. */
 	first_s: number;
-	remarks: ReadRemark[];
 }
 
 const DAY_S = 86_400;
 
-export function timeAxisOf(file: string, time: TimeColumns, body: TableBody): Result<TimeAxis, ReadProblem> {
-	const axis = time.kind === 'stamps' ? stampAxis(file, time, body) : numberAxis(file, time, body);
-	const missing = axis.times_s.findIndex(Number.isNaN);
-	if (missing < 0) return ok(axis);
-	return err({
-		code: 'time-unreadable',
-		file,
-		place: `line ${body.firstLine + missing}`,
-		sentence: `${file}, about line ${body.firstLine + missing}: a time was expected in column ${(time.columns[0]?.index ?? 0) + 1} (“${time.columns[0]?.heading ?? ''}”), but none could be read there.`
-	});
-}
-
-function numberAxis(file: string, time: TimeColumns, body: TableBody): TimeAxis {
-	const column = time.columns[0] as TimeColumns['columns'][number];
-	const values = body.values[column.index] as Float64Array;
-	const first = values[0] as number;
-	const times_s = values.map((value) => (value - first) * time.unit_s);
-	const remarks = time.unitIsStated
-		? []
-		: [
-				note(
-					'time-unit-assumed',
-					`${file}: the time column “${column.heading}” has no unit; seconds were taken.`
-				)
-			];
+/** shift_s  what has to be added to the first row's clock time, where rows are marked by the end of their interval */
+export function timeAxisOf(layout: ToldLayout, times: ColumnStore, rows: RowTimes, shift_s = 0): TimeAxis {
+	const unit_s = numericTimeUnit_s(layout.time.format);
+	const isClock = unit_s === null;
 	return {
-		times_s,
-		resolution_s: writtenResolution(column.sample) * time.unit_s,
-		start: null,
-		first_s: first * time.unit_s,
-		remarks
+		times,
+		resolution_s: isClock
+			? writtenResolution(rows.written.map(secondsPart))
+			: writtenResolution(rows.written) * unit_s,
+		start: startOf(layout, rows, isClock ? (rows.written[0] ?? '') : '', shift_s),
+		first_s: isClock ? 0 : rows.first_s
 	};
-}
-
-/** Whole days and seconds of the day are subtracted apart: nanoseconds survive. */
-function stampAxis(file: string, time: TimeColumns, body: TableBody): TimeAxis {
-	const [date, clock] = time.columns;
-	const clockColumn = (clock ?? date) as TimeColumns['columns'][number];
-	const days = body.days[(date as TimeColumns['columns'][number]).index] as Float64Array;
-	const seconds = body.values[clockColumn.index] as Float64Array;
-	const firstDay = days[0] as number;
-	const firstSecond = secondOfDay(seconds[0] as number, days[0] as number);
-	let midnights = 0;
-	const times_s = new Float64Array(body.rowCount);
-	for (let row = 0; row < body.rowCount; row++) {
-		const second = secondOfDay(seconds[row] as number, days[row] as number);
-		const hasDate = !Number.isNaN(firstDay);
-		if (!hasDate && row > 0 && second < (seconds[row - 1] as number) - DAY_S / 2) midnights++;
-		const elapsedDays = hasDate ? (days[row] as number) - firstDay : midnights;
-		times_s[row] = elapsedDays * DAY_S + (second - firstSecond);
-	}
-	return {
-		times_s,
-		resolution_s: writtenResolution(clockColumn.sample.map(secondsPart)),
-		start: startOf(firstDay, firstSecond, body.utcOffset_min, clockColumn.sample[0] ?? ''),
-		first_s: 0,
-		remarks: orderRemark(file, time)
-	};
-}
-
-/** A row with only a date stands for its midnight. */
-function secondOfDay(second: number, day: number): number {
-	return Number.isNaN(second) && !Number.isNaN(day) ? 0 : second;
-}
-
-function orderRemark(file: string, time: TimeColumns): ReadRemark[] {
-	const sample = time.columns[0]?.sample ?? [];
-	if (guessDateOrder(sample).isCertain) return [];
-	return [
-		warning(
-			'date-order-ambiguous',
-			`${file}: dates such as ${sample[0]?.trim() ?? ''} can be read with the day or the month first; the day was taken as first. Check the start.`
-		)
-	];
 }
 
 function startOf(
-	day: number,
-	second: number,
-	utcOffset_min: number | null,
-	written: string
+	{ time }: ToldLayout,
+	rows: RowTimes,
+	written: string,
+	shift_s: number
 ): RecordingStart | null {
-	if (Number.isNaN(day) || Number.isNaN(second)) return null;
-	const date = new Date(day * DAY_S * 1000);
-	const whole = Math.floor(second);
-	const digits = Math.min(9, decimalsOf(secondsPart(written)));
-	const fraction = digits === 0 ? '' : (second - whole).toFixed(digits).slice(2);
-	const local = isoLocal({
+	const { firstDay, firstSecond } = rows;
+	const utcOffset_min = offsetOf(time.zone, rows.utcOffset_min);
+	if (!Number.isNaN(firstDay) && !Number.isNaN(firstSecond)) {
+		const digits = Math.min(
+			9,
+			written === '' ? decimalsNeeded(firstSecond) : decimalsOf(secondsPart(written))
+		);
+		return { local: localOf(firstDay, firstSecond + shift_s, digits), utcOffset_min };
+	}
+	if (time.start === null) return null;
+	return { local: shiftedLocal(time.start, shift_s), utcOffset_min };
+}
+
+/** Minutes east of UTC; null leaves it to the clock at the site. */
+function offsetOf(zone: ToldZone, written_min: number | null): number | null {
+	if (zone.kind === 'utc') return 0;
+	if (zone.kind === 'offset') return zone.offset_min;
+	return zone.kind === 'written' ? written_min : null;
+}
+
+/** A local moment some seconds later, or earlier. */
+export function shiftedLocal(local: string, shift_s: number): string {
+	if (shift_s === 0) return local;
+	const clock = parseIsoLocal(local) as WallClock;
+	const day = dayNumber(clock.year, clock.month, clock.day);
+	const second = clock.hour * 3600 + clock.minute * 60 + clock.second + Number(`0.${clock.fraction || '0'}`);
+	return localOf(day, second + shift_s, clock.fraction.length);
+}
+
+/** ISO form of a second of a day; it may lie before or after that day. */
+export function localOf(day: number, second: number, digits: number): string {
+	const days = Math.floor(second / DAY_S);
+	const ofDay = second - days * DAY_S;
+	const date = new Date((day + days) * DAY_S * 1000);
+	const whole = Math.floor(ofDay);
+	const fraction = digits === 0 ? '' : (ofDay - whole).toFixed(digits).slice(2);
+	return isoLocal({
 		year: date.getUTCFullYear(),
 		month: date.getUTCMonth() + 1,
 		day: date.getUTCDate(),
@@ -117,7 +83,10 @@ function startOf(
 		second: whole % 60,
 		fraction
 	});
-	return { local, utcOffset_min };
+}
+
+function decimalsNeeded(second: number): number {
+	return Number.isInteger(second) ? 0 : 6;
 }
 
 /** The seconds of a clock text with their fraction: "10:20:30.125" → "30.125", "3:21:43 PM.135" → "43.135". */
@@ -154,16 +123,18 @@ export interface EvenSpacing {
 
 /** One rate for times that lie on a straight line within what their text can show; null for any others. */
 export function evenSpacing(axis: TimeAxis): EvenSpacing | null {
-	const last = axis.times_s.length - 1;
-	const step_s = (axis.times_s[last] as number) / last;
+	const last = axis.times.rowCount - 1;
+	const span_s = lastTime_s(axis.times);
+	const step_s = span_s / last;
 	if (!(step_s > 0)) return null;
 	let deviation_s = 0;
-	for (let row = 0; row <= last; row++)
-		deviation_s = Math.max(deviation_s, Math.abs((axis.times_s[row] as number) - row * step_s));
+	let row = 0;
+	for (const piece of axis.times.pieces(0))
+		for (let at = 0; at < piece.length; at++, row++)
+			deviation_s = Math.max(deviation_s, Math.abs((piece[at] as number) - row * step_s));
 	// A lost sample moves some row by half a step at least; a clock that is being disciplined moves it far less.
 	const isEven = deviation_s <= 0.1 * step_s;
 	if (!isEven && !(deviation_s <= 1.01 * axis.resolution_s)) return null;
-	const span_s = axis.times_s[last] as number;
 	// Times cut to twelve significant digits show a finer step at the start than at the end.
 	const written_s = Math.max(axis.resolution_s, 1e-11 * span_s);
 	const uncertainty_s = Math.min(written_s, 2 * deviation_s + 1e-12 * span_s);
@@ -177,6 +148,25 @@ function roundest(rate_Hz: number, relativeUncertainty: number): number {
 		if (Math.abs(candidate / rate_Hz - 1) <= relativeUncertainty) return candidate;
 	}
 	return rate_Hz;
+}
+
+export function lastTime_s(times: ColumnStore): number {
+	let last = NaN;
+	for (const piece of times.pieces(0)) last = piece[piece.length - 1] ?? last;
+	return last;
+}
+
+/** First row, from 0, whose time is not later than the one before; −1 where all rise. */
+export function firstStepBack(times: ColumnStore): number {
+	let before = -Infinity;
+	let row = 0;
+	for (const piece of times.pieces(0))
+		for (const time of piece) {
+			if (time <= before) return row;
+			before = time;
+			row++;
+		}
+	return -1;
 }
 
 /** Middle value of the steps between rows, s. */

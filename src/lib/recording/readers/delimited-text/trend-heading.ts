@@ -1,6 +1,6 @@
 import type { TrendSeries } from '../../recording';
 import { parseUnit } from '../../unit-text';
-import { quantityByName } from './build-waveform';
+import { quantityByName } from './quantity-name';
 
 /** What one column of a trend log tabulates. */
 export interface TrendHeading {
