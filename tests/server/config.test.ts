@@ -39,9 +39,37 @@ describe('settings', () => {
 		['SESSION_DAYS', '400'],
 		['LOG_LEVEL', 'loud'],
 		['SINEWRIGHT_MODE', 'staging'],
-		['UPLOAD_LIMIT_MB', '-1']
+		['UPLOAD_LIMIT_MB', '-1'],
+		['STORAGE', 'attic'],
+		['BUCKET_ENDPOINT', 'objects.example.com'],
+		['BUCKET_PREFIX', 'no-slash'],
+		['BUCKET_ACCESS_KEY', 'without-its-secret']
 	])('refuse %s=%s by name', (name, value) => {
 		expect(() => parseConfig({ SINEWRIGHT_MODE: 'test', [name]: value })).toThrow(new RegExp(name));
+	});
+
+	it('choose a folder, or a bucket with its name and where it is', () => {
+		const base = { SINEWRIGHT_MODE: 'test', STORAGE: 'bucket' };
+		expect(parseConfig({ SINEWRIGHT_MODE: 'test' }).bucket).toBeNull();
+		expect(() => parseConfig(base)).toThrow(/BUCKET_NAME must be set when STORAGE is bucket/);
+		expect(
+			parseConfig({
+				...base,
+				BUCKET_NAME: 'captures',
+				BUCKET_ENDPOINT: 'https://objects.example.com',
+				BUCKET_ACCESS_KEY: 'key',
+				BUCKET_SECRET_KEY: 'secret',
+				BUCKET_PREFIX: 'sinewright/'
+			}).bucket
+		).toEqual({
+			name: 'captures',
+			region: 'us-east-1',
+			endpoint: 'https://objects.example.com',
+			credentials: { accessKeyId: 'key', secretAccessKey: 'secret' },
+			pathStyle: true,
+			prefix: 'sinewright/'
+		});
+		expect(parseConfig({ ...base, BUCKET_NAME: 'captures' }).bucket?.credentials).toBeNull();
 	});
 
 	it('treat an empty variable as not given', () => {

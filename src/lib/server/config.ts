@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import type { BucketSettings } from './storage/bucket-blob-store';
 
 /** Settings come from the environment, once, at start; a wrong one stops the start with a sentence. */
 const environment = z
@@ -15,11 +16,35 @@ const environment = z
 			.optional(),
 		MAIL_FROM: z.string().min(3).default('Sinewright <no-reply@localhost>'),
 		LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'trace', 'silent']).default('info'),
+		STORAGE: z.enum(['folder', 'bucket']).default('folder'),
+		BUCKET_NAME: z.string().min(3, 'must be the name of the bucket').optional(),
+		BUCKET_REGION: z.string().min(1).default('us-east-1'),
+		BUCKET_ENDPOINT: z.url('must be an address such as https://objects.example.com').optional(),
+		BUCKET_ACCESS_KEY: z.string().min(1).optional(),
+		BUCKET_SECRET_KEY: z.string().min(1).optional(),
+		BUCKET_PATH_STYLE: z.enum(['yes', 'no']).default('yes'),
+		BUCKET_PREFIX: z
+			.string()
+			.regex(/^([\w.-]+\/)*$/, 'must be folders that end with a slash, such as sinewright/')
+			.default(''),
+		BUCKET_CACHE_GB: z.coerce.number().positive().default(20),
 		UPLOAD_LIMIT_MB: z.coerce.number().positive().default(2048),
 		SESSION_DAYS: z.coerce.number().positive().max(90).default(14),
 		WORKER_POLL_MS: z.coerce.number().int().min(20).default(250)
 	})
 	.superRefine((env, context) => {
+		if (env.STORAGE === 'bucket' && !env.BUCKET_NAME)
+			context.addIssue({
+				code: 'custom',
+				path: ['BUCKET_NAME'],
+				message: 'must be set when STORAGE is bucket'
+			});
+		if ((env.BUCKET_ACCESS_KEY === undefined) !== (env.BUCKET_SECRET_KEY === undefined))
+			context.addIssue({
+				code: 'custom',
+				path: ['BUCKET_SECRET_KEY'],
+				message: 'and BUCKET_ACCESS_KEY must be set together, or neither'
+			});
 		if (env.SINEWRIGHT_MODE !== 'production') return;
 		// Mailed links are built from ORIGIN, never from a request header, which anybody can forge.
 		if (!env.ORIGIN)
@@ -47,6 +72,10 @@ export interface Config {
 	smtpUrl: string | null;
 	mailFrom: string;
 	logLevel: string;
+	/** Where originals and issued PDFs lie; null for a folder of the data directory. */
+	bucket: BucketSettings | null;
+	/** Room for local copies of what lies in the bucket. */
+	bucketCache_bytes: number;
 	uploadLimit_bytes: number;
 	session_days: number;
 	workerPoll_ms: number;
@@ -73,9 +102,24 @@ export function parseConfig(env: Record<string, string | undefined>): Config {
 		smtpUrl: value.SMTP_URL ?? null,
 		mailFrom: value.MAIL_FROM,
 		logLevel: value.LOG_LEVEL,
+		bucket: bucketOf(value),
+		bucketCache_bytes: value.BUCKET_CACHE_GB * 1e9,
 		uploadLimit_bytes: value.UPLOAD_LIMIT_MB * 1024 * 1024,
 		session_days: value.SESSION_DAYS,
 		workerPoll_ms: value.WORKER_POLL_MS,
 		mailboxVisible: value.SMTP_URL === undefined && value.SINEWRIGHT_MODE !== 'production'
+	};
+}
+
+function bucketOf(env: z.infer<typeof environment>): BucketSettings | null {
+	if (env.STORAGE === 'folder' || !env.BUCKET_NAME) return null;
+	const { BUCKET_ACCESS_KEY: accessKeyId, BUCKET_SECRET_KEY: secretAccessKey } = env;
+	return {
+		name: env.BUCKET_NAME,
+		region: env.BUCKET_REGION,
+		endpoint: env.BUCKET_ENDPOINT ?? null,
+		credentials: accessKeyId && secretAccessKey ? { accessKeyId, secretAccessKey } : null,
+		pathStyle: env.BUCKET_PATH_STYLE === 'yes',
+		prefix: env.BUCKET_PREFIX
 	};
 }

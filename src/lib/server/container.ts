@@ -1,4 +1,3 @@
-import { join } from 'node:path';
 import type { WindowPool } from './analysis/pool/window-pool';
 import type { Config } from './config';
 import { databaseFile } from './db/database-file';
@@ -31,7 +30,7 @@ import { createCapturesService } from './services/captures.service';
 import { createReadingsService } from './services/readings.service';
 import { createTablesService } from './services/tables.service';
 import { createUploadsService } from './services/uploads.service';
-import { createDiskBlobStore } from './storage/disk-blob-store';
+import { openBlobStore } from './storage/open-blob-store';
 
 export interface Overrides {
 	db?: Db;
@@ -87,7 +86,7 @@ export function buildContainer(
 	const deps: ServiceDeps = {
 		config,
 		db,
-		blobs: overrides.blobs ?? createDiskBlobStore(join(config.dataDir, 'blobs')),
+		blobs: overrides.blobs ?? openBlobStore(config),
 		jobs: createJobQueue(db, clock),
 		mail: createOutbox(db, overrides.mailTransport ?? createMailTransport(config), clock, log),
 		clock,

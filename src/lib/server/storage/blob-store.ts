@@ -8,7 +8,7 @@ export interface StoredBlob {
 
 /**
  * Content-addressed, write-once storage of uploaded originals, derived samples and issued PDFs.
- * A folder now, a bucket later: nothing outside this folder knows which.
+ * A folder or a bucket, chosen by the settings: nothing outside this folder knows which.
  */
 export interface BlobStore {
 	/** Stores a stream whole or not at all. `limit_bytes` rejects with BlobTooLarge before the disk fills. */
@@ -18,6 +18,8 @@ export interface BlobStore {
 		onProgress?: (bytes: number) => void
 	): Promise<StoredBlob>;
 	put(content: Uint8Array): Promise<StoredBlob>;
+	/** Takes a local file over: it is hashed, stored and no longer where it was. */
+	takeFile(path: string): Promise<StoredBlob>;
 	/** The whole content. Throws when the blob is missing or its content no longer has its hash. */
 	read(sha256: string): Promise<Buffer>;
 	/** `length_bytes` bytes from `offset_bytes`; shorter at the end of the blob. */
