@@ -84,8 +84,8 @@ function drawLevels_pct(
 	const within = (bound: number) => bound * (2 * random.uniform() - 1);
 	const load_A = channel.quantity === 'current' ? trueRms_A(channel) : null;
 	const transducers = transducersOf(chain, channel.quantity).map((transducer) => ({
-		kind: transducer.kind,
-		ratio_pct: within(ratioError_pct(transducer, load_A)),
+		transducer,
+		ratio_pct: within(ratioError_pct(transducer, load_A) ?? 0),
 		// One bend of the response for the whole channel.
 		bend: within(1)
 	}));
@@ -99,8 +99,8 @@ function drawLevels_pct(
 			band === null
 				? within(classLimit(chain.instrumentClass, channel.quantity, level, onePercent))
 				: ((level * band.expanded_pctOfReading) / 100 / band.coverageFactor) * random.normal();
-		for (const { kind, ratio_pct, bend } of transducers) {
-			const response_pct = responseError_pct(kind, order, chain.nominalFrequency_Hz) ?? 0;
+		for (const { transducer, ratio_pct, bend } of transducers) {
+			const response_pct = responseError_pct(transducer, order, chain.nominalFrequency_Hz) ?? 0;
 			error += (level * (ratio_pct + bend * response_pct)) / 100;
 		}
 		levels[order] = level + error;

@@ -3,8 +3,10 @@ import type { Container } from '../../src/lib/server/container';
 import { hashPassword } from '../../src/lib/server/auth/password';
 import { withTransaction } from '../../src/lib/server/db/database';
 import { addPerson, addPractice } from '../../src/lib/server/services/practice-setup';
+import { certificatePdf } from './certificate-pdf';
 import type { StoryClock } from './clock';
 import { CLIENTS, DEMO_PASSWORD, PRACTICE, STAFF, type ClientKey, type StaffKey } from './people';
+import { demoInputs, SENSORS, type DemoSensor } from './sensors';
 import { INSTRUMENTS, POINTS, SITES, type PointKey } from './sites';
 
 export interface DemoRegister {
@@ -86,20 +88,58 @@ export async function registerDemo(
 		fennimoreIntake: await point('fennimore', 'fennimoreIntake')
 	};
 
-	const instruments: string[] = [];
-	for (const instrument of INSTRUMENTS) {
-		story.at(instrument.calibratedDaysAgo - 2, 9);
-		const id = await services.instruments.create(owner, instrument.facts);
+	const dayFromToday = (days: number): string => isoDay(new Date(today.getTime() + days * 86_400_000));
+	const certify = async (
+		subject: { instrumentId: string } | { sensorId: string },
+		item: {
+			what: string;
+			serialNumber: string;
+			calibratedDaysAgo: number;
+			dueInDays: number;
+			certificate: string;
+		}
+	) => {
+		const madeAt = story.at(item.calibratedDaysAgo - 2, 9);
+		const days = {
+			calibratedOn: dayFromToday(-item.calibratedDaysAgo),
+			dueOn: dayFromToday(item.dueInDays)
+		};
 		await services.calibrations.add(
 			owner,
-			{ instrumentId: id },
+			subject,
 			{
-				note: '',
-				certificateNumber: instrument.certificate,
+				certificateNumber: item.certificate,
 				laboratory: 'Calder Metrology (invented)',
-				calibratedOn: isoDay(new Date(today.getTime() - instrument.calibratedDaysAgo * 86_400_000)),
-				dueOn: isoDay(new Date(today.getTime() + instrument.dueInDays * 86_400_000))
-			}
+				note: '',
+				...days
+			},
+			{ name: `${item.certificate}.pdf`, bytes: await certificatePdf({ ...item, ...days, madeAt }) }
+		);
+	};
+	const registerSensors = async (sensors: readonly DemoSensor[]): Promise<string[]> => {
+		const ids: string[] = [];
+		for (const sensor of sensors) {
+			const id = await services.sensors.create(owner, sensor.facts);
+			await certify(
+				{ sensorId: id },
+				{ ...sensor, what: sensor.facts.name, serialNumber: sensor.facts.serialNumber }
+			);
+			ids.push(id);
+		}
+		return ids;
+	};
+
+	const instruments: string[] = [];
+	const plugged = [await registerSensors(SENSORS.recorder2), await registerSensors(SENSORS.recorder5)];
+	await registerSensors(SENSORS.spare);
+	for (const [i, instrument] of INSTRUMENTS.entries()) {
+		story.at(instrument.calibratedDaysAgo - 2, 9);
+		const { facts } = instrument;
+		const inputs = demoInputs(instrument.resolution_bits, plugged[i] ?? []);
+		const id = await services.instruments.create(owner, { ...facts, inputs });
+		await certify(
+			{ instrumentId: id },
+			{ ...instrument, what: `${facts.name}, ${facts.model}`, serialNumber: facts.serialNumber }
 		);
 		instruments.push(id);
 	}

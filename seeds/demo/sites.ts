@@ -152,6 +152,7 @@ export const INSTRUMENTS: {
 	calibratedDaysAgo: number;
 	dueInDays: number;
 	certificate: string;
+	resolution_bits: number;
 }[] = [
 	{
 		facts: {
@@ -168,7 +169,8 @@ export const INSTRUMENTS: {
 		},
 		calibratedDaysAgo: 262,
 		dueInDays: 105,
-		certificate: 'CAL-26-1188'
+		certificate: 'CAL-26-1188',
+		resolution_bits: 18
 	},
 	{
 		facts: {
@@ -185,6 +187,7 @@ export const INSTRUMENTS: {
 		},
 		calibratedDaysAgo: 335,
 		dueInDays: 30,
-		certificate: 'CAL-26-0211'
+		certificate: 'CAL-26-0211',
+		resolution_bits: 16
 	}
 ];

@@ -83,7 +83,7 @@ export const ROUTE_TABLE: Readonly<Record<string, RouteRule>> = {
 	'/(app)/surveys': consultants(),
 	'/(app)/surveys/[survey]': { for: CONSULTANTS, status: 303 },
 	'/(app)/surveys/[survey]/captures': consultants(),
-	'/(app)/surveys/[survey]/captures/[capture]': consultants(['confirm', 'remove']),
+	'/(app)/surveys/[survey]/captures/[capture]': consultants(['confirm', 'instrument', 'remove']),
 	// The matrix's capture is COMTRADE, whose columns nobody has to tell.
 	'/(app)/surveys/[survey]/captures/[capture]/table': { for: CONSULTANTS, status: 303, actions: ['apply'] },
 	'/(app)/surveys/[survey]/point': consultants(['save', 'close', 'reopen']),

@@ -114,7 +114,7 @@ describe('voltage transformer', () => {
 		const beyond = figureBudget(medium, figure('voltage', 21, 3));
 		expect(beyond).toMatchObject({ U: null, notKnown: ['transformer-response'] });
 		expect(beyond.knownPart).toBeGreaterThan(0);
-		expect(responseError_pct('inductive-voltage-transformer', 17, 60)).toBeNull();
+		expect(responseError_pct({ kind: 'inductive-voltage-transformer' }, 17, 60)).toBeNull();
 	});
 
 	it('of low voltage carries every order', () => {

@@ -8,7 +8,7 @@ import {
 	type Transducer,
 	type TransducerKind
 } from '../uncertainty/measuring-chain';
-import { RESPONSE } from '../uncertainty/transducer-limits';
+import { reachOf_Hz, RESPONSE } from '../uncertainty/transducer-limits';
 import { formatNumber, formatOrdinal } from '../units/format';
 import type { UncertaintyStatement } from './assessment';
 
@@ -25,12 +25,16 @@ const KIND_WORDS: Record<TransducerKind, string> = {
 	'current-transformer': 'current transformers',
 	'current-clamp': 'current clamps',
 	'flexible-coil': 'flexible coils',
+	shunt: 'shunts',
 	'not-known': 'sensors'
 };
 
 function transducerWords({ kind, error_pct, errorAssumed }: Transducer): string {
 	const { at50th_pct } = RESPONSE[kind];
-	const error = `${KIND_WORDS[kind]} of ${error_pct} %${errorAssumed ? ' (not stated, assumed)' : ''}`;
+	const error =
+		error_pct === null
+			? `${KIND_WORDS[kind]} whose error is not known`
+			: `${KIND_WORDS[kind]} of ${error_pct} %${errorAssumed ? ' (not stated, assumed)' : ''}`;
 	return at50th_pct === 0 ? error : `${error}, growing by ${at50th_pct} % to the 50th order`;
 }
 
@@ -58,12 +62,24 @@ function typicalFigure(quantity: Quantity, order: number): Figure {
 }
 
 function reachWords(chain: MeasuringChain, quantity: Quantity): string {
-	const reach_Hz = Math.min(
-		...transducersOf(chain, quantity).map((transducer) => RESPONSE[transducer.kind].reach_Hz)
-	);
+	const transducers = transducersOf(chain, quantity);
+	const reach_Hz = Math.min(...transducers.map(reachOf_Hz));
 	if (!Number.isFinite(reach_Hz)) return '';
 	const order = Math.max(1, Math.floor(reach_Hz / chain.nominalFrequency_Hz));
-	return ` Above the ${formatOrdinal(order)} order the errors of the ${quantity} transformers are not known: no uncertainty is stated there, and verdicts count the known part only.`;
+	const what = transducers.some(
+		(transducer) => transducer.role === 'transformer' && reachOf_Hz(transducer) === reach_Hz
+	)
+		? 'transformers'
+		: 'sensors';
+	return ` Above the ${formatOrdinal(order)} order the errors of the ${quantity} ${what} are not known: no uncertainty is stated there, and verdicts count the known part only.`;
+}
+
+function unknownWords(chain: MeasuringChain): string {
+	const open = (['voltage', 'current'] as const).filter((quantity) =>
+		transducersOf(chain, quantity).some((transducer) => transducer.error_pct === null)
+	);
+	if (open.length === 0) return '';
+	return ` Nobody has stated the error of the ${open.join(' and ')} sensors: no uncertainty is stated for ${open.join(' or ')}, and verdicts count the known part only.`;
 }
 
 function coverageWords(chain: MeasuringChain): string {
@@ -90,6 +106,7 @@ export function chainUncertainty(chain: MeasuringChain): UncertaintyStatement {
 			`Expanded uncertainty U = 2·u from a budget for each figure, combined after JCGM 100:2008: ` +
 			`${recorderWords(chain)}; ${quantityWords(chain, 'voltage')}; ${quantityWords(chain, 'current')}; ` +
 			`spread and gaps as the measurement shows them. Classes hold at power frequency; their growth with the order is common practice and an assumption.` +
+			unknownWords(chain) +
 			reachWords(chain, 'voltage') +
 			reachWords(chain, 'current') +
 			coverageWords(chain),

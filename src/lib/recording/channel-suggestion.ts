@@ -1,3 +1,11 @@
+import {
+	inputToPrimary,
+	matchInputs,
+	type InputSensor,
+	type MeasuringInput,
+	type MeasuringInstrument
+} from './measuring-input';
+import { phaseHints } from './phase-hint';
 import { formatPhase, LINE_TO_LINE_PHASES, type Phase, type PhaseNames } from './phase';
 import type { OpenedCapture } from './read-capture';
 import type { CaptureContent, TrendSeries } from './recording';
@@ -30,24 +38,69 @@ export interface MappingSuggestion {
  */
 export function suggestMappings(
 	content: CaptureContent | OpenedCapture,
-	point: SuggestionPoint
+	point: SuggestionPoint,
+	instrument: MeasuringInstrument | null = null
 ): MappingSuggestion[] {
 	if (content.kind === 'trend')
 		return content.series.map((series, index) => suggestSeries(series, index, point));
-	if (content.format === 'WAV')
-		return content.channels.map(({ index }) =>
+	return suggestChannels(content.channels, content.format, point, instrument);
+}
+
+/** What a suggestion needs of a channel: the file need not be opened again for it. */
+export type SuggestedChannel = Pick<
+	SourceChannel,
+	'index' | 'name' | 'unitAsWritten' | 'quantity' | 'phaseHint' | 'valuesAre' | 'ratio'
+>;
+
+/**
+ * The same for the channels of a waveform alone.
+ * instrument  what recorded them, for the ratios of its sensors; null = not known
+ */
+export function suggestChannels(
+	channels: readonly SuggestedChannel[],
+	format: string,
+	point: SuggestionPoint,
+	instrument: MeasuringInstrument | null
+): MappingSuggestion[] {
+	if (format === 'WAV')
+		return channels.map(({ index }) =>
 			leftOut(index, 'A sound file tells neither what a channel measures nor in which unit.')
 		);
 	const taken = new Map<string, string>();
-	return content.channels.map((channel) => suggestChannel(channel, point, taken));
+	const inputs = inputsOf(channels, instrument);
+	return channels.map((channel, i) => suggestChannel(channel, point, taken, inputs[i] ?? null));
+}
+
+/** The input behind a channel, with what the input's own name says of the conductor. */
+interface ChannelInput extends MeasuringInput {
+	instrumentName: string;
+	phaseHint: Phase | null;
+}
+
+function inputsOf(
+	channels: readonly SuggestedChannel[],
+	instrument: MeasuringInstrument | null
+): (ChannelInput | null)[] {
+	if (instrument === null) return channels.map(() => null);
+	const hints = phaseHints(instrument.inputs.map(({ name }) => ({ field: '', name })));
+	return matchInputs(channels, instrument.inputs).map((index) =>
+		index === null
+			? null
+			: {
+					...instrument.inputs[index]!,
+					instrumentName: instrument.name,
+					phaseHint: hints[index] ?? null
+				}
+	);
 }
 
 function suggestChannel(
-	channel: SourceChannel,
+	channel: SuggestedChannel,
 	point: SuggestionPoint,
-	taken: Map<string, string>
+	taken: Map<string, string>,
+	input: ChannelInput | null
 ): MappingSuggestion {
-	const quantity = quantityOf(channel);
+	const quantity = quantityByInput(channel, input) ?? quantityOf(channel);
 	if (quantity === null)
 		return leftOut(
 			channel.index,
@@ -57,7 +110,7 @@ function suggestChannel(
 		);
 	if (/(^|[^A-Za-z])[UVI]?DC([^A-Za-z]|$)/i.test(channel.name))
 		return leftOut(channel.index, `The name “${channel.name}” says direct ${quantity.word}.`);
-	const phase = channel.phaseHint ?? singlePhase(point);
+	const phase = channel.phaseHint ?? input?.phaseHint ?? singlePhase(point);
 	if (phase === null)
 		return leftOut(
 			channel.index,
@@ -73,11 +126,14 @@ function suggestChannel(
 			`“${earlier}” already gives the ${quantity.word} of ${formatPhase(phase, point.phaseNames)}.`
 		);
 	taken.set(key, channel.name);
-	const factor = factorToPrimary(channel, quantity.value, point);
+	const factor =
+		factorByInput(channel, quantity.value, point, input) ?? factorToPrimary(channel, quantity.value, point);
 	const conductor =
-		channel.phaseHint === null
-			? `a ${point.system} point has one conductor to measure`
-			: `the file’s phase field or the name “${channel.name}” points to ${formatPhase(phase, point.phaseNames)}`;
+		channel.phaseHint === null && input?.phaseHint
+			? `the input “${input.name}” of ${input.instrumentName} is that of ${formatPhase(phase, point.phaseNames)}`
+			: channel.phaseHint === null
+				? `a ${point.system} point has one conductor to measure`
+				: `the file’s phase field or the name “${channel.name}” points to ${formatPhase(phase, point.phaseNames)}`;
 	return {
 		channelIndex: channel.index,
 		mapping: { quantity: quantity.value, phase, toPrimary: factor.toPrimary },
@@ -93,7 +149,23 @@ interface GuessedQuantity {
 	reason: string;
 }
 
-function quantityOf(channel: SourceChannel): GuessedQuantity | null {
+/** Volts at a current input are what its sensor gives, not the voltage of the point. */
+function quantityByInput(channel: SuggestedChannel, input: ChannelInput | null): GuessedQuantity | null {
+	if (input === null || channel.quantity === input.quantity) return null;
+	if (channel.quantity === 'other' && channel.unitAsWritten !== '') return null;
+	const { quantity, sensor, name, instrumentName } = input;
+	return {
+		value: quantity,
+		word: quantity,
+		isStated: false,
+		reason:
+			channel.quantity === 'other' || sensor === null
+				? `The input “${name}” of ${instrumentName} measures ${quantity}`
+				: `The input “${name}” of ${instrumentName} measures ${quantity} through ${sensor.name}, which gives volts`
+	};
+}
+
+function quantityOf(channel: SuggestedChannel): GuessedQuantity | null {
 	const { quantity, unitAsWritten, name } = channel;
 	if (quantity !== 'other') {
 		const isStated = unitAsWritten !== '';
@@ -134,9 +206,51 @@ interface Factor {
 	reason: string;
 }
 
+/** What the file's values are before the sensor's ratio is counted; false where they are primary already. */
+function areAtInput(channel: SuggestedChannel, { quantity }: ChannelInput, sensor: InputSensor): boolean {
+	if (channel.valuesAre === 'primary') return false;
+	// Amperes behind a sensor that gives volts: the recorder has counted its ratio.
+	if (channel.quantity === quantity && sensor.gives !== quantity) return false;
+	const own = channel.ratio;
+	return !(channel.valuesAre === 'secondary' && own !== null && own.primary !== own.secondary);
+}
+
+/** The ratio of the sensor at the input; null where there is none, or the file's own word counts. */
+function factorByInput(
+	channel: SuggestedChannel,
+	quantity: 'voltage' | 'current',
+	point: SuggestionPoint,
+	input: ChannelInput | null
+): Factor | null {
+	if (input === null || input.sensor === null || !areAtInput(channel, input, input.sensor)) return null;
+	const { sensor, name, instrumentName } = input;
+	const transformer = quantity === 'voltage' ? point.voltageTransformer : point.currentTransformer;
+	const found = inputToPrimary(input, transformer);
+	const where = `${sensor.name} is plugged into the input “${name}” of ${instrumentName}`;
+	if (found === null)
+		return {
+			toPrimary: 1,
+			isStated: false,
+			reason: `${where}, and its ratio is not known: enter it. The values were left as they are.`
+		};
+	const both =
+		found.throughBoth && transformer !== null
+			? ` It is too small for the primary of the point’s ${transformer.primary}:${transformer.secondary}, so it was taken to measure on its secondary and both ratios were used.`
+			: '';
+	const open =
+		channel.valuesAre === 'unknown' && channel.quantity === quantity
+			? ' The file does not say whether its values are those at the input; they were taken as such. Check this.'
+			: '';
+	return {
+		toPrimary: found.toPrimary,
+		isStated: false,
+		reason: `${where}: its ratio ${sensor.ratioText} was used.${both}${open}`
+	};
+}
+
 /** Primary values need no factor; secondary ones need the file's ratio, or else the point's. */
 function factorToPrimary(
-	channel: SourceChannel,
+	channel: SuggestedChannel,
 	quantity: 'voltage' | 'current',
 	point: SuggestionPoint
 ): Factor {

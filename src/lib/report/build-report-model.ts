@@ -36,6 +36,7 @@ export interface ReportSources extends Pick<
 	| 'findings'
 	| 'actions'
 	| 'instrument'
+	| 'equipment'
 	| 'waveform'
 	| 'trends'
 	| 'quality'
@@ -266,6 +267,7 @@ export function buildReportModel(sources: ReportSources): ReportModel {
 		findings: sources.findings,
 		actions: sources.actions,
 		instrument: sources.instrument,
+		...(sources.equipment && { equipment: sources.equipment }),
 		method: methodOf(sources),
 		tables: tablesOf(sources),
 		spectra: spectraOf(sources),

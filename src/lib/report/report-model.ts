@@ -1,6 +1,7 @@
 import type { AssessedPoint, DecisionRule, Evidence, Verdict } from '../assessment/assessment';
 import type { LimitBasis, Provenance } from '../limits/limit-set';
 import type { Phase, PhaseNames } from '../recording/phase';
+import type { ReportEquipment } from './equipment';
 import type { RevisionStatus } from './revision-status';
 
 /**
@@ -20,7 +21,10 @@ export interface ReportModel {
 	summary: string;
 	findings: string[];
 	actions: ReportAction[];
+	/** The survey's instrument; what reports made before `equipment` say of what was measured with. */
 	instrument: ReportInstrument | null;
+	/** Every instrument that a capture of the report was taken with; absent in reports made before it. */
+	equipment?: ReportEquipment[];
 	method: ReportMethod;
 	tables: ReportTable[];
 	spectra: ReportSpectrum[];

@@ -13,6 +13,7 @@ import { createMailboxService } from './services/mailbox.service';
 import { createPeopleService } from './services/people.service';
 import { createPracticeService } from './services/practice.service';
 import { createDeskService } from './services/desk.service';
+import { createCaptureInstrumentService } from './services/capture-instrument.service';
 import { createCalibrationsService } from './services/calibrations.service';
 import { createInstrumentsService } from './services/instruments.service';
 import { createSensorsService } from './services/sensors.service';
@@ -50,6 +51,7 @@ function buildServices(deps: ServiceDeps) {
 		instruments: createInstrumentsService(deps),
 		sensors: createSensorsService(deps),
 		calibrations: createCalibrationsService(deps),
+		captureInstrument: createCaptureInstrumentService(deps),
 		limitLibrary: createLimitLibraryService(deps),
 		account: createAccountService(deps),
 		invitations: createInvitationsService(deps),

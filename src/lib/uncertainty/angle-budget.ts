@@ -30,14 +30,18 @@ export interface Displacement {
  * from its magnetising current, which does not grow with the order, and is added as it is (common practice; assumption
  * of this product). A sensor without a class is taken for a transformer of the same ratio error.
  * load_A   rms current; null = not known, the lowest tabulated load is taken
- * returns  null where its class bounds no displacement
+ * returns  null where its class bounds no displacement and none was stated
  */
 export function displacementOf(
 	transducer: Transducer,
 	quantity: Quantity,
 	load_A: number | null
 ): Displacement | null {
-	const { role, kind, error_pct } = transducer;
+	const { role, kind, error_pct, phaseError_deg } = transducer;
+	// Stated at power frequency: what grows with the order is that much again, as a delay makes it.
+	if (phaseError_deg !== undefined && phaseError_deg !== null)
+		return { atFundamental_deg: phaseError_deg, perOrder_deg: phaseError_deg };
+	if (error_pct === null) return null;
 	// A data sheet's 3 % is no class 3: its displacement follows from its size, as that of 2.9 % does.
 	const byClass = role === 'transformer' || kind === 'current-transformer';
 	const atRated_min = byClass
@@ -74,7 +78,7 @@ export function angleBudget(chain: MeasuringChain, order: number, load_A: number
 	const add = (quantity: Quantity) => (transducer: Transducer) => {
 		const source = `${quantity}-${transducer.role}-angle` as const;
 		const found = displacementOf(transducer, quantity, load_A);
-		const within = responseError_pct(transducer.kind, order, chain.nominalFrequency_Hz) !== null;
+		const within = responseError_pct(transducer, order, chain.nominalFrequency_Hz) !== null;
 		if (found === null || !within) notKnown.push(source);
 		else lines.push(line(source, found.atFundamental_deg + found.perOrder_deg * (order - 1)));
 	};

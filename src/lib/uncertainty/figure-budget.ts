@@ -110,18 +110,20 @@ function transducerLines(
 	terms: readonly Term[],
 	transducer: Transducer
 ): { lines: Contribution[]; notKnown: ContributionSource[] } {
-	const { role, kind } = transducer;
+	const { role } = transducer;
 	const { value_pct, evidence } = figure;
-	const ratio = (ratioError_pct(transducer, evidence.load_A) / 100) * value_pct;
-	const lines = [bounded(ofReading(`${role}-ratio`, value_pct, ratio))];
-	const responseOf = (term: Term) => responseError_pct(kind, term.order, chain.nominalFrequency_Hz);
+	const ratio_pct = ratioError_pct(transducer, evidence.load_A);
+	const lines =
+		ratio_pct === null ? [] : [bounded(ofReading(`${role}-ratio`, value_pct, (ratio_pct / 100) * value_pct))];
+	const notKnown: ContributionSource[] = ratio_pct === null ? [`${role}-ratio`] : [];
+	const responseOf = (term: Term) => responseError_pct(transducer, term.order, chain.nominalFrequency_Hz);
 	const response = together(terms, (term) => (term.level_pct * (responseOf(term) ?? 0)) / 100);
 	if (response > 0) lines.push(bounded(ofReading(`${role}-response`, value_pct, response)));
 	const beyond = terms.filter((term) => responseOf(term) === null);
 	const share = beyond.reduce((sum, term) => sum + term.weight ** 2, 0);
-	if (share > MOST_BEYOND_REACH) return { lines, notKnown: [`${role}-response`] };
+	if (share > MOST_BEYOND_REACH) return { lines, notKnown: [...notKnown, `${role}-response`] };
 	if (share > 0) lines.push(bounded(ofReading(`${role}-beyond-reach`, value_pct, share * value_pct)));
-	return { lines, notKnown: [] };
+	return { lines, notKnown };
 }
 
 /**

@@ -12,6 +12,7 @@ export const TRANSDUCER_KINDS = [
 	'current-transformer',
 	'current-clamp',
 	'flexible-coil',
+	'shunt',
 	'not-known'
 ] as const;
 export type TransducerKind = (typeof TRANSDUCER_KINDS)[number];
@@ -21,12 +22,16 @@ export interface Transducer {
 	/** `transformer`: installed at the point; `sensor`: belongs to the recorder. */
 	role: 'transformer' | 'sensor';
 	kind: TransducerKind;
-	/** Greatest ratio error at power frequency and rated load, percent of reading: the class. */
-	error_pct: number;
+	/** Greatest ratio error at power frequency and rated load, percent of reading: the class. Null = not known. */
+	error_pct: number | null;
 	/** True when nobody stated the error and this one is taken instead. */
 	errorAssumed: boolean;
 	/** Rated primary current of a current transformer, A; null when not known or not a matter of current. */
 	ratedPrimary_A: number | null;
+	/** Greatest phase error at power frequency, degrees, where it was stated; else it follows from the class. */
+	phaseError_deg?: number | null;
+	/** Nothing is known of it above, where that was stated. */
+	highestFrequency_Hz?: number | null;
 }
 
 /** What a calibration certificate says about orders from … to of one quantity. */

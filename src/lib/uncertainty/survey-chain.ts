@@ -7,6 +7,16 @@ import type {
 	TransducerKind
 } from './measuring-chain';
 
+/** A sensor of the recorder as the register knows it. */
+export interface SensorInChain {
+	kind: TransducerKind;
+	/** Percent of reading; null = not known, and then no uncertainty is stated. */
+	error_pct: number | null;
+	phaseError_deg: number | null;
+	highestFrequency_Hz: number | null;
+	ratedPrimary_A: number | null;
+}
+
 /** What a register or a point file knows of a measuring chain; everything but the frequency may be missing. */
 export interface ChainFacts {
 	nominalFrequency_Hz: 50 | 60;
@@ -17,6 +27,11 @@ export interface ChainFacts {
 	currentSensorError_pct: number | null;
 	voltageSensorKind?: TransducerKind | null;
 	currentSensorKind?: TransducerKind | null;
+	/** Known sensors count before the two errors above; null = measured directly. */
+	voltageSensor?: SensorInChain | null;
+	currentSensor?: SensorInChain | null;
+	/** Primary value of the measuring range, A, where no transformer is installed. */
+	currentRange_A?: number | null;
 	/** Transformers installed at the point, by their rated primary values; null = none. */
 	voltageTransformerPrimary_V: number | null;
 	currentTransformerPrimary_A: number | null;
@@ -36,6 +51,23 @@ function sensor(error_pct: number | null, kind: TransducerKind | null | undefine
 	if (error_pct === null) return [];
 	return [
 		{ role: 'sensor', kind: kind ?? 'not-known', error_pct, errorAssumed: false, ratedPrimary_A: null }
+	];
+}
+
+/** What is not stated is left out, so that a chain reads as it did before anybody could state it. */
+function knownSensor(known: SensorInChain | null): Transducer[] {
+	if (known === null) return [];
+	const { kind, error_pct, phaseError_deg, highestFrequency_Hz, ratedPrimary_A } = known;
+	return [
+		{
+			role: 'sensor',
+			kind,
+			error_pct,
+			errorAssumed: false,
+			ratedPrimary_A,
+			...(phaseError_deg === null ? {} : { phaseError_deg }),
+			...(highestFrequency_Hz === null ? {} : { highestFrequency_Hz })
+		}
 	];
 }
 
@@ -67,15 +99,19 @@ export function chainOf(facts: ChainFacts): MeasuringChain {
 		certificate: facts.certificate ?? [],
 		voltageTransducers: [
 			...(primary_V === null ? [] : [transformer(voltageKind, facts.voltageTransformerClass, null)]),
-			...sensor(facts.voltageSensorError_pct, facts.voltageSensorKind)
+			...(facts.voltageSensor === undefined
+				? sensor(facts.voltageSensorError_pct, facts.voltageSensorKind)
+				: knownSensor(facts.voltageSensor))
 		],
 		currentTransducers: [
 			...(primary_A === null
 				? []
 				: [transformer('current-transformer', facts.currentTransformerClass, primary_A)]),
-			...sensor(facts.currentSensorError_pct, facts.currentSensorKind)
+			...(facts.currentSensor === undefined
+				? sensor(facts.currentSensorError_pct, facts.currentSensorKind)
+				: knownSensor(facts.currentSensor))
 		],
-		currentRange_A: primary_A,
+		currentRange_A: primary_A ?? facts.currentRange_A ?? null,
 		resolution: facts.resolution ?? null
 	};
 }

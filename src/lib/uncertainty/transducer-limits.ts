@@ -112,9 +112,13 @@ export function loadOf({ ratedPrimary_A }: Transducer, load_A: number | null): n
 	return load_A === null || ratedPrimary_A === null ? null : (100 * load_A) / ratedPrimary_A;
 }
 
-/** Bound of a transducer's ratio error at power frequency, percent of reading. load_A is the rms current; null = not known. */
-export function ratioError_pct(transducer: Transducer, load_A: number | null): number {
+/**
+ * Bound of a transducer's ratio error at power frequency, percent of reading. load_A is the rms current; null = not known.
+ * returns  null where nobody has stated its error
+ */
+export function ratioError_pct(transducer: Transducer, load_A: number | null): number | null {
 	const { kind, error_pct } = transducer;
+	if (error_pct === null) return null;
 	if (kind !== 'current-transformer') return error_pct;
 	return currentTransformerError_pct(error_pct, loadOf(transducer, load_A));
 }
@@ -140,15 +144,22 @@ export const RESPONSE: Record<TransducerKind, Response> = {
 	'current-transformer': { at50th_pct: 3, reach_Hz: Infinity },
 	'current-clamp': { at50th_pct: 3, reach_Hz: Infinity },
 	'flexible-coil': { at50th_pct: 1, reach_Hz: Infinity },
+	shunt: { at50th_pct: 1, reach_Hz: Infinity },
 	'not-known': { at50th_pct: 3, reach_Hz: Infinity }
 };
+
+/** Up to where something is known of a transducer: by its kind, or by what was stated where that is less. */
+export function reachOf_Hz({ kind, highestFrequency_Hz }: ResponseOf): number {
+	return Math.min(RESPONSE[kind].reach_Hz, highestFrequency_Hz ?? Infinity);
+}
+
+type ResponseOf = Pick<Transducer, 'kind' | 'highestFrequency_Hz'>;
 
 /**
  * Bound of what a transducer errs at an order beyond its class, percent of reading.
  * returns  null where it is not known
  */
-export function responseError_pct(kind: TransducerKind, order: number, nominal_Hz: 50 | 60): number | null {
-	const { at50th_pct, reach_Hz } = RESPONSE[kind];
-	if (order * nominal_Hz > reach_Hz) return null;
-	return (at50th_pct * (order - 1)) / 49;
+export function responseError_pct(transducer: ResponseOf, order: number, nominal_Hz: 50 | 60): number | null {
+	if (order * nominal_Hz > reachOf_Hz(transducer)) return null;
+	return (RESPONSE[transducer.kind].at50th_pct * (order - 1)) / 49;
 }

@@ -1,6 +1,7 @@
 import type { CaptureHandle } from '../../recording/capture-handle';
 import { captureFacts } from '../../recording/capture-facts';
 import { suggestMappings } from '../../recording/channel-suggestion';
+import type { MeasuringInstrument } from '../../recording/measuring-input';
 import { guessTable, type OpenedCapture } from '../../recording/read-capture';
 import { startToUtc_ms } from '../../recording/recording-start';
 import type { CaptureSurvey, StoredFacts } from '../read-models/capture-list';
@@ -11,11 +12,18 @@ export function startedAt(content: OpenedCapture, survey: Pick<CaptureSurvey, 't
 	return new Date(startToUtc_ms(content.start, survey.timeZone).utc_ms).toISOString();
 }
 
-/** What was recognised, with a suggestion for every channel or column. */
-export function factsOfContent(content: OpenedCapture, survey: Pick<CaptureSurvey, 'facts'>): StoredFacts {
+/**
+ * What was recognised, with a suggestion for every channel or column.
+ * instrument  what recorded it, for the ratios of its sensors; null = not known
+ */
+export function factsOfContent(
+	content: OpenedCapture,
+	survey: Pick<CaptureSurvey, 'facts'>,
+	instrument: MeasuringInstrument | null
+): StoredFacts {
 	return {
 		...captureFacts(content, survey.facts.nominalFrequency_Hz),
-		suggestions: suggestMappings(content, survey.facts)
+		suggestions: suggestMappings(content, survey.facts, instrument)
 	};
 }
 

@@ -3,6 +3,7 @@ import { parseToldLayout } from '../../recording/readers/delimited-text/table-la
 import { factsOfContent, startedAt } from '../analysis/recognised-facts';
 import { withTransaction } from '../db/database';
 import { captureSurvey } from '../read-models/capture-list';
+import { measuringInstrument } from '../read-models/measuring-instrument';
 import { capturesRepository } from '../repositories/captures.repository';
 import { openFileHandle, type FileHandle } from '../storage/file-handle';
 import { createScratchFolder, scratchRoot } from '../storage/scratch-folder';
@@ -32,7 +33,8 @@ export const handle: JobHandler = async (container, rawPayload, context) => {
 			throw new JobFailed(opened.problem.sentence);
 		}
 		const content = opened.value;
-		const facts = factsOfContent(content, survey);
+		const instrument = await measuringInstrument(db, context, capture.instrument_id ?? survey.instrumentId);
+		const facts = factsOfContent(content, survey, instrument);
 		await context.progress(1, 1, 'storing what was recognised');
 		await withTransaction(db, async (trx) => {
 			await capturesRepository(trx, context).update(

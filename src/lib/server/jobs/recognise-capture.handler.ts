@@ -7,6 +7,7 @@ import type { Container } from '../container';
 import { withTransaction, type Db } from '../db/database';
 import type { UploadRow } from '../db/rows';
 import { captureSurvey, type CaptureSurvey } from '../read-models/capture-list';
+import { instrumentNamedBy, measuringInstrument } from '../read-models/measuring-instrument';
 import { capturesRepository } from '../repositories/captures.repository';
 import { layoutTemplatesRepository } from '../repositories/layout-templates.repository';
 import { uploadsRepository } from '../repositories/uploads.repository';
@@ -58,7 +59,9 @@ async function addCapture(
 	{ key, title, content }: CapturePart<OpenedCapture>,
 	fitting: FittingTemplate | null
 ): Promise<void> {
-	const facts = factsOfContent(content, survey);
+	const namedInstrument = await instrumentNamedBy(trx, context, [content.recorderName, content.stationName]);
+	const instrument = await measuringInstrument(trx, context, namedInstrument ?? survey.instrumentId);
+	const facts = factsOfContent(content, survey, instrument);
 	if (fitting) facts.remarks = [fitting.remark, ...facts.remarks];
 	const id = await capturesRepository(trx, context).add({
 		capture: {
@@ -75,7 +78,9 @@ async function addCapture(
 			created_at: clock().toISOString(),
 			part_key: key,
 			layout_json: fitting ? JSON.stringify(fitting.layout) : null,
-			layout_template_id: fitting?.templateId ?? null
+			layout_template_id: fitting?.templateId ?? null,
+			// The survey's own needs no naming: it follows when the survey's is changed.
+			instrument_id: namedInstrument === survey.instrumentId ? null : namedInstrument
 		},
 		files: uploads.map(({ name, sha256, size_bytes }) => ({ name, sha256, size_bytes }))
 	});

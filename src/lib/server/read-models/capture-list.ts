@@ -25,10 +25,17 @@ export interface CaptureSurvey {
 	clientId: string;
 	number: string;
 	timeZone: string;
+	/** Named by the survey for all its captures; null = not decided. */
+	instrumentId: string | null;
 	facts: PointFacts;
 }
 
-type Joined = PointRow & { survey_id: string; survey_number: string; time_zone: string };
+type Joined = PointRow & {
+	survey_id: string;
+	survey_number: string;
+	survey_instrument: string | null;
+	time_zone: string;
+};
 
 export async function captureSurvey(db: Db, scope: Scope, surveyId: string): Promise<CaptureSurvey | null> {
 	const query = db('surveys')
@@ -41,6 +48,7 @@ export async function captureSurvey(db: Db, scope: Scope, surveyId: string): Pro
 		.select<Joined[]>('points.*', {
 			survey_id: 'surveys.id',
 			survey_number: 'surveys.number',
+			survey_instrument: 'surveys.instrument_id',
 			time_zone: 'sites.time_zone'
 		})
 		.first();
@@ -50,6 +58,7 @@ export async function captureSurvey(db: Db, scope: Scope, surveyId: string): Pro
 		clientId: row.client_id,
 		number: row.survey_number,
 		timeZone: row.time_zone,
+		instrumentId: row.survey_instrument,
 		facts: toPointFacts(row)
 	};
 }

@@ -1,9 +1,10 @@
 import type { Verdict } from '../../assessment/assessment';
 import { formatShortCalendarDate } from '../../report/dates';
 import type { Db } from '../db/database';
+import { calibrationsDue, type CalibrationDueList } from './calibration-due';
 
 export interface DeskItem {
-	kind: 'check' | 'returned' | 'query' | 'action' | 'unacknowledged' | 'confirm' | 'assess' | 'calibration';
+	kind: 'check' | 'returned' | 'query' | 'action' | 'unacknowledged' | 'confirm' | 'assess';
 	title: string;
 	detail: string;
 	href: string;
@@ -175,27 +176,6 @@ async function actionItems(db: Db, practiceId: string, today: string): Promise<D
 	}));
 }
 
-async function calibrationItems(db: Db, practiceId: string, dueBefore: string): Promise<DeskItem[]> {
-	const rows = await db('instruments as i')
-		.join('calibrations as k', 'k.instrument_id', 'i.id')
-		.where('i.practice_id', practiceId)
-		.whereNull('i.archived_at')
-		.groupBy('i.id', 'i.name')
-		.havingRaw('max(k.due_on) < ?', [dueBefore])
-		.select<{ id: string; name: string; due_on: string }[]>(
-			'i.id',
-			'i.name',
-			db.raw('max(k.due_on) as due_on')
-		);
-	return rows.map((i) => ({
-		kind: 'calibration',
-		title: `Calibration due: ${i.name}`,
-		detail: `due ${formatShortCalendarDate(i.due_on)}`,
-		href: `/instruments/${i.id}`,
-		since: i.due_on
-	}));
-}
-
 const DAY_MS = 86_400_000;
 
 /** What needs this person today, the oldest first, and the surveys worked on last. */
@@ -204,18 +184,13 @@ export async function desk(
 	practiceId: string,
 	person: { userId: string; mayCheck: boolean },
 	now: Date
-): Promise<{ items: DeskItem[]; surveys: DeskSurvey[] }> {
+): Promise<{ items: DeskItem[]; surveys: DeskSurvey[]; calibrations: CalibrationDueList }> {
 	const today = now.toISOString().slice(0, 10);
 	const items = [
 		...(await reportItems(db, practiceId, person)),
 		...(await queryItems(db, practiceId)),
 		...(await actionItems(db, practiceId, today)),
-		...(await unacknowledgedItems(db, practiceId, new Date(now.getTime() - 7 * DAY_MS).toISOString())),
-		...(await calibrationItems(
-			db,
-			practiceId,
-			new Date(now.getTime() + 60 * DAY_MS).toISOString().slice(0, 10)
-		))
+		...(await unacknowledgedItems(db, practiceId, new Date(now.getTime() - 7 * DAY_MS).toISOString()))
 	].sort((a, b) => a.since.localeCompare(b.since));
 	const surveys = await db('surveys as s')
 		.join('clients as c', 'c.id', 's.client_id')
@@ -233,5 +208,5 @@ export async function desk(
 			verdict: 'a.verdict',
 			updatedAt: 's.updated_at'
 		});
-	return { items, surveys };
+	return { items, surveys, calibrations: await calibrationsDue(db, practiceId, today) };
 }

@@ -19,7 +19,9 @@ export interface NewCapture {
 		| 'pyramid_sha256'
 		| 'pyramid_json'
 	> &
-		Partial<Pick<CaptureRow, 'status' | 'problem' | 'layout_json' | 'layout_template_id'>>;
+		Partial<
+			Pick<CaptureRow, 'status' | 'problem' | 'layout_json' | 'layout_template_id' | 'instrument_id'>
+		>;
 	files: { name: string; sha256: string; size_bytes: number }[];
 }
 
@@ -90,6 +92,7 @@ export function capturesRepository(db: Db, scope: Scope) {
 					| 'removed_at'
 					| 'layout_json'
 					| 'layout_template_id'
+					| 'instrument_id'
 				>
 			>,
 			now: Date

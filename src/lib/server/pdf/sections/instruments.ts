@@ -2,6 +2,7 @@ import type { Content } from 'pdfmake/interfaces';
 import { formatCalendarDate } from '../../../report/dates';
 import { formatNumber } from '../../../units/format';
 import type { SheetContext } from '../sheet-context';
+import { equipmentPart } from './equipment';
 import { facts, heading, paragraph, ruledTable, soft } from '../typeset';
 
 function calibrationStatement(context: SheetContext): string {
@@ -15,7 +16,7 @@ function calibrationStatement(context: SheetContext): string {
 }
 
 export function instrumentsSection(context: SheetContext): Content[] {
-	const { instrument, method } = context.model;
+	const { instrument, equipment, method, site } = context.model;
 	const uncertainty: Content[] = [
 		...heading('Measurement uncertainty'),
 		paragraph(method.uncertaintyText),
@@ -41,6 +42,8 @@ export function instrumentsSection(context: SheetContext): Content[] {
 					)
 				])
 	];
+	if (equipment !== undefined && equipment.length > 0)
+		return [...equipment.flatMap((one) => equipmentPart(one, site.timeZone)), ...uncertainty];
 	if (instrument === null)
 		return [
 			paragraph(

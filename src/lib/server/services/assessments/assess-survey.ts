@@ -15,7 +15,7 @@ import {
 	type StoredAssessment
 } from '../../repositories/assessments.repository';
 import { surveyChain } from '../../read-models/survey-chain';
-import { instrumentsRepository } from '../../repositories/instruments.repository';
+import { analysedCaptures, surveyEquipment } from '../../read-models/survey-equipment';
 import { limitSetsRepository } from '../../repositories/limit-sets.repository';
 import { toPointFacts } from '../../repositories/point-mapping';
 import { pointsRepository } from '../../repositories/points.repository';
@@ -74,12 +74,13 @@ export async function prepareAssessment(
 	const chosen = await limitSetOfPoint(db, scope, facts, site.time_zone);
 	const gathered = await seriesForSurvey(db, scope, surveyId);
 	if (chosen === null || gathered.series.length === 0) return null;
-	const instrument =
-		survey.instrument_id === null
-			? null
-			: ((await instrumentsRepository(db, scope).byId(survey.instrument_id)) ?? null);
-	const measuringChain = surveyChain(instrument, pointRow);
-	const uncertainty = surveyUncertainty(instrument, measuringChain);
+	const captures = await analysedCaptures(db, scope, surveyId);
+	const equipment = await surveyEquipment(db, scope, surveyId, captures);
+	const measuringChain = surveyChain(equipment, pointRow);
+	const uncertainty = surveyUncertainty(
+		equipment.map((one) => one.instrument),
+		measuringChain
+	);
 	const point = toAssessedPoint(facts);
 	const assessment = assess({
 		point,

@@ -30,6 +30,7 @@ import { toPointFacts } from '../../repositories/point-mapping';
 import { reportsRepository } from '../../repositories/reports.repository';
 import type { Scope } from '../../repositories/scope';
 import type { BlobStore } from '../../storage/blob-store';
+import { equipmentOf } from './report-equipment';
 import { qualityOf, trendsOf, waveformOf, type AnalysedCapture } from './report-evidence';
 
 /** How the revision stands in the document made now: as it is, or as it will be once issued. */
@@ -309,6 +310,13 @@ export async function gatherReport(
 				dueOn: action.due_on
 			})),
 			instrument: await instrumentOf(db, scope, input.instrumentId, period),
+			equipment: await equipmentOf(
+				db,
+				scope,
+				survey.id,
+				behind.map((one) => one.capture),
+				site.time_zone
+			),
 			waveform: await waveformOf(blobs, analysed, assessment, input, table, facts.phaseNames),
 			trends: trendsOf(analysed, assessment, input, table),
 			quality: qualityOf(analysed, remarks),

@@ -32,6 +32,11 @@ export const load = guard('capture.read', async (event: PageServerLoadEvent, act
 		isConfirmed: detail.capture.settings !== null,
 		jobs: detail.jobs,
 		lines: linesOf(detail),
+		recordedWith: await container().services.captureInstrument.of(
+			actor,
+			event.params.survey,
+			event.params.capture
+		),
 		scaling: scalingOf(facts.format),
 		start: startText(facts.start, detail.capture.startedAt, detail.survey.timeZone)
 	};
@@ -67,6 +72,18 @@ export const actions = {
 			startedAt: start.value
 		});
 		redirect(303, `/surveys/${surveyId}/captures/${captureId}`);
+	}),
+
+	instrument: guard('capture.write', async (event: RequestEvent, actor) => {
+		const { survey, capture } = event.params;
+		const chosen = String((await event.request.formData()).get('instrument') ?? '');
+		await container().services.captureInstrument.choose(
+			actor,
+			survey,
+			capture,
+			chosen === '' ? null : chosen
+		);
+		redirect(303, `/surveys/${survey}/captures/${capture}`);
 	}),
 
 	remove: guard('capture.write', async (event: RequestEvent, actor) => {
