@@ -19,9 +19,7 @@ export interface NewCapture {
 		| 'pyramid_sha256'
 		| 'pyramid_json'
 	> &
-		Partial<
-			Pick<CaptureRow, 'status' | 'problem' | 'layout_json' | 'layout_template_id' | 'instrument_id'>
-		>;
+		Partial<Pick<CaptureRow, 'status' | 'problem' | 'layout_json' | 'layout_template_id' | 'instrument_id'>>;
 	files: { name: string; sha256: string; size_bytes: number }[];
 }
 
