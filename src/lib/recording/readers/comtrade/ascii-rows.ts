@@ -78,6 +78,7 @@ export class AsciiRows {
 	private readonly minimum: Float64Array;
 	private readonly maximum: Float64Array;
 	private afterCr = false;
+	private plainValues = 0;
 	private taken_bytes = 0;
 
 	/** firstLine  number of the first line inside its file */
@@ -198,7 +199,46 @@ export class AsciiRows {
 			}
 			field++;
 			from = at + 1;
+			if (field !== 2) continue;
+			from = this.takePlainValues(bytes, from);
+			field += this.plainValues;
 		}
+	}
+
+	/**
+	 * Values as nearly all of them are: integers within the limits of their channel, each with a separator behind it. Takes
+	 * them up to the first other one, which is left to the general way, and returns where that begins.
+	 */
+	private takePlainValues(bytes: Uint8Array, start: number): number {
+		const { channelCount, values, minimum, maximum, a, b, times, over } = this;
+		const base = this.collectedRows * channelCount;
+		let from = start;
+		let channel = 0;
+		for (; channel < channelCount; channel++) {
+			let at = from;
+			let byte = bytes[at] as number;
+			while (byte === BLANK) byte = bytes[++at] as number;
+			const isNegative = byte === DASH;
+			if (isNegative) byte = bytes[++at] as number;
+			const digitsFrom = at;
+			let raw = 0;
+			while (byte >= ZERO && byte <= ZERO + 9) {
+				raw = raw * 10 + (byte - ZERO);
+				byte = bytes[++at] as number;
+			}
+			const digits = at - digitsFrom;
+			if (byte !== COMMA || digits === 0 || digits > EXACT_DIGITS) break;
+			if (isNegative) raw = -raw;
+			if (!(raw >= minimum[channel]! && raw <= maximum[channel]!)) break;
+			const scaled = a[channel]! * raw + b[channel]!;
+			const divisor = over[channel]!;
+			const value = divisor === 1 ? scaled * times[channel]! : scaled / divisor;
+			if (!Number.isFinite(value)) break;
+			values[base + channel] = value;
+			from = at + 1;
+		}
+		this.plainValues = channel;
+		return from;
 	}
 
 	private takeNumber(bytes: Uint8Array, from: number, field: number): number {
