@@ -4,7 +4,7 @@ import { fileURLToPath } from 'node:url';
 import { describe, expect, it } from 'vitest';
 import { groupCaptureFiles } from '$lib/recording/group-capture-files';
 import { readCapture } from '$lib/recording/read-capture';
-import { captureFixtures } from '$lib/synthesis/capture-fixtures';
+import { captureFixtures, WAV_FULL_SCALE } from '$lib/synthesis/capture-fixtures';
 
 const folder = fileURLToPath(new URL('../../fixtures/captures/', import.meta.url));
 const onDisk = (name: string) => new Uint8Array(readFileSync(join(folder, name)));
@@ -15,7 +15,9 @@ describe('the captures kept as fixtures', () => {
 			expect(Buffer.compare(onDisk(name), bytes), name).toBe(0);
 	});
 
-	const groups = groupCaptureFiles(readdirSync(folder).filter((name) => /\.(cfg|dat|cff|csv)$/.test(name)));
+	const groups = groupCaptureFiles(
+		readdirSync(folder).filter((name) => /\.(cfg|dat|cff|csv)$/.test(name) && !name.includes('status'))
+	);
 
 	it.each(groups.map((group) => [group.join(' + '), group] as const))(
 		'%s is read without remark',
@@ -47,4 +49,34 @@ describe('the captures kept as fixtures', () => {
 			}
 		}
 	);
+
+	const readOne = (name: string) => {
+		const result = readCapture([{ name, bytes: onDisk(name) }]);
+		if (!result.ok || result.value.kind !== 'waveform') throw new Error('not read');
+		return result.value;
+	};
+
+	it('four-wire-24-bit.wav holds the samples of the others as parts of full scale', () => {
+		const wave = readOne('four-wire-24-bit.wav');
+		const reference = readOne('four-wire-2013-float32.cff');
+		expect(wave.start?.local).toBe('2024-03-05T10:20:30.000000');
+		for (const [c, channel] of reference.channels.entries()) {
+			const fullScale = channel.quantity === 'voltage' ? WAV_FULL_SCALE.voltage_V : WAV_FULL_SCALE.current_A;
+			for (const [i, value] of channel.samples.entries())
+				// Half a step of 24 bits, and the rounding of the single-precision reference.
+				expect(Math.abs(wave.channels[c]!.samples[i]! * fullScale - value)).toBeLessThan(
+					fullScale * 2 ** -23
+				);
+		}
+	});
+
+	it('four-wire-2013-status.cff tells its switching, its notes and its clock', () => {
+		const recording = readOne('four-wire-2013-status.cff');
+		expect(recording.statusActivity?.map(({ changeCount }) => changeCount)).toEqual([0, 1]);
+		expect(recording.notes?.[0]?.text).toContain('switched in after 0.1 s');
+		expect(recording.remarks.map(({ sentence }) => sentence)).toEqual([
+			'four-wire-2013-status.cff, line 20: the recorder’s clock had lost its time source and was within 100 µs of it (quality 6).',
+			'four-wire-2013-status.cff: of 2 status channels one changed: Capacitor step 2 once after 0.1 s (sample 385, to 1).'
+		]);
+	});
 });

@@ -1,6 +1,7 @@
 import type { CaptureFile, TrendSeries } from '../recording/recording';
 import { writeComtrade } from './comtrade-writer';
 import type { WaveformChannelToWrite, WaveformToWrite } from './comtrade-writer-header';
+import { writeWav } from './wav-writer';
 import { writeDelimitedTrend, writeDelimitedWaveform, type TrendToWrite } from './delimited-text-writer';
 
 /** Peak of the fundamental and percent of it at the orders of a six-pulse spectrum, rounded. */
@@ -92,6 +93,55 @@ function dayOfTrend(): TrendToWrite {
 	};
 }
 
+/** What 1.0 means in the channels of the WAV fixture. */
+export const WAV_FULL_SCALE = { voltage_V: 500, current_A: 800 };
+
+/** The same six channels as parts of full scale, with texts and a start. */
+function soundFixture(waveform: WaveformToWrite): CaptureFile {
+	return writeWav(
+		{
+			samplingRate_Hz: waveform.segments[0]!.samplingRate_Hz,
+			channels: waveform.channels.map(({ samples: values, unitAsWritten }) => {
+				const fullScale = unitAsWritten === 'V' ? WAV_FULL_SCALE.voltage_V : WAV_FULL_SCALE.current_A;
+				return values.map((value) => value / fullScale);
+			})
+		},
+		{
+			stem: 'four-wire-24-bit',
+			samples: 'int24',
+			extensible: true,
+			strangeChunks: true,
+			info: {
+				ICMT: 'Channels 1 to 3: voltage, 500 V full scale. Channels 4 to 6: current, 800 A full scale.'
+			},
+			broadcast: { description: 'Fixture', originator: 'Fixture', local: '2024-03-05T10:20:30.000000' }
+		}
+	);
+}
+
+/** The same as a combined ASCII file with status channels, notes and a clock that had lost its source. */
+function statusFixture(waveform: WaveformToWrite): CaptureFile[] {
+	return writeComtrade(
+		{
+			...waveform,
+			statusChannelNames: ['Breaker closed', 'Capacitor step 2'],
+			statusStates: [
+				new Uint8Array(waveform.sampleCount).fill(1),
+				Uint8Array.from({ length: waveform.sampleCount }, (_, n) => (n >= 384 ? 1 : 0))
+			],
+			normalStates: [1, 0]
+		},
+		{
+			revision: '2013',
+			dataFormat: 'ASCII',
+			stem: 'four-wire-2013-status',
+			combined: true,
+			clock: { localOffset_min: -300, quality: '6', leapSecond: 0 },
+			notes: { hdr: 'Step 2 of the capacitor bank is switched in after 0.1 s.' }
+		}
+	);
+}
+
 /** The small captures kept under fixtures/captures, made anew from their known truth. */
 export function captureFixtures(): CaptureFile[] {
 	const waveform = fourWireCapture();
@@ -104,6 +154,8 @@ export function captureFixtures(): CaptureFile[] {
 			stem: 'four-wire-2013-float32',
 			combined: true
 		}),
+		...statusFixture(waveform),
+		soundFixture(waveform),
 		writeDelimitedWaveform(waveform, {
 			stem: 'four-wire-decimal-comma',
 			separator: ';',
