@@ -87,7 +87,9 @@ const results = {
 	copy: best_s(() => copied.set(bytes))
 };
 const speed = (seconds: number) => `${(bytes.length / 1e6 / seconds).toFixed(0)} MB/s`;
-console.log(`${(bytes.length / 1e6).toFixed(0)} MB of ASCII samples, ${CHANNELS} channels, best of ${TURNS} turns`);
+console.log(
+	`${(bytes.length / 1e6).toFixed(0)} MB of ASCII samples, ${CHANNELS} channels, best of ${TURNS} turns`
+);
 console.log(`reader              ${speed(results.reader)}`);
 console.log(
 	`split and Number    ${speed(results.split)}   the reader is ${(results.split / results.reader).toFixed(1)} times as fast`
