@@ -14,6 +14,8 @@ import type { UncertaintyStatement } from './assessment';
 
 /** The order that the statement speaks for. */
 const TYPICAL_ORDER = 5;
+/** No limit set judges higher ones: a reach beyond them needs no word. */
+const HIGHEST_JUDGED_ORDER = 50;
 /** From so much above 95 % on, the coverage is told: the bound of one source then dominates. */
 const TOLD_FROM = INTENDED_COVERAGE + 0.015;
 
@@ -66,6 +68,7 @@ function reachWords(chain: MeasuringChain, quantity: Quantity): string {
 	const reach_Hz = Math.min(...transducers.map(reachOf_Hz));
 	if (!Number.isFinite(reach_Hz)) return '';
 	const order = Math.max(1, Math.floor(reach_Hz / chain.nominalFrequency_Hz));
+	if (order >= HIGHEST_JUDGED_ORDER) return '';
 	const what = transducers.some(
 		(transducer) => transducer.role === 'transformer' && reachOf_Hz(transducer) === reach_Hz
 	)

@@ -92,12 +92,12 @@ function certificatesTable(
 ): Content {
 	return ruledTable(
 		[
-			{ head: 'Of', width: 86 },
-			{ head: 'Certificate', width: 82, mono: true },
+			{ head: 'Of', width: 72 },
+			{ head: 'Certificate', width: 66, mono: true },
 			{ head: 'Laboratory', width: '*' },
-			{ head: 'Calibrated', width: 78 },
-			{ head: 'Due', width: 78 },
-			{ head: 'At the captures', width: 76 }
+			{ head: 'Calibrated', width: 70 },
+			{ head: 'Due', width: 70 },
+			{ head: 'At the captures', width: 64 }
 		],
 		subjects.flatMap(({ name, certificates, validity }) =>
 			certificates.length === 0
