@@ -112,15 +112,15 @@ function trendFacts(trend: Trend): CaptureFacts {
 			unitAsWritten: series.unit === 'percent-of-fundamental' ? '%' : series.unit,
 			quantity: series.quantity,
 			phaseHint: series.phaseHint,
-			valuesAre: 'unknown',
-			ratio: null,
+			valuesAre: series.valuesAre ?? 'unknown',
+			ratio: series.ratio ?? null,
 			missingCount: missingIn(series.values)
 		})),
 		samplingRate_Hz: null,
 		interval_s: trend.interval_s,
 		sampleCount: intervals.length,
 		duration_s: last_s === undefined ? 0 : last_s + trend.interval_s,
-		valuesAre: 'unknown',
+		valuesAre: sideOfAll(trend.series.map(({ valuesAre }) => ({ valuesAre: valuesAre ?? 'unknown' }))),
 		highestOrder: orders.length === 0 ? null : Math.max(...orders)
 	};
 }
@@ -150,7 +150,7 @@ function missingIn(values: Float64Array): number {
 	return missing;
 }
 
-function sideOfAll(channels: readonly SourceChannel[]): CaptureFacts['valuesAre'] {
+function sideOfAll(channels: readonly Pick<SourceChannel, 'valuesAre'>[]): CaptureFacts['valuesAre'] {
 	const sides = new Set(channels.map(({ valuesAre }) => valuesAre));
 	const [only] = sides;
 	return sides.size === 1 && only !== undefined ? only : 'mixed';

@@ -41,8 +41,9 @@ export function suggestMappings(
 	point: SuggestionPoint,
 	instrument: MeasuringInstrument | null = null
 ): MappingSuggestion[] {
+	const taken = new Map<string, string>();
 	if (content.kind === 'trend')
-		return content.series.map((series, index) => suggestSeries(series, index, point));
+		return content.series.map((series, index) => suggestSeries(series, index, point, taken));
 	return suggestChannels(content.channels, content.format, point, instrument);
 }
 
@@ -250,7 +251,7 @@ function factorByInput(
 
 /** Primary values need no factor; secondary ones need the file's ratio, or else the point's. */
 function factorToPrimary(
-	channel: SuggestedChannel,
+	channel: Pick<SuggestedChannel, 'valuesAre' | 'ratio'>,
 	quantity: 'voltage' | 'current',
 	point: SuggestionPoint
 ): Factor {
@@ -278,18 +279,43 @@ function factorToPrimary(
 	return { toPrimary: 1, isStated: false, reason: `${open}; they were taken as primary. Check this.` };
 }
 
-function suggestSeries(series: TrendSeries, index: number, point: SuggestionPoint): MappingSuggestion {
+function suggestSeries(
+	series: TrendSeries,
+	index: number,
+	point: SuggestionPoint,
+	taken: Map<string, string>
+): MappingSuggestion {
 	if (series.measure.kind === 'frequency')
 		return leftOut(index, 'The frequency belongs to all conductors and needs no mapping.');
 	const phase = series.phaseHint ?? singlePhase(point);
 	if (phase === null) return leftOut(index, `The heading “${series.name}” does not tell the conductor.`);
 	const misfit = misfitReason(series.quantity, phase, point);
 	if (misfit !== null) return leftOut(index, misfit);
+	const { measure } = series;
+	const figure = measure.kind === 'order' ? `order ${measure.order}` : measure.kind;
+	const key = `${series.quantity} ${phase} ${figure}`;
+	const earlier = taken.get(key);
+	if (earlier !== undefined)
+		return leftOut(
+			index,
+			`“${earlier}” already gives this figure of ${formatPhase(phase, point.phaseNames)}.`
+		);
+	taken.set(key, series.name);
+	const isAbsolute = series.unit === 'V' || series.unit === 'A';
+	const { valuesAre } = series;
+	const factor =
+		valuesAre === undefined || !isAbsolute
+			? null
+			: factorToPrimary({ valuesAre, ratio: series.ratio ?? null }, series.quantity, point);
+	const side = !isAbsolute
+		? 'Percentages need no factor.'
+		: (factor?.reason ??
+			'A log does not say whether its values are primary; they were taken as primary. Check this.');
 	return {
 		channelIndex: index,
-		mapping: { quantity: series.quantity, phase, toPrimary: 1 },
-		confidence: 'likely',
-		reason: `The heading “${series.name}” says ${series.quantity} of ${formatPhase(phase, point.phaseNames)}. A log does not say whether its values are primary; they were taken as primary. Check this.`
+		mapping: { quantity: series.quantity, phase, toPrimary: factor?.toPrimary ?? 1 },
+		confidence: factor?.isStated && series.phaseHint !== null ? 'stated' : 'likely',
+		reason: `The heading “${series.name}” says ${series.quantity} of ${formatPhase(phase, point.phaseNames)}. ${side}`
 	};
 }
 

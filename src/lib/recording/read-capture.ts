@@ -12,6 +12,8 @@ import {
 	readDelimitedText,
 	type DelimitedTextOptions
 } from './readers/delimited-text/read-delimited-text';
+import { openPqdif } from './readers/pqdif/open-pqdif';
+import { looksLikePqdif } from './readers/pqdif/record-chain';
 import { refuse } from './readers/read-problem';
 import { openWav } from './readers/wav/read-wav';
 import type { CaptureContent, CaptureFile, CapturePart, ReadProblem, Trend } from './recording';
@@ -26,7 +28,6 @@ const OTHER_FORMATS: { bytes: number[]; words: string }[] = [
 	},
 	{ bytes: [0xd0, 0xcf, 0x11, 0xe0], words: 'an office document; save the table as CSV' },
 	{ bytes: [0x25, 0x50, 0x44, 0x46], words: 'a PDF document; export the samples as COMTRADE or CSV' },
-	{ bytes: [0x40, 0x14, 0x11, 0x4a], words: 'a PQDIF file; export the samples as COMTRADE or CSV' },
 	{ bytes: [0x1f, 0x8b], words: 'a gzip archive; unpack it' },
 	{ bytes: [0x89, 0x50, 0x4e, 0x47], words: 'a picture; upload the samples themselves' },
 	{ bytes: [0xff, 0xd8, 0xff], words: 'a picture; upload the samples themselves' }
@@ -42,6 +43,8 @@ export function readCapture(
 ): Result<CaptureContent, ReadProblem> {
 	const waveform = openWaveform(files.map(handleOf), memoryScratch());
 	if (waveform !== null) return waveform.ok ? ok(loadSamples(waveform.value)) : waveform;
+	const pqdif = openOnePqdif(files.map(handleOf), {});
+	if (pqdif !== null) return pqdif.ok ? ok(firstContent(pqdif.value)) : pqdif;
 	return refusalOf(files.map(headOfBytes)) ?? readDelimitedText(files, options);
 }
 
@@ -78,7 +81,7 @@ function refusalOf(heads: readonly FileHead[]): Result<never, ReadProblem> | nul
 				'format-not-read',
 				head.name,
 				'byte 0',
-				`${head.name} begins (byte 0) like ${other.words}. COMTRADE (CFG with DAT, or CFF), WAV or delimited text was expected.`
+				`${head.name} begins (byte 0) like ${other.words}. COMTRADE (CFG with DAT, or CFF), PQDIF, WAV or delimited text was expected.`
 			);
 	}
 	return null;
@@ -102,6 +105,8 @@ export function openCaptureParts(
 	files: readonly CaptureHandle[],
 	options: OpenOptions = {}
 ): Result<CapturePart<OpenedCapture>[], ReadProblem> {
+	const pqdif = openOnePqdif(files, options);
+	if (pqdif !== null) return pqdif;
 	const single = openSingle(files, options);
 	return single.ok ? ok([{ key: '', title: '', content: single.value }]) : single;
 }
@@ -124,6 +129,21 @@ export function openCapture(
 		null,
 		`${name} no longer yields the part “${wanted ?? ''}” that this capture was made from. Upload the file again.`
 	);
+}
+
+/** The parts of a PQDIF file, which always comes alone; null for any other. */
+function openOnePqdif(
+	[only, ...others]: readonly CaptureHandle[],
+	{ scratch, part }: OpenOptions
+): ReturnType<typeof openPqdif> {
+	if (only === undefined || others.length > 0) return null;
+	return openPqdif(only, scratch ?? memoryScratch(), part);
+}
+
+/** The first part in memory. */
+function firstContent([first]: readonly CapturePart<OpenedCapture>[]): CaptureContent {
+	const { content } = first!;
+	return content.kind === 'trend' ? content : loadSamples(content);
 }
 
 /** Formats whose samples are rows of bytes, in their file or in scratch; null for any other. */
@@ -162,6 +182,6 @@ function isTableByName({ name, bytes }: FileHead): boolean {
 /** How a table of text seems to be written, with its headings; null for files of other formats. */
 export function guessTable(files: readonly CaptureHandle[]): (LayoutGuess & { headings: string[] }) | null {
 	const [first] = files;
-	if (first === undefined || sortComtradeFiles(files) !== null) return null;
+	if (first === undefined || sortComtradeFiles(files) !== null || looksLikePqdif(first)) return null;
 	return refusalOf(files.map(headOfHandle)) === null ? guessTableOf(first) : null;
 }

@@ -124,6 +124,10 @@ export interface TrendSeries {
 	unit: 'V' | 'A' | 'Hz' | 'percent-of-fundamental';
 	/** [intervalCount]; NaN marks no data. */
 	values: Float64Array;
+	/** Side of the instrument transformer that absolute values stand on, where the log states it. */
+	valuesAre?: RecordingChannel['valuesAre'];
+	/** Transformer ratio, where the log states one. */
+	ratio?: RecordingChannel['ratio'];
 }
 
 /** The one shape that leaves a reader of trend logs: values per interval over hours or days. */
