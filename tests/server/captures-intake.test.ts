@@ -1,6 +1,6 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Actor } from '$lib/access/access';
-import { cleanFileName } from '$lib/server/services/uploads.service';
+import { cleanFileName } from '$lib/server/services/intake/file-name';
 import { openWorld, personOf, practiceWithOwner, type World } from '../support/practice-world';
 import { bodyOf, comtradeCapture, onlyCapture, surveyAtPoint, upload, workOff } from './captures-world';
 

@@ -5,6 +5,7 @@ export type JobHandler = (container: Container, payload: unknown, context: JobCo
 
 /** Kind → handler, loaded when first needed: the web process never pays for what only the worker runs. */
 export const JOB_HANDLERS: Record<string, () => Promise<JobHandler>> = {
+	'unpack-archive': async () => (await import('./unpack-archive.handler')).handle,
 	'recognise-capture': async () => (await import('./recognise-capture.handler')).handle,
 	'read-table': async () => (await import('./read-table.handler')).handle,
 	'analyse-capture': async () => (await import('./analyse-capture.handler')).handle,

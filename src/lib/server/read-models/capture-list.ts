@@ -9,6 +9,7 @@ import { analyseCapture } from '../jobs/analyse-capture.job';
 import type { JobState } from '../jobs/job-queue';
 import { readTable } from '../jobs/read-table.job';
 import { recogniseCapture } from '../jobs/recognise-capture.job';
+import { unpackArchiveJob } from '../jobs/unpack-archive.job';
 import { toPointFacts } from '../repositories/point-mapping';
 import type { Scope } from '../repositories/scope';
 import { likePattern, type ListPage, type ListQuery } from './list-query';
@@ -237,20 +238,19 @@ export interface SurveyJob extends JobState {
 	captureId: string | null;
 }
 
-/** Work in hand for a survey's captures, and what failed a moment ago: a reload finds both again. */
+/** Work in hand for a survey's captures, and what failed or was done in part a moment ago: a reload finds both again. */
 export async function surveyJobs(db: Db, scope: Scope, surveyId: string, now: Date): Promise<SurveyJob[]> {
 	const rows = await db('jobs')
 		.where('jobs.practice_id', scope.practiceId)
-		.whereIn('jobs.kind', [recogniseCapture.kind, readTable.kind, analyseCapture.kind])
+		.whereIn('jobs.kind', [unpackArchiveJob.kind, recogniseCapture.kind, readTable.kind, analyseCapture.kind])
 		.whereRaw(`json_extract(jobs.payload_json, '$.surveyId') = ?`, [surveyId])
 		.andWhere((recent) =>
-			recent
-				.whereIn('jobs.status', ['queued', 'running'])
-				.orWhere((failed) =>
-					failed
-						.where('jobs.status', 'failed')
-						.where('jobs.finished_at', '>', new Date(now.getTime() - NEWS_MS).toISOString())
-				)
+			recent.whereIn('jobs.status', ['queued', 'running']).orWhere((ended) =>
+				ended
+					.whereIn('jobs.status', ['failed', 'done'])
+					.whereNotNull('jobs.problem')
+					.where('jobs.finished_at', '>', new Date(now.getTime() - NEWS_MS).toISOString())
+			)
 		)
 		.leftJoin('captures', 'captures.id', db.raw(`json_extract(jobs.payload_json, '$.captureId')`))
 		.orderBy('jobs.created_at')

@@ -10,6 +10,7 @@ import { analyseCapture } from '../jobs/analyse-capture.job';
 import { assessSurvey } from '../jobs/assess-survey.job';
 import type { JobState } from '../jobs/job-queue';
 import { recogniseCapture } from '../jobs/recognise-capture.job';
+import { unpackArchiveJob } from '../jobs/unpack-archive.job';
 import {
 	captureDetail,
 	captureList,
@@ -232,6 +233,8 @@ export function createCapturesService(deps: ServiceDeps) {
 		const row = await db('jobs').where({ id: jobId, practice_id: actor.practiceId }).first();
 		if (!row) return;
 		const payload: unknown = JSON.parse(row.payload_json);
+		if (row.kind === unpackArchiveJob.kind)
+			await uploadsRepository(db, scope).remove([unpackArchiveJob.payload.parse(payload).uploadId]);
 		if (row.kind === recogniseCapture.kind)
 			await uploadsRepository(db, scope).remove(recogniseCapture.payload.parse(payload).uploadIds);
 		if (row.kind === analyseCapture.kind) {

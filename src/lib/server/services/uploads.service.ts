@@ -1,54 +1,26 @@
 import { Readable } from 'node:stream';
 import type { ReadableStream as WebReadableStream } from 'node:stream/web';
 import type { Actor } from '../../access/access';
-import { groupCaptureFiles, incompleteGroupSentence } from '../../recording/group-capture-files';
 import { AppError, requireFound } from '../app-error';
 import { appendAudit } from '../audit/audit-log';
 import { requirePermission } from '../auth/require-permission';
-import { withTransaction, type Db } from '../db/database';
-import type { UploadRow } from '../db/rows';
-import { recogniseCapture } from '../jobs/recognise-capture.job';
+import { withTransaction } from '../db/database';
 import { captureSurvey } from '../read-models/capture-list';
-import { capturesRepository } from '../repositories/captures.repository';
 import { scopeOf } from '../repositories/scope';
 import { storedFilesRepository } from '../repositories/stored-files.repository';
 import { uploadsRepository } from '../repositories/uploads.repository';
 import type { ServiceDeps } from '../service-deps';
 import { BlobTooLarge } from '../storage/blob-store';
+import { cleanFileName } from './intake/file-name';
+import { sortIntoCaptures, type IntakeOutcome } from './intake/sort-into-captures';
 
 const FORGOTTEN_AFTER_MS = 24 * 3600_000;
-const LONGEST_NAME = 200;
 
 export interface ReceivedUpload {
 	id: string;
 	name: string;
 	size_bytes: number;
 	sha256: string;
-}
-
-/** What became of the files handed in together. */
-export interface IntakeOutcome {
-	/** One job per set of files that belongs together. */
-	jobs: { jobId: string; name: string; files: string[] }[];
-	/** Files that cannot become a capture, each with a sentence that says what to do. */
-	problems: { files: string[]; sentence: string }[];
-	/** Sets whose content is in the survey already. */
-	duplicates: { captureId: string; captureName: string; files: string[] }[];
-}
-
-/** The last part of whatever path a browser sent, without control characters. */
-export function cleanFileName(raw: string): string {
-	const last = raw.split(/[\\/]/).at(-1) ?? '';
-	// eslint-disable-next-line no-control-regex -- control characters are what is taken out
-	const name = last.replace(/[\u0000-\u001f\u007f]/g, '').trim();
-	if (name === '' || name === '.' || name === '..')
-		throw new AppError('invalid', 'The file has no name. Give it one and choose it again.');
-	if (name.length > LONGEST_NAME)
-		throw new AppError(
-			'invalid',
-			`The file name is longer than ${LONGEST_NAME} characters. Shorten it and choose the file again.`
-		);
-	return name;
 }
 
 function storageFailure(cause: unknown, name: string): AppError {
@@ -68,26 +40,9 @@ function storageFailure(cause: unknown, name: string): AppError {
 	);
 }
 
-/** The files that belong together, by their names; two files of one name stay apart. */
-function groupRows(rows: readonly UploadRow[]): UploadRow[][] {
-	const waiting = [...rows];
-	return groupCaptureFiles(rows.map((row) => row.name)).map((names) =>
-		names.flatMap((name) => {
-			const at = waiting.findIndex((row) => row.name === name);
-			return at < 0 ? [] : waiting.splice(at, 1);
-		})
-	);
-}
-
-/** A set goes by its stem, a single file by its whole name. */
-function captureName(set: readonly UploadRow[]): string {
-	const first = set[0]?.name ?? '';
-	return set.length > 1 ? first.replace(/\.[^.]*$/, '') : first;
-}
-
 /** Files on their way to becoming captures: received, grouped into sets, handed to the worker. */
 export function createUploadsService(deps: ServiceDeps) {
-	const { db, blobs, jobs, config, clock } = deps;
+	const { db, blobs, config, clock } = deps;
 
 	/** Streams one file into storage. Nothing of it stays when it does not arrive whole. */
 	async function receive(
@@ -147,35 +102,7 @@ export function createUploadsService(deps: ServiceDeps) {
 			const rows = await uploads.ofSurvey(survey.id, [...new Set(uploadIds)]);
 			if (rows.length === 0)
 				throw new AppError('invalid', 'None of these files is waiting any more. Choose them again.');
-			const outcome: IntakeOutcome = { jobs: [], problems: [], duplicates: [] };
-			const claimed = new Set<string>();
-			const seen = new Map<string, string[]>();
-			for (const set of groupRows(rows)) {
-				const files = set.map((row) => row.name);
-				const content = set
-					.map((row) => row.sha256)
-					.sort()
-					.join();
-				const incomplete = incompleteGroupSentence(files);
-				const twin = await capturesRepository(trx, scope).withSameContent(
-					survey.id,
-					set.map((row) => row.sha256)
-				);
-				const sameNow = seen.get(content);
-				if (incomplete) outcome.problems.push({ files, sentence: incomplete });
-				else if (twin) outcome.duplicates.push({ captureId: twin.id, captureName: twin.name, files });
-				else if (sameNow)
-					outcome.problems.push({
-						files,
-						sentence: `${files.join(' and ')} has the same content as ${sameNow.join(' and ')}, which is read once.`
-					});
-				else {
-					seen.set(content, files);
-					for (const row of set) claimed.add(row.id);
-					outcome.jobs.push(await queueReading(trx, actor, survey.id, set));
-				}
-			}
-			await uploads.remove(rows.filter((row) => !claimed.has(row.id)).map((row) => row.id));
+			const outcome = await sortIntoCaptures(trx, deps, actor, survey.id, rows);
 			await appendAudit(
 				trx,
 				actor,
@@ -189,22 +116,6 @@ export function createUploadsService(deps: ServiceDeps) {
 			);
 			return outcome;
 		});
-	}
-
-	async function queueReading(trx: Db, actor: Actor, surveyId: string, set: UploadRow[]) {
-		const name = captureName(set);
-		const jobId = await jobs.enqueue(
-			trx,
-			recogniseCapture,
-			{
-				surveyId,
-				uploadIds: set.map((row) => row.id),
-				name,
-				requestedBy: { userId: actor.userId, name: actor.name }
-			},
-			{ practiceId: actor.practiceId }
-		);
-		return { jobId, name, files: set.map((row) => row.name) };
 	}
 
 	return { receive, discard, intake };
