@@ -1,5 +1,7 @@
 import { describe, expect, it } from 'vitest';
-import { readDelimitedText } from '$lib/recording/readers/delimited-text/read-delimited-text';
+import { handleOf } from '$lib/recording/capture-handle';
+import { guessTableOf, readDelimitedText } from '$lib/recording/readers/delimited-text/read-delimited-text';
+import { toldLayoutSchema } from '$lib/recording/readers/delimited-text/table-layout-told';
 import type { Recording, RecordingChannel, Trend } from '$lib/recording/recording';
 import { expectSamples } from './expect-samples';
 import {
@@ -199,4 +201,46 @@ describe.skipIf(!samplesArePresent)(`damaged tables${skipReason}`, () => {
 			'empty.csv is empty (0 bytes); a table of numbers was expected.'
 		);
 	});
+});
+
+describe.skipIf(!samplesArePresent)(`the samples of text${skipReason}`, () => {
+	it('are all covered above, by name', () => {
+		const text = Object.keys(all).filter((path) => path.endsWith('.csv'));
+		expect(text.sort()).toEqual(
+			[
+				'csv/logger_30s_odd_time.csv',
+				'csv/plugload_1240_30khz.csv',
+				'csv/plugload_33_30khz.csv',
+				'csv/plugload_398_30khz.csv',
+				'csv/plugload_707_30khz.csv',
+				'csv/three_phase_50khz_utc.csv',
+				'derived/csv/rounded_microseconds.csv',
+				'derived/csv/scope_preamble_negative_time.csv',
+				'derived/csv/semicolon_decimal_comma_bom.csv',
+				'derived/csv/tabs_milli_units_cr.csv',
+				'derived/csv/trend_rms_15min.csv',
+				'derived/malformed/empty.csv'
+			].sort()
+		);
+	});
+
+	it.each(Object.keys(all).filter((path) => path.endsWith('.csv') && !path.includes('malformed')))(
+		'%s is read again by its own guess, told as a layout',
+		(path) => {
+			const files = sampleCapture(path);
+			const guess = guessTableOf(handleOf(files[0]!));
+			const rate = file(path).fs_source?.startsWith('stated') ? 30_000 : null;
+			const guessed = guess!.layout;
+			const layout = toldLayoutSchema.parse({
+				...guessed,
+				time: { ...guessed.time, samplingRate_Hz: guessed.time.samplingRate_Hz ?? rate }
+			});
+			const told = readDelimitedText(files, { layout });
+			const read = readDelimitedText(files, rate === null ? {} : { samplingRate_Hz: rate });
+			if (!told.ok || !read.ok) throw new Error('not read');
+			const { remarks: _told, ...one } = told.value;
+			const { remarks: _read, ...other } = read.value;
+			expect(one).toEqual(other);
+		}
+	);
 });

@@ -1,6 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { readDelimitedText } from '$lib/recording/readers/delimited-text/read-delimited-text';
+import { handleOf } from '$lib/recording/capture-handle';
+import { guessTableOf, readDelimitedText } from '$lib/recording/readers/delimited-text/read-delimited-text';
+import { toldLayoutSchema } from '$lib/recording/readers/delimited-text/table-layout-told';
 import type { Recording, Trend, TrendSeries } from '$lib/recording/recording';
 import {
 	writeDelimitedTrend,
@@ -77,6 +79,110 @@ describe('a waveform written as delimited text and read again', () => {
 	});
 });
 
+/** Everything that the writer can vary beside separator and decimal sign. */
+const forms = fc
+	.record({
+		separator: fc.constantFrom(',' as const, ';' as const, '\t' as const, '|' as const, ' ' as const),
+		decimal: fc.constantFrom('.' as const, ',' as const),
+		grouping: fc.constantFrom('' as const, ' ' as const, "'" as const, ',' as const, '.' as const),
+		unitsRow: fc.boolean(),
+		preamble: fc.constantFrom(
+			[],
+			['Recorder 1'],
+			['Export of the recorder', '', 'Serial number: 1234', 'Firmware: 5.6']
+		),
+		encoding: fc.constantFrom(
+			'utf-8' as const,
+			'utf-8-mark' as const,
+			'utf-16le' as const,
+			'utf-16be' as const
+		),
+		lineEnd: fc.constantFrom('\r\n' as const, '\n' as const, '\r' as const)
+	})
+	.filter(({ separator, decimal, grouping }) => separator !== decimal && grouping !== decimal)
+	// Two columns of a comma each cannot be told from one of grouped digits.
+	.filter(({ separator, grouping }) => separator !== grouping);
+
+/** Enough of a wave that its separators and grouped digits are seen, and none of its values in doubt. */
+const wave = {
+	stationName: '',
+	recorderName: '',
+	nominalFrequency_Hz: 50,
+	start: { local: '2024-03-15T15:21:43.125', utcOffset_min: null },
+	sampleCount: 60,
+	segments: [{ samplingRate_Hz: 8000, fromSample: 0, toSample: 60 }],
+	statusChannelNames: [],
+	channels: [
+		{ name: 'U_L1', phaseHint: 'L1' as const, unitAsWritten: 'V', amplitude: 16_330 },
+		{ name: 'I_L1', phaseHint: 'L1' as const, unitAsWritten: 'mA', amplitude: 2.5 }
+	].map(({ amplitude, ...channel }) => ({
+		...channel,
+		samples: Float64Array.from(
+			{ length: 60 },
+			(_, n) => amplitude * Math.sin((2 * Math.PI * 50 * n) / 8000 + 0.3)
+		),
+		valuesAre: 'primary' as const,
+		ratio: null
+	}))
+};
+
+describe('every form of a waveform that can be written', () => {
+	const times = fc.oneof(
+		fc
+			.constantFrom(
+				'seconds' as const,
+				'milliseconds' as const,
+				'microseconds' as const,
+				'rate-line' as const
+			)
+			.map((time) => ({ time })),
+		fc
+			.constantFrom(
+				'year-first' as const,
+				'year-first-t' as const,
+				'day-first' as const,
+				'month-first' as const,
+				'date-and-clock' as const,
+				'half-day' as const,
+				'epoch-s' as const
+			)
+			.map((stamp) => ({ time: 'stamps' as const, stamp }))
+	);
+
+	it('is read by the guess, and again by the guess told as a layout', () => {
+		fc.assert(
+			fc.property(forms, times, (form, time) => {
+				const file = writeDelimitedWaveform(wave as never, { ...form, ...time, stem: 'x' });
+				const recording = read(file);
+				if (recording.kind !== 'waveform') throw new Error('taken for a trend');
+				expect(recording.sampleCount).toBe(60);
+				expect(Math.abs((recording.segments[0]?.samplingRate_Hz as number) / 8000 - 1)).toBeLessThan(1e-4);
+				for (const [index, channel] of wave.channels.entries()) {
+					expect(recording.channels[index]).toMatchObject({
+						name: channel.name,
+						phaseHint: 'L1',
+						unitAsWritten: channel.unitAsWritten
+					});
+					for (const [n, sample] of channel.samples.entries())
+						expect(Math.abs((recording.channels[index]!.samples[n] as number) - sample)).toBeLessThanOrEqual(
+							DIGITS_9 * Math.abs(sample)
+						);
+				}
+				if (time.time === 'stamps')
+					expect(recording.start?.local.slice(0, 23)).toBe('2024-03-15T15:21:43.125');
+				const guess = guessTableOf(handleOf(file));
+				const layout = toldLayoutSchema.parse(JSON.parse(JSON.stringify(guess?.layout)));
+				const told = readDelimitedText([file], { layout });
+				expect(told).toMatchObject({
+					ok: true,
+					value: { segments: recording.segments, channels: recording.channels, start: recording.start }
+				});
+			}),
+			{ seed: PINNED_SEED, numRuns: 80 }
+		);
+	});
+});
+
 function series(
 	quantity: TrendSeries['quantity'],
 	phaseHint: TrendSeries['phaseHint'],
@@ -136,6 +242,57 @@ const week: TrendToWrite = {
 		)
 	]
 };
+
+describe('every form of a trend that can be written', () => {
+	const stamps = fc.constantFrom(
+		'year-first' as const,
+		'year-first-t' as const,
+		'day-first' as const,
+		'month-first' as const,
+		'date-and-clock' as const,
+		'half-day' as const,
+		'epoch-s' as const,
+		'epoch-ms' as const
+	);
+
+	it('is read by the guess', () => {
+		fc.assert(
+			fc.property(forms, stamps, (form, stamp) => {
+				const zoned = stamp !== 'half-day';
+				const log = {
+					...week,
+					start: { local: '2024-03-14T23:50:00', utcOffset_min: zoned ? 60 : null },
+					intervalStarts_s: week.intervalStarts_s.slice(0, 40),
+					flagged: week.flagged?.slice(0, 40) ?? null,
+					// Five figures before the decimal sign: grouped digits are seen.
+					series: week.series.map((one, at) => ({
+						...one,
+						values: at === 0 ? one.values.map((value) => 50 * value).slice(0, 40) : one.values.slice(0, 40)
+					}))
+				};
+				const trend = read(writeDelimitedTrend(log, { ...form, stamp, stem: 'log' }));
+				if (trend.kind !== 'trend') throw new Error('taken for a waveform');
+				expect(trend.interval_s).toBe(600);
+				expect([...trend.intervalStarts_s]).toEqual([...log.intervalStarts_s]);
+				expect([...(trend.flagged ?? [])]).toEqual([...(log.flagged ?? [])]);
+				const isCounted = stamp === 'epoch-s' || stamp === 'epoch-ms';
+				expect(trend.start).toEqual(
+					isCounted ? { local: '2024-03-14T22:50:00', utcOffset_min: 0 } : { ...log.start }
+				);
+				expect(trend.series.map(({ measure, unit, phaseHint }) => [measure, unit, phaseHint])).toEqual(
+					log.series.map(({ measure, unit, phaseHint }) => [measure, unit, phaseHint])
+				);
+				for (const [index, { values }] of log.series.entries())
+					for (const [n, value] of values.entries()) {
+						const ours = trend.series[index]?.values[n] as number;
+						if (Number.isNaN(value)) expect(ours).toBeNaN();
+						else expect(Math.abs(ours - value)).toBeLessThanOrEqual(5.1e-6 * Math.abs(value));
+					}
+			}),
+			{ seed: PINNED_SEED, numRuns: 60 }
+		);
+	});
+});
 
 describe('a trend written as delimited text and read again', () => {
 	it.each(LAYOUTS)('separator $separator, decimal $decimal', (layout) => {

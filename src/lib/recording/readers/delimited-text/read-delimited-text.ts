@@ -11,6 +11,7 @@ import { buildWaveform, sampleFactor } from './build-waveform';
 import { createColumnStore } from './column-store';
 import { guessLayout, headLinesOf, type LayoutGuess } from './guess-layout';
 import { splitHeading } from './heading-text';
+import { joinTrends } from './join-tables';
 import { preambleFacts, type PreambleFacts } from './preamble';
 import { rowsOnScratch } from './rows-on-scratch';
 import type { RowTimes } from './row-times';
@@ -29,6 +30,8 @@ export interface DelimitedTextOptions {
 export interface OpenDelimitedTextOptions extends DelimitedTextOptions {
 	/** Where decoded values go when the text is long; memory where absent. */
 	scratch?: SampleScratch;
+	/** Text longer than this goes to scratch; see IN_MEMORY_BYTES. */
+	inMemory_bytes?: number;
 }
 
 /**
@@ -69,15 +72,37 @@ export function openDelimitedText(
 	files: readonly CaptureHandle[],
 	options: OpenDelimitedTextOptions = {}
 ): Result<CaptureSource | Trend, ReadProblem> {
-	const file = files[0];
-	if (file === undefined || file.size_bytes === 0)
+	const empty = files.find(({ size_bytes }) => size_bytes === 0);
+	const [first, ...others] = files;
+	if (first === undefined || empty !== undefined)
 		return refuse(
 			'file-empty',
-			file?.name ?? '',
+			empty?.name ?? '',
 			null,
-			`${file?.name ?? 'The file'} is empty (0 bytes); a table of numbers was expected.`
+			`${empty?.name ?? 'The file'} is empty (0 bytes); a table of numbers was expected.`
 		);
-	return openTable(file, options);
+	return others.length === 0 ? openTable(first, options) : openTables(files, options);
+}
+
+/** Several files of one log: rows that follow in time, or columns over the same times. */
+function openTables(
+	files: readonly CaptureHandle[],
+	options: OpenDelimitedTextOptions
+): Result<Trend, ReadProblem> {
+	const parts: { file: string; trend: Trend }[] = [];
+	for (const file of files) {
+		const opened = openTable(file, options);
+		if (!opened.ok) return opened;
+		if (opened.value.kind === 'waveform')
+			return refuse(
+				'waveforms-apart',
+				file.name,
+				null,
+				`${file.name} holds samples of a waveform; each file of samples is a capture of its own. Upload it by itself.`
+			);
+		parts.push({ file: file.name, trend: opened.value });
+	}
+	return joinTrends(parts);
 }
 
 /** A file as text, or why it is none. */
@@ -114,7 +139,8 @@ function openTable(
 			'line 1',
 			`${file.name}: no table of numbers was found; rows of numbers separated by commas, semicolons, tabs or blanks were expected from line 1 on, with or without lines above them.`
 		);
-	const scratch = file.size_bytes > IN_MEMORY_BYTES ? (options.scratch ?? null) : null;
+	const scratch =
+		file.size_bytes > (options.inMemory_bytes ?? IN_MEMORY_BYTES) ? (options.scratch ?? null) : null;
 	const table: Table = {
 		text,
 		layout,

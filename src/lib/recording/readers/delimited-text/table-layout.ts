@@ -39,7 +39,7 @@ const SAMPLE_ROWS = 60;
 export function splitFields(text: string, separator: Separator): string[] {
 	if (separator === ' ') {
 		const trimmed = text.trim();
-		return trimmed === '' ? [] : trimmed.split(/[ \t]+/).map(unquoted);
+		return (trimmed.match(/"[^"]*"|[^ \t]+/g) ?? []).map(unquoted);
 	}
 	if (!text.includes('"')) return text.split(separator);
 	const fields: string[] = [];
@@ -134,12 +134,19 @@ function bestCandidate(rows: string[]): Candidate | null {
 	};
 	for (const decimal of ['.', ','] as const)
 		for (const separator of SEPARATORS) consider(separator, { decimal, grouping: 'none' }, 1e-9);
-	if (((best as Candidate | null)?.score ?? 0) < 1 - GROUPING_GAIN)
+	const plain = best as Candidate | null;
+	// Blanks may part columns or groups of digits: where another sign parts columns as well, it is the groups.
+	const isBlank = plain?.separator === ' ';
+	if (isBlank || (plain?.score ?? 0) < 1 - GROUPING_GAIN)
 		for (const decimal of ['.', ','] as const)
 			for (const grouping of ['space', 'apostrophe', decimal === '.' ? 'comma' : 'dot'] as const)
 				for (const separator of SEPARATORS)
 					if (separator !== groupingMark(grouping) || rows.some((row) => row.includes('"')))
-						consider(separator, { decimal, grouping }, GROUPING_GAIN);
+						consider(
+							separator,
+							{ decimal, grouping },
+							isBlank && separator !== ' ' && grouping === 'space' ? -0.02 : GROUPING_GAIN
+						);
 	return settled(best);
 }
 
