@@ -9,9 +9,9 @@ import { spawn } from 'node:child_process';
 import { copyFileSync, existsSync, mkdirSync, mkdtempSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { setTimeout as sleep } from 'node:timers/promises';
-import { chromium, type Browser, type Page } from 'playwright-core';
+import type { Browser, Page } from 'playwright-core';
 import { CLIENTS, DEMO_PASSWORD, STAFF } from '../seeds/demo/people';
+import { launchChromium, signInAs, waitUntilUp } from './browser-person';
 
 const PORT = 3920;
 const ORIGIN = `http://localhost:${PORT}`;
@@ -129,28 +129,6 @@ const PEOPLE: { who: string; email: string | null; pages: Record<string, Way> }[
 	}
 ];
 
-async function waitUntilUp(): Promise<void> {
-	for (let tries = 0; tries < 600; tries++) {
-		if (
-			await fetch(`${ORIGIN}/healthz`).then(
-				(response) => response.ok,
-				() => false
-			)
-		)
-			return;
-		await sleep(200);
-	}
-	throw new Error('the demo did not come up');
-}
-
-async function signIn(page: Page, email: string): Promise<void> {
-	await page.goto('/sign-in');
-	await page.getByLabel('E-mail').fill(email);
-	await page.getByLabel('Password', { exact: true }).fill(DEMO_PASSWORD);
-	await page.getByRole('button', { name: 'Sign in', exact: true }).click();
-	await page.waitForURL((url) => !url.pathname.startsWith('/sign-in'));
-}
-
 async function photograph(browser: Browser): Promise<number> {
 	let faults = 0;
 	for (const form of FORMS)
@@ -167,7 +145,7 @@ async function photograph(browser: Browser): Promise<number> {
 				faults++;
 				console.error(`  script error on ${page.url()}: ${error.message}`);
 			});
-			if (email) await signIn(page, email);
+			if (email) await signInAs(page, email, DEMO_PASSWORD);
 			for (const [name, way] of Object.entries(pages)) {
 				try {
 					if (typeof way === 'string') await page.goto(way);
@@ -207,18 +185,8 @@ const product = spawn(process.execPath, ['--import', 'tsx', 'scripts/demo.ts'], 
 });
 let faults: number;
 try {
-	await waitUntilUp();
-	const browser = await chromium.launch({
-		executablePath: process.env['CHROMIUM_PATH'] ?? '/usr/bin/chromium',
-		args: [
-			'--no-sandbox',
-			'--disable-gpu',
-			'--disable-quic',
-			'--disable-background-networking',
-			'--disable-component-update',
-			'--disable-sync'
-		]
-	});
+	await waitUntilUp(`${ORIGIN}/healthz`);
+	const browser = await launchChromium();
 	faults = await photograph(browser);
 	await browser.close();
 	if (forReadme) {
