@@ -1,4 +1,4 @@
-import { parse, type MathNode } from 'mathjs';
+import { parse, type MathNode } from 'mathjs/number';
 import { err, ok, type Result } from '../result';
 
 /** A table cell that is printed as an expression in the order h, compiled once. */
