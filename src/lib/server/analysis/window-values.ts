@@ -25,6 +25,22 @@ function columnRms(values: Float64Array, windows: readonly number[], stride: num
 	return Math.sqrt(sum / windows.length);
 }
 
+/** A row of analysis_series as far as it tells how many windows it holds. */
+type Windows = Pick<AnalysisSeriesRow, 'interval_count'>;
+
+/** [ORDER_STRIDE] root mean square of each order over the selected windows of one stored column of levels. */
+export function ordersOver(row: Windows, levels: Buffer, windows: readonly number[]): Float64Array {
+	const values = bufferToFloats(levels, row.interval_count * ORDER_STRIDE);
+	return Float64Array.from({ length: ORDER_STRIDE }, (_, order) =>
+		columnRms(values, windows, ORDER_STRIDE, order)
+	);
+}
+
+/** True rms over the selected windows. */
+export function rmsOver(row: Pick<AnalysisSeriesRow, 'rms'>, windows: readonly number[]): number {
+	return columnRms(bufferToFloat64(row.rms), windows, 1, 0);
+}
+
 /**
  * Angle of the sum of an order's phasors over the windows. Meaningful because every window's angles are referred to
  * the fundamental of the same channel; NaN when the phasors cancel or one is missing.
@@ -61,20 +77,17 @@ export function channelValues(
 	if (!components || !phases_deg || !dc || !peak)
 		throw new Error('window values are asked of a series that is not made of windows');
 	const matrices = {
-		rms: bufferToFloat64(row.rms),
-		subgroups: bufferToFloat64(row.subgroups),
 		components: bufferToFloats(components, row.interval_count * ORDER_STRIDE),
 		phases_deg: bufferToFloats(phases_deg, row.interval_count * ORDER_STRIDE),
 		dc: bufferToFloat64(dc),
 		peak: bufferToFloat64(peak)
 	};
-	const subgroups = new Float64Array(ORDER_STRIDE);
+	const subgroups = ordersOver(row, row.subgroups, windows);
 	const angles_deg = new Float64Array(ORDER_STRIDE);
 	for (let order = 0; order < ORDER_STRIDE; order++) {
-		subgroups[order] = columnRms(matrices.subgroups, windows, ORDER_STRIDE, order);
 		angles_deg[order] = meanAngle_deg(matrices.components, matrices.phases_deg, windows, order);
 	}
-	const rms = columnRms(matrices.rms, windows, 1, 0);
+	const rms = rmsOver(row, windows);
 	const greatest = windows.reduce((most, window) => Math.max(most, matrices.peak[window]!), -Infinity);
 	return {
 		rms,

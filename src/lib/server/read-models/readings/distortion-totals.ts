@@ -6,7 +6,7 @@ import {
 } from '../../../harmonics/distortion';
 import { ORDER_STRIDE } from '../../../harmonics/intervals';
 import type { Phase } from '../../../recording/phase';
-import { bufferToFloat64, bufferToFloats } from '../../analysis/series-codec';
+import { ordersOver, rmsOver } from '../../analysis/window-values';
 import type { AnalysisSeriesRow } from '../../db/rows';
 import { figure, type Figure } from './reading-figure';
 
@@ -37,19 +37,10 @@ export function distortionTotals(
 	label: (phase: Phase) => string
 ): DistortionTotals[] {
 	return rows.map((row) => {
-		const over = (bytes: Buffer | null): Float64Array | null => {
-			if (!bytes) return null;
-			const values = bufferToFloats(bytes, row.interval_count * ORDER_STRIDE);
-			return Float64Array.from({ length: ORDER_STRIDE }, (_, order) => {
-				let sum = 0;
-				for (const window of windows) sum += values[window * ORDER_STRIDE + order]! ** 2;
-				return Math.sqrt(sum / windows.length);
-			});
-		};
-		const rmsValues = bufferToFloat64(row.rms);
-		const rms = Math.sqrt(windows.reduce((sum, w) => sum + rmsValues[w]! ** 2, 0) / windows.length);
+		const over = (levels: Buffer | null) => levels && ordersOver(row, levels, windows);
+		const rms = rmsOver(row, windows);
 		const lines = over(row.components) ?? new Float64Array(ORDER_STRIDE).fill(NaN);
-		const subgroups = over(row.subgroups)!;
+		const subgroups = ordersOver(row, row.subgroups, windows);
 		const groups = over(row.harmonic_groups);
 		const family = (name: 'odd' | 'even' | 'triplen') =>
 			figure((100 * familyContent(subgroups, name, highestOrder)) / subgroups[1]!);

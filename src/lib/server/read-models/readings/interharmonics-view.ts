@@ -1,8 +1,7 @@
-import { ORDER_STRIDE } from '../../../harmonics/intervals';
 import { supraharmonicsOf } from '../../../harmonics/supraharmonics';
 import { readWholeBand } from '../../../harmonics/whole-band';
 import type { Phase } from '../../../recording/phase';
-import { bufferToFloats } from '../../analysis/series-codec';
+import { ordersOver } from '../../analysis/window-values';
 import type { AnalysisSeriesRow } from '../../db/rows';
 import { figure, type Figure } from './reading-figure';
 import type { WindowRows } from './window-rows';
@@ -71,14 +70,8 @@ export function interharmonicReadings(
 function levelsOf(row: AnalysisSeriesRow, windows: readonly number[], highestOrder: number) {
 	const { subgroups, harmonic_groups, interharmonic_subgroups, interharmonic_groups } = row;
 	if (!harmonic_groups || !interharmonic_subgroups || !interharmonic_groups) return null;
-	const over = (bytes: Buffer): Figure[] => {
-		const values = bufferToFloats(bytes, row.interval_count * ORDER_STRIDE);
-		return Array.from({ length: highestOrder + 1 }, (_, order) => {
-			let sum = 0;
-			for (const window of windows) sum += values[window * ORDER_STRIDE + order]! ** 2;
-			return figure(Math.sqrt(sum / windows.length));
-		});
-	};
+	const over = (levels: Buffer): Figure[] =>
+		Array.from(ordersOver(row, levels, windows).subarray(0, highestOrder + 1), figure);
 	const harmonic = over(subgroups);
 	return {
 		fundamental: harmonic[1] ?? null,

@@ -11,7 +11,8 @@ import {
 import { neutralLoading } from '../../../harmonics/losses/neutral-loading';
 import { telephoneInfluenceFactor, telephoneProduct } from '../../../harmonics/telephone/telephone-influence';
 import type { Phase } from '../../../recording/phase';
-import { bufferToFloat64, bufferToFloats } from '../../analysis/series-codec';
+import { bufferToFloats } from '../../analysis/series-codec';
+import { ordersOver, rmsOver } from '../../analysis/window-values';
 import type { AnalysisSeriesRow } from '../../db/rows';
 import { figure, type Figure } from './reading-figure';
 import type { WindowRows } from './window-rows';
@@ -85,27 +86,13 @@ export function lossReadings({ rows, windows }: WindowRows, context: LossContext
 	};
 }
 
-function rowOver(row: AnalysisSeriesRow, windows: readonly number[]): Float64Array {
-	const values = bufferToFloats(row.components!, row.interval_count * ORDER_STRIDE);
-	return Float64Array.from({ length: ORDER_STRIDE }, (_, order) => {
-		let sum = 0;
-		for (const window of windows) sum += values[window * ORDER_STRIDE + order]! ** 2;
-		return Math.sqrt(sum / windows.length);
-	});
-}
-
-function rmsOver(row: AnalysisSeriesRow, windows: readonly number[]): number {
-	const values = bufferToFloat64(row.rms);
-	return Math.sqrt(windows.reduce((sum, window) => sum + values[window]! ** 2, 0) / windows.length);
-}
-
 function lossReading(
 	row: AnalysisSeriesRow,
 	windows: readonly number[],
 	{ highestOrder, frequency_Hz, label, rated }: LossContext,
 	hasNeutral: boolean
 ): LossReading {
-	const orders = rowOver(row, windows);
+	const orders = ordersOver(row, row.components!, windows);
 	const rms_A = rmsOver(row, windows);
 	const lossFactor = eddyLossFactor(orders, highestOrder);
 	const third_pct = (100 * orders[3]!) / rms_A;
