@@ -4,7 +4,7 @@ import type { CaptureFile, ReadProblem, ReadRemark, Recording, Trend } from '../
 import type { SampleScratch } from '../../sample-scratch';
 import type { CaptureSource, SampleSource } from '../../sample-source';
 import { parseUnit } from '../../unit-text';
-import { refuse } from '../read-problem';
+import { refuse, withoutControls } from '../read-problem';
 import { textBlocks, type TextBlocks, type TextHead } from '../text-blocks';
 import { buildTrend } from './build-trend';
 import { buildWaveform, sampleFactor } from './build-waveform';
@@ -185,7 +185,7 @@ export function columnHeadings(layout: ToldLayout, lines: readonly string[]): st
 	const rows = layout.headingLines.map((line) => splitFields(lines[line - 1] ?? '', layout.separator));
 	return layout.columns.map((_, column) =>
 		rows
-			.map((fields) => (fields[column] ?? '').trim())
+			.map((fields) => withoutControls(fields[column] ?? ''))
 			.filter((field) => field !== '')
 			.join(' ')
 	);
