@@ -20,6 +20,7 @@ const ROOMS = [
 	['uncertainty', 'src/lib/uncertainty/**'],
 	['assessment', 'src/lib/assessment/**'],
 	['register', 'src/lib/register/**'],
+	['checks', 'src/lib/checks/**'],
 	['report', 'src/lib/report/**'],
 	['analysis-document', 'src/lib/analysis-document/**'],
 	['charts', 'src/lib/charts/**'],
@@ -38,6 +39,7 @@ const DOMAIN = [
 	'uncertainty',
 	'assessment',
 	'register',
+	'checks',
 	'report',
 	'units',
 	'result',
@@ -66,8 +68,20 @@ const MAY_ENTER = {
 		'result'
 	],
 	register: ['register', 'assessment', 'limits', 'recording', 'units', 'result'],
+	checks: [
+		'checks',
+		'report',
+		'register',
+		'assessment',
+		'limits',
+		'harmonics',
+		'recording',
+		'units',
+		'result'
+	],
 	report: [
 		'report',
+		'checks',
 		'register',
 		'assessment',
 		'limits',
@@ -87,7 +101,7 @@ const MAY_ENTER = {
 		'recording',
 		'result'
 	],
-	charts: ['charts', 'units', 'recording', 'harmonics', 'limits', 'assessment', 'report'],
+	charts: ['charts', 'units', 'recording', 'harmonics', 'limits', 'assessment', 'checks', 'report'],
 	state: ['state', ...DOMAIN],
 	'api-client': ['api-client', ...DOMAIN],
 	ui: ['ui', 'units'],
@@ -154,7 +168,7 @@ export default ts.config(
 	{
 		// Domain rooms know neither the framework nor the machine they run on.
 		files: [
-			'src/lib/{numerics,units,recording,harmonics,synthesis,accuracy,limits,uncertainty,assessment,register,report,analysis-document,access,charts}/**/*.ts'
+			'src/lib/{numerics,units,recording,harmonics,synthesis,accuracy,limits,uncertainty,assessment,register,checks,report,analysis-document,access,charts}/**/*.ts'
 		],
 		rules: {
 			'no-restricted-imports': [

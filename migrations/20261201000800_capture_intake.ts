@@ -66,6 +66,8 @@ export async function up(knex: Knex): Promise<void> {
 		t.text('capture_id').references('captures.id').onDelete('CASCADE');
 		t.text('code').notNullable();
 		t.integer('channel_index');
+		// The finding as it read: an overrule counts as long as it reads the same.
+		t.text('sentence').notNullable();
 		t.text('reason').notNullable();
 		t.text('overruled_by').notNullable().references('users.id');
 		t.text('created_at').notNullable();

@@ -223,11 +223,31 @@ export function reportSources(change: SourcesChange = {}): ReportSources {
 					}
 				],
 		quality: {
-			remarks: [
+			checks: [
 				{
 					capture: 'week-10.csv',
-					severity: 'notes',
-					sentence: 'The clock of the recorder was set once during the week; no interval was lost.'
+					title: 'Current against demand current',
+					outcome: 'warns',
+					sentence: 'I L1 9 A, I L2 9 A, I L3 8 A: less than 2 % of the maximum demand current I_L of 600 A.',
+					overrule: {
+						reason: 'The plant stood still over the holiday; the client knows and wants it so.',
+						by: 'Mara Ellison',
+						at: '2026-03-12T09:00:00.000Z'
+					}
+				},
+				{
+					capture: 'week-10.csv',
+					title: 'Time zone and clock',
+					outcome: 'notes',
+					sentence: 'The clock of the recorder was set once during the week; no interval was lost.',
+					overrule: null
+				},
+				{
+					capture: 'week-10.csv',
+					title: 'Voltage against nominal',
+					outcome: 'passes',
+					sentence: 'Every voltage lies within 20 % of its nominal value, so ratios and units fit.',
+					overrule: null
 				}
 			],
 			flagged: [

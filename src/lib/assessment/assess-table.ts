@@ -3,12 +3,14 @@ import type { TableSelection } from '../limits/select-table';
 import type { LimitTable } from '../limits/limit-set';
 import type {
 	AssessedPoint,
+	BlockedLevels,
 	DecisionRule,
 	TableVerdict,
 	UncertaintyStatement,
 	VerdictRow
 } from './assessment';
 import { assessItem, baseRuleOf } from './assess-item';
+import { blockedRow, blockOn } from './blocked-row';
 import { levelBaseOf } from './interval-levels';
 import { judgedPhases, nominalVoltageOn_V, shortCircuitRatio, systemVoltage_kV } from './judged-phases';
 import type { PhaseData } from './phase-data';
@@ -17,6 +19,7 @@ import { governingRow, rollUpVerdicts, weakestEvidence } from './roll-up';
 export interface TableContext {
 	point: AssessedPoint;
 	phases: PhaseData[];
+	blocked: readonly BlockedLevels[];
 	siteTimeZone: string;
 	uncertainty: UncertaintyStatement;
 	decisionRule: DecisionRule;
@@ -140,8 +143,15 @@ export function assessTable(context: TableContext, selection: TableSelection): A
 
 	const rows: VerdictRow[] = [];
 	const absent: string[] = [];
+	const forbidden: string[] = [];
 	for (const phase of phasesToJudge(context, table.quantity)) {
 		const data = context.phases.find((one) => one.quantity === table.quantity && one.phase === phase);
+		const block = blockOn(context.blocked, table.quantity, phase);
+		if (block !== null) {
+			rows.push(...items.map(({ item, limit }) => blockedRow(table, item, limit, block)));
+			forbidden.push(`A check of the captures stands in the way of a verdict: ${block.sentence}`);
+			continue;
+		}
 		const fixed = table.basis === 'demand-current' ? demandCurrent_A : nominalVoltageOn_V(point, phase);
 		const base = levelBaseOf(table.basis, fixed);
 		if (data === undefined || base === null) {
@@ -156,7 +166,7 @@ export function assessTable(context: TableContext, selection: TableSelection): A
 	return {
 		verdict: summarise(selection, rows, classWhy),
 		rows,
-		missing: absent.length === 0 ? [] : [absentSentence(table, absent)]
+		missing: [...forbidden, ...(absent.length === 0 ? [] : [absentSentence(table, absent)])]
 	};
 }
 

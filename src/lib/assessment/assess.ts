@@ -2,7 +2,14 @@ import type { IntervalSeries } from '../harmonics/intervals';
 import type { LimitSet } from '../limits/limit-set';
 import { selectTables } from '../limits/select-table';
 import { assessTable } from './assess-table';
-import type { AssessedPoint, Assessment, DecisionRule, UncertaintyStatement } from './assessment';
+import type {
+	AssessedPoint,
+	Assessment,
+	BlockedLevels,
+	DecisionRule,
+	UncertaintyStatement
+} from './assessment';
+import { blockOn } from './blocked-row';
 import { headlineOf } from './headline';
 import { systemVoltage_kV } from './judged-phases';
 import { notesOf } from './notes';
@@ -20,6 +27,8 @@ export interface AssessmentInput {
 	decisionRule: DecisionRule;
 	/** Keys of the tables to judge, for sets that offer classes to choose from; all that apply when absent. */
 	tableKeys?: string[];
+	/** Findings about the captures that nobody has overruled and that forbid a verdict; none when absent. */
+	blocked?: readonly BlockedLevels[];
 }
 
 /**
@@ -29,10 +38,12 @@ export interface AssessmentInput {
 export function assess(input: AssessmentInput): Assessment {
 	const { point, limitSet, decisionRule, uncertainty, siteTimeZone } = input;
 	const phases = collectPhaseData(input.series);
+	const blocked = input.blocked ?? [];
+	const sound = phases.filter((data) => blockOn(blocked, data.quantity, data.phase) === null);
 	const selected = selectTables(limitSet, systemVoltage_kV(point)).filter(
 		({ table }) => input.tableKeys === undefined || input.tableKeys.includes(table.key)
 	);
-	const context = { point, phases, siteTimeZone, uncertainty, decisionRule };
+	const context = { point, phases, blocked, siteTimeZone, uncertainty, decisionRule };
 	const assessed = selected.map((selection) => assessTable(context, selection));
 	const tables = assessed.map((table) => table.verdict);
 	const rows = assessed.flatMap((table) => table.rows);
@@ -56,7 +67,7 @@ export function assess(input: AssessmentInput): Assessment {
 		tables,
 		rows,
 		missing,
-		notes: notesOf(point, phases, rows),
-		headline: headlineOf(point, phases, voltageTable?.basis ?? 'fundamental')
+		notes: notesOf(point, sound, rows),
+		headline: headlineOf(point, sound, voltageTable?.basis ?? 'fundamental')
 	};
 }

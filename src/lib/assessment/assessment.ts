@@ -45,6 +45,14 @@ export interface UncertaintyStatement {
 	budgetOf: (figure: Figure) => Budget;
 }
 
+/** A conductor on which no verdict may stand, because of what was found about its capture. */
+export interface BlockedLevels {
+	quantity: 'voltage' | 'current';
+	phase: Phase;
+	/** The finding. */
+	sentence: string;
+}
+
 export interface VerdictRow {
 	tableKey: string;
 	quantity: 'voltage' | 'current';

@@ -7,7 +7,9 @@ import { findClipping } from './quality/clipping';
 import { findConnectionFaults, findNegativeRotation } from './quality/connection';
 import { findDeadChannels } from './quality/dead-channel';
 import { findDcOffsets, findImplausibleVoltages } from './quality/levels';
+import { findSameSignals } from './quality/same-signal';
 import { findFrequencyFaults, findMissingSamples, findRateLimits } from './quality/sampling';
+import { findSwappedQuantities } from './quality/swapped-quantity';
 import type { ChannelAnalysis, QualityRemark, QualitySeverity } from './waveform-analysis';
 
 /** What an analysis gathered about a capture, beside its windows. Lists by position of the mapping. */
@@ -63,6 +65,8 @@ export function inspectCapture(source: CaptureSource, context: InspectionContext
 		),
 		...findImplausibleVoltages(source.channels, channels, context.nominalVoltages_V, names),
 		...findDeadChannels(channels, names),
+		...findSameSignals(channels, names),
+		...findSwappedQuantities(source.channels, channels, context.nominalVoltages_V, names),
 		...findConnectionFaults(channels, names),
 		...findNegativeRotation(channels, names),
 		...findRateLimits(samplingRate_Hz, frequency_Hz, context.highestOrder),

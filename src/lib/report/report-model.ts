@@ -1,3 +1,4 @@
+import type { RecordedCheck } from '../checks/recorded-check';
 import type { AssessedPoint, DecisionRule, Evidence, Verdict } from '../assessment/assessment';
 import type { LimitBasis, Provenance } from '../limits/limit-set';
 import type { Phase, PhaseNames } from '../recording/phase';
@@ -259,7 +260,8 @@ export interface ReportTrend {
 }
 
 export interface ReportQuality {
-	remarks: { capture: string; severity: 'blocks' | 'warns' | 'notes'; sentence: string }[];
+	/** Worst first, passes included. */
+	checks: RecordedCheck[];
 	/** At most 200 are listed; `flaggedTotal` counts all. */
 	flagged: { interval: string; startsAt: string; length_s: number; quantity: string; phase: Phase }[];
 	flaggedTotal: number;

@@ -28,6 +28,7 @@ import { createActionsService } from './services/actions.service';
 import { createAssessmentsService } from './services/assessments.service';
 import { createReportsService } from './services/reports.service';
 import { createCapturesService } from './services/captures.service';
+import { createChecksService } from './services/checks.service';
 import { createReadingsService } from './services/readings.service';
 import { createTablesService } from './services/tables.service';
 import { createUploadsService } from './services/uploads.service';
@@ -64,6 +65,7 @@ function buildServices(deps: ServiceDeps) {
 		uploads: createUploadsService(deps),
 		captures: createCapturesService(deps),
 		tables: createTablesService(deps),
+		checks: createChecksService(deps),
 		readings: createReadingsService(deps),
 		assessments: createAssessmentsService(deps),
 		actions: createActionsService(deps),

@@ -5,7 +5,10 @@ import type { ChannelAnalysis, QualityRemark } from '../waveform-analysis';
 /** A channel this much weaker than the strongest of its kind carries nothing worth a verdict. */
 export const DEAD_SHARE = 1e-3;
 
-/** Channels without signal beside others of the same quantity that have one. */
+/**
+ * Channels without signal beside others of the same quantity that have one. A voltage without signal would read as one
+ * without harmonics, so it blocks; a conductor may well carry no current.
+ */
 export function findDeadChannels(channels: readonly ChannelAnalysis[], names: PhaseNames): QualityRemark[] {
 	const remarks: QualityRemark[] = [];
 	for (const channel of channels) {
@@ -21,7 +24,7 @@ export function findDeadChannels(channels: readonly ChannelAnalysis[], names: Ph
 		const isNeutral = channel.mapping.phase === 'N';
 		if (isNeutral && level > 0) continue;
 		remarks.push({
-			severity: isNeutral ? 'notes' : 'warns',
+			severity: isNeutral ? 'notes' : channel.mapping.quantity === 'voltage' ? 'blocks' : 'warns',
 			code: 'dead-channel',
 			channelIndex: channel.mapping.channelIndex,
 			sentence:

@@ -4,8 +4,9 @@ import type { ChannelAnalysis, QualityRemark } from '../waveform-analysis';
 import { meanFundamental } from './fundamental-phasors';
 
 /** Voltages further than this from nominal point to a ratio, not to the network. */
-const FAR_FROM_NOMINAL = 0.2;
-const DC_SHARE = { voltage: 0.01, current: 0.03 };
+export const FAR_FROM_NOMINAL = 0.2;
+/** A constant part that offsets of good inputs stay below, share of the rms (common practice). */
+export const DC_SHARE = { voltage: 0.01, current: 0.03 };
 
 /** Voltages whose fundamental is nowhere near the point's nominal voltage. */
 export function findImplausibleVoltages(

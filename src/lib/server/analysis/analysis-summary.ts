@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import type { CaptureEvidence } from '../../harmonics/quality/capture-evidence';
 import { PHASES } from '../../recording/phase';
 import { samplesLayout } from './samples-blob';
 
@@ -9,6 +10,33 @@ const qualityRemark = z.object({
 	sentence: z.string(),
 	channelIndex: z.number().int().nullable()
 });
+
+const nullableNumbers = z.array(z.number().nullable());
+
+/** CaptureEvidence of harmonics/quality; absent on analyses made before it was kept. */
+const captureEvidence = z.object({
+	samplingRate_Hz: z.number().nullable(),
+	frequency_Hz: z.number().nullable(),
+	statedFrequency_Hz: z.number().nullable(),
+	stretches: z.array(z.object({ from_s: z.number(), to_s: z.number() })),
+	stretchCount: z.number().int(),
+	channels: z.array(
+		z.object({
+			channelIndex: z.number().int(),
+			name: z.string(),
+			quantity: z.enum(['voltage', 'current']),
+			phase: z.enum(PHASES),
+			rms: z.number().nullable(),
+			dc: z.number().nullable(),
+			fundamental: z.object({ rms: z.number(), phase_deg: z.number().nullable() }).nullable(),
+			floor: nullableNumbers,
+			excerpt: z.object({ from_s: z.number(), step_s: z.number(), values: nullableNumbers }).nullable(),
+			missingOrders: z.array(z.number().int()),
+			highestOrder: z.number().int(),
+			implausible: z.array(z.string())
+		})
+	)
+}) satisfies z.ZodType<CaptureEvidence>;
 
 const summaryChannel = z.object({
 	channelIndex: z.number().int(),
@@ -28,6 +56,7 @@ const waveformSummary = z.object({
 	flaggedCount: z.number().int(),
 	channels: z.array(summaryChannel),
 	quality: z.array(qualityRemark),
+	evidence: captureEvidence.optional(),
 	samples: samplesLayout
 });
 
@@ -36,7 +65,8 @@ const trendSummary = z.object({
 	interval_s: z.number(),
 	intervalCount: z.number().int(),
 	flaggedCount: z.number().int(),
-	quality: z.array(qualityRemark)
+	quality: z.array(qualityRemark),
+	evidence: captureEvidence.optional()
 });
 
 export const analysisSummary = z.discriminatedUnion('kind', [waveformSummary, trendSummary]);

@@ -3,6 +3,8 @@ import { analyseCapture } from '../../harmonics/analyse-waveform';
 import { IntervalCollector } from '../../harmonics/engine/interval-collector';
 import { pairChannels } from '../../harmonics/engine/prepare-capture';
 import { ENGINE_VERSION } from '../../harmonics/engine-version';
+import { captureEvidence } from '../../harmonics/quality/capture-evidence';
+import { trendEvidence } from '../../harmonics/quality/trend-evidence';
 import { trendToIntervalSeries, type TrendMapping } from '../../harmonics/trend-intervals';
 import type { CaptureFindings, ChannelMapping, WaveformWindows } from '../../harmonics/waveform-analysis';
 import type { Phase, PhaseNames } from '../../recording/phase';
@@ -101,6 +103,7 @@ export async function prepareWaveform(
 			flaggedCount: seen.flaggedCount,
 			channels: findings.whole.map(({ mapping, name }) => ({ ...mapping, name })),
 			quality: findings.quality,
+			evidence: captureEvidence(source, findings),
 			samples: { sha256: samples.sha256, ...layOutSamples(source, mappings) }
 		},
 		last: aggregatePart(collector, findings, {
@@ -150,7 +153,8 @@ export async function prepareTrend(
 			interval_s: trend.interval_s,
 			intervalCount: trend.intervalStarts_s.length,
 			flaggedCount: flagged ? flagged.reduce((sum, flag) => sum + flag, 0) : 0,
-			quality
+			quality,
+			evidence: trendEvidence(series, mappings, basis.start_ms, trend.nominalFrequency_Hz)
 		},
 		last: { series: rows, scalars: [] },
 		samples: null

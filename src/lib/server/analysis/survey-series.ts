@@ -1,11 +1,9 @@
 import { mergeSeries } from '../../assessment/merge-series';
 import { ORDER_STRIDE, type IntervalSeries } from '../../harmonics/intervals';
-import type { QualityRemark } from '../../harmonics/waveform-analysis';
 import type { Db } from '../db/database';
 import { analysesRepository } from '../repositories/analyses.repository';
 import { capturesRepository } from '../repositories/captures.repository';
 import type { Scope } from '../repositories/scope';
-import { parseSummary } from './analysis-summary';
 import { decodeSeries } from './series-codec';
 
 /** All that an assessment looks at, and where it came from. */
@@ -16,8 +14,6 @@ export interface SurveySeries {
 	captures: { id: string; name: string; startedAt: string | null; duration_s: number; sha256s: string[] }[];
 	/** Of the analyses; several, joined by a comma, where captures were analysed by different versions. */
 	engineVersion: string;
-	/** Remarks on the captures, each sentence led by the capture's name where there are several. */
-	quality: QualityRemark[];
 }
 
 /** Number of leading intervals that start before `time_ms`. */
@@ -93,33 +89,14 @@ export async function seriesForSurvey(db: Db, scope: Scope, surveyId: string): P
 	const captureRows = await capturesRepository(db, scope).ofSurvey(surveyId);
 	const files = await capturesRepository(db, scope).filesOf(analyses.map((analysis) => analysis.capture_id));
 	const used = captureRows.filter((row) => analyses.some((analysis) => analysis.capture_id === row.id));
-	const nameOf = new Map(used.map((row) => [row.id, row.name]));
-
 	const groups = new Map<string, IntervalSeries[]>();
-	const quality: QualityRemark[] = [];
 	for (const analysis of analyses) {
 		for (const series of await assessedSeries(analysesOf, analysis.id)) {
 			const key = `${series.quantity}/${series.phase}/${series.interval}`;
 			groups.set(key, [...(groups.get(key) ?? []), series]);
 		}
-		for (const remark of parseSummary(analysis.summary_json).quality)
-			quality.push({
-				...remark,
-				sentence:
-					analyses.length > 1
-						? `${nameOf.get(analysis.capture_id) ?? ''}: ${remark.sentence}`
-						: remark.sentence
-			});
 	}
 	const joined = [...groups.values()].map(concatenateInTime);
-	const trimmed = Math.max(0, ...joined.map((result) => result.trimmed));
-	if (trimmed > 0)
-		quality.push({
-			severity: 'warns',
-			code: 'captures-overlap',
-			sentence: `Captures of this survey overlap in time. Up to ${trimmed} intervals of the later one were left out, so that none counts twice. Check the recorders' clocks if the overlap was not meant.`,
-			channelIndex: null
-		});
 	return {
 		series: joined.map((result) => result.series),
 		analysisIds: analyses.map((analysis) => analysis.id),
@@ -130,7 +107,6 @@ export async function seriesForSurvey(db: Db, scope: Scope, surveyId: string): P
 			duration_s: row.duration_s,
 			sha256s: files.filter((file) => file.capture_id === row.id).map((file) => file.sha256)
 		})),
-		engineVersion: [...new Set(analyses.map((analysis) => analysis.engine_version))].join(', '),
-		quality
+		engineVersion: [...new Set(analyses.map((analysis) => analysis.engine_version))].join(', ')
 	};
 }

@@ -411,6 +411,7 @@ export interface CheckOverruleRow {
 	capture_id: string | null;
 	code: string;
 	channel_index: number | null;
+	sentence: string;
 	reason: string;
 	overruled_by: string;
 	created_at: string;

@@ -1,4 +1,5 @@
 import type { AssessedPoint, Assessment, VerdictRow } from '../../assessment/assessment';
+import type { RecordedCheck } from '../../checks/recorded-check';
 import type { MeasuringChain } from '../../uncertainty/measuring-chain';
 import type { Db } from '../db/database';
 import { newId } from '../db/ids';
@@ -16,6 +17,8 @@ export interface AssessmentInputRecord {
 	instrumentId: string | null;
 	analysisIds: string[];
 	captures: { id: string; name: string; startedAt: string | null; duration_s: number; sha256s: string[] }[];
+	/** What the checks of the captures said then; absent on assessments made before there were any. */
+	checks?: RecordedCheck[];
 }
 
 export interface StoredAssessment {

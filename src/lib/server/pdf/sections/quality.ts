@@ -1,10 +1,10 @@
 import type { Content } from 'pdfmake/interfaces';
-import { formatMoment } from '../../../report/dates';
+import { OUTCOME_WORDS } from '../../../checks/capture-check';
+import { formatDay, formatMoment } from '../../../report/dates';
 import { formatDuration, formatNumber } from '../../../units/format';
 import type { SheetContext } from '../sheet-context';
 import { heading, paragraph, ruledTable, soft } from '../typeset';
 
-const SEVERITY = { blocks: 'blocks a verdict', warns: 'warning', notes: 'note' } as const;
 const INTERVAL: Record<string, string> = {
 	window: '10/12 cycles',
 	'3s': '3 s',
@@ -12,22 +12,53 @@ const INTERVAL: Record<string, string> = {
 	'2h': '2 h'
 };
 
+/** What was found, each with what an engineer said against it; then what was checked and is in order, by capture. */
+function checkList({ quality, site }: SheetContext['model']): Content[] {
+	const passes = quality.checks.filter(({ outcome }) => outcome === 'passes');
+	const findings = quality.checks.filter(({ outcome }) => outcome !== 'passes');
+	const where = (capture: string | null) => capture ?? 'all captures';
+	const passedAt = [...new Set(passes.map(({ capture }) => capture))];
+	const inOrder = passedAt.map((capture) => [
+		where(capture),
+		[...new Set(passes.filter((one) => one.capture === capture).map(({ title }) => title))].join(', ')
+	]);
+	return [
+		findings.length === 0
+			? soft('The checks of the captures found nothing to remark on.')
+			: ruledTable(
+					[
+						{ head: 'Capture', width: 92 },
+						{ head: 'Check and weight', width: 108 },
+						{ head: 'Finding', width: '*' }
+					],
+					findings.map(({ capture, title, outcome, sentence, overrule }) => [
+						where(capture),
+						`${title}: ${OUTCOME_WORDS[outcome]}${overrule ? ', overruled' : ''}`,
+						overrule
+							? `${sentence}\nOverruled by ${overrule.by}, ${formatDay(overrule.at, site.timeZone)}: ${overrule.reason}`
+							: sentence
+					])
+				),
+		...(inOrder.length === 0
+			? []
+			: [
+					...heading('Checked and in order'),
+					ruledTable(
+						[
+							{ head: 'Capture', width: 92 },
+							{ head: 'Checks', width: '*' }
+						],
+						inOrder
+					)
+				])
+	];
+}
+
 export function qualitySection(context: SheetContext): Content[] {
 	const { quality, site } = context.model;
 	return [
 		...heading('What was found about the captures'),
-		quality.remarks.length === 0
-			? soft(
-					'The checks for clipping, dead channels, reversed or swapped sensors, wrong nominal frequency and too low a sampling rate found nothing.'
-				)
-			: ruledTable(
-					[
-						{ head: 'Capture', width: 110 },
-						{ head: 'Weight', width: 80 },
-						{ head: 'Finding', width: '*' }
-					],
-					quality.remarks.map((r) => [r.capture, SEVERITY[r.severity], r.sentence])
-				),
+		...checkList(context.model),
 		...heading('Flagged intervals'),
 		paragraph(
 			quality.flaggedTotal === 0

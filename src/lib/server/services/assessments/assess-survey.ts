@@ -1,10 +1,6 @@
 import { assess } from '../../../assessment/assess';
 import type { Assessment } from '../../../assessment/assessment';
-import { applicableSets } from '../../../limits/applicable-sets';
-import type { LimitSet } from '../../../limits/limit-set';
 import { toAssessedPoint } from '../../../register/assessed-point';
-import { countryOfTimeZone } from '../../../register/time-zones';
-import type { PointFacts } from '../../../register/point-facts';
 import { seriesForSurvey } from '../../analysis/survey-series';
 import { appendAudit } from '../../audit/audit-log';
 import { withTransaction, type Db } from '../../db/database';
@@ -14,9 +10,10 @@ import {
 	type AssessmentInputRecord,
 	type StoredAssessment
 } from '../../repositories/assessments.repository';
+import { limitSetOfPoint } from '../../read-models/point-limit-set';
+import { recordedChecks, surveyChecks } from '../../read-models/survey-checks';
 import { surveyChain } from '../../read-models/survey-chain';
 import { analysedCaptures, surveyEquipment } from '../../read-models/survey-equipment';
-import { limitSetsRepository } from '../../repositories/limit-sets.repository';
 import { toPointFacts } from '../../repositories/point-mapping';
 import { pointsRepository } from '../../repositories/points.repository';
 import type { Scope } from '../../repositories/scope';
@@ -35,22 +32,6 @@ export interface PreparedAssessment {
 	engineVersion: string;
 	input: AssessmentInputRecord;
 	assessment: Assessment;
-}
-
-/** The point's own limit set, or the one that suits it best, with the reason. */
-export async function limitSetOfPoint(
-	db: Db,
-	scope: Scope,
-	facts: PointFacts,
-	siteTimeZone: string
-): Promise<{ limitSet: LimitSet; reason: string } | null> {
-	const sets = limitSetsRepository(db, scope.practiceId);
-	if (facts.limitSetId !== null) {
-		const chosen = await sets.byId(facts.limitSetId);
-		return chosen === null ? null : { limitSet: chosen, reason: facts.limitSetReason };
-	}
-	const best = applicableSets({ ...facts, country: countryOfTimeZone(siteTimeZone) }, await sets.list())[0];
-	return best === undefined ? null : { limitSet: best.limitSet, reason: best.reason };
 }
 
 async function sourceHash(db: Db, limitSetId: number): Promise<string> {
@@ -82,13 +63,15 @@ export async function prepareAssessment(
 		measuringChain
 	);
 	const point = toAssessedPoint(facts);
+	const checks = await surveyChecks(db, scope, surveyId);
 	const assessment = assess({
 		point,
 		limitSet: chosen.limitSet,
 		series: gathered.series,
 		siteTimeZone: site.time_zone,
 		uncertainty,
-		decisionRule: survey.decision_rule
+		decisionRule: survey.decision_rule,
+		blocked: checks?.blocked ?? []
 	});
 	return {
 		clientId: survey.client_id,
@@ -112,7 +95,8 @@ export async function prepareAssessment(
 			measuringChain,
 			instrumentId: survey.instrument_id,
 			analysisIds: gathered.analysisIds,
-			captures: gathered.captures
+			captures: gathered.captures,
+			...(checks === null ? {} : { checks: recordedChecks(checks) })
 		}
 	};
 }

@@ -6,6 +6,7 @@ import type {
 	ReportInstrument,
 	ReportModel
 } from '../../../report/report-model';
+import type { RecordedCheck } from '../../../checks/recorded-check';
 import { parseSummary, type AnalysisParameters, type WaveformSummary } from '../../analysis/analysis-summary';
 import { parseSettings } from '../../analysis/capture-settings';
 import { decodeSeries } from '../../analysis/series-codec';
@@ -160,6 +161,19 @@ function reportCapture({ analysis, capture, files }: CaptureOfAnalysis): ReportC
 	};
 }
 
+/** Remarks of analyses whose assessment was made before checks were kept with it. */
+function checksBefore(behind: readonly CaptureOfAnalysis[]): RecordedCheck[] {
+	return behind.flatMap(({ analysis, capture }) =>
+		parseSummary(analysis.summary_json).quality.map(({ severity, sentence }) => ({
+			capture: capture.name,
+			title: 'Remark of the analysis',
+			outcome: severity,
+			sentence,
+			overrule: null
+		}))
+	);
+}
+
 async function analysedCapture(db: Db, scope: Scope, one: CaptureOfAnalysis): Promise<AnalysedCapture> {
 	const summary = parseSummary(one.analysis.summary_json);
 	const parameters = JSON.parse(one.analysis.parameters_json) as AnalysisParameters;
@@ -278,13 +292,6 @@ export async function gatherReport(
 	for (const one of behind) analysed.push(await analysedCapture(db, scope, one));
 	const period = periodOf(captures);
 	const table = limitSet.tables.find((candidate) => candidate.key === assessment.worst?.tableKey);
-	const remarks = behind.flatMap(({ analysis, capture }) =>
-		parseSummary(analysis.summary_json).quality.map(({ severity, sentence }) => ({
-			capture: capture.name,
-			severity,
-			sentence
-		}))
-	);
 	const actions = await actionsRepository(db, scope).ofSurvey(survey.id);
 	return withHash(
 		buildReportModel({
@@ -319,7 +326,7 @@ export async function gatherReport(
 			),
 			waveform: await waveformOf(blobs, analysed, assessment, input, table, facts.phaseNames),
 			trends: trendsOf(analysed, assessment, input, table),
-			quality: qualityOf(analysed, remarks),
+			quality: qualityOf(analysed, input.checks ?? checksBefore(behind)),
 			pointFacts: facts,
 			assessment,
 			assessmentId: stored.row.id,

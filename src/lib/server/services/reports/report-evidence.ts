@@ -43,7 +43,7 @@ function levelItem(row: VerdictRow, table: LimitTable | undefined): LevelItem {
 /** Flagged intervals, counted in the longest kind that each capture gives. */
 export function qualityOf(
 	captures: readonly AnalysedCapture[],
-	remarks: ReportModel['quality']['remarks']
+	checks: ReportModel['quality']['checks']
 ): ReportModel['quality'] {
 	const flagged: ReportModel['quality']['flagged'] = [];
 	let flaggedTotal = 0;
@@ -68,7 +68,7 @@ export function qualityOf(
 				});
 		});
 	}
-	return { remarks, flagged, flaggedTotal, intervalTotal };
+	return { checks, flagged, flaggedTotal, intervalTotal };
 }
 
 const number = (value: number | undefined): number | null =>
