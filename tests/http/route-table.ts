@@ -84,6 +84,7 @@ export const ROUTE_TABLE: Readonly<Record<string, RouteRule>> = {
 	'/(app)/surveys/[survey]': { for: CONSULTANTS, status: 303 },
 	'/(app)/surveys/[survey]/captures': consultants(),
 	'/(app)/surveys/[survey]/captures/[capture]': consultants(['confirm', 'instrument', 'remove']),
+	'/(app)/surveys/[survey]/captures/[capture]/checks': consultants(['overrule', 'takeBack']),
 	// The matrix's capture is COMTRADE, whose columns nobody has to tell.
 	'/(app)/surveys/[survey]/captures/[capture]/table': { for: CONSULTANTS, status: 303, actions: ['apply'] },
 	'/(app)/surveys/[survey]/point': consultants(['save', 'close', 'reopen']),

@@ -4,7 +4,7 @@ import { nextStage, surveyStages, type SurveyProgress } from '$lib/register/surv
 const fresh: SurveyProgress = {
 	surveyId: 's1',
 	point: { kind: 'pcc', system: 'four-wire', gaps: [] },
-	captures: { count: 0, files: 0, duration_s: 0, recognised: 0, working: 0, failed: 0 },
+	captures: { count: 0, files: 0, duration_s: 0, recognised: 0, working: 0, failed: 0, blocking: 0 },
 	readings: { analyses: 0, intervals: 0, flagged: 0 },
 	assessment: null,
 	actions: { count: 0, open: 0 },

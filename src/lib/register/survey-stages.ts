@@ -16,6 +16,8 @@ export interface SurveyProgress {
 		recognised: number;
 		working: number;
 		failed: number;
+		/** Checks that block the verdict and that nobody has overruled, as it stood at the last assessment. */
+		blocking: number;
 	};
 	/** Current analyses; the intervals are those of the longest kind each capture gives. */
 	readings: { analyses: number; intervals: number; flagged: number };
@@ -66,6 +68,12 @@ function capturesStage({ captures }: SurveyProgress): Omit<SurveyStage, 'href'> 
 		return { progress: 'open', text: `${text}; ${captures.failed} failed`, blockedBy: null };
 	if (captures.recognised > 0)
 		return { progress: 'open', text: `${text}; ${captures.recognised} to confirm`, blockedBy: null };
+	if (captures.blocking > 0)
+		return {
+			progress: 'open',
+			text: `${text}; ${count(captures.blocking, 'check')} ${captures.blocking === 1 ? 'blocks' : 'block'}`,
+			blockedBy: null
+		};
 	return { progress: 'done', text, blockedBy: null };
 }
 

@@ -2,6 +2,7 @@ import type { SurveyProgress } from '../../register/survey-stages';
 import type { IntervalKind } from '../../harmonics/intervals';
 import type { Db } from '../db/database';
 import type { AssessmentRow } from '../db/rows';
+import type { AssessmentInputRecord } from '../repositories/assessments.repository';
 import type { Scope } from '../repositories/scope';
 
 type Facts = Omit<SurveyProgress, 'surveyId' | 'point'>;
@@ -10,7 +11,7 @@ async function captures(
 	db: Db,
 	scope: Scope,
 	surveyId: string
-): Promise<Facts['captures'] & { latest: string }> {
+): Promise<Omit<Facts['captures'], 'blocking'> & { latest: string }> {
 	const rows = await db('captures')
 		.where({ practice_id: scope.practiceId, survey_id: surveyId })
 		.groupByRaw('status, removed_at is null')
@@ -103,6 +104,17 @@ async function assessment(
 	};
 }
 
+/** Read from what the current assessment kept: a rail on every page cannot check every capture anew. */
+async function blockingChecks(db: Db, scope: Scope, surveyId: string): Promise<number> {
+	const row = await db('assessments')
+		.where({ practice_id: scope.practiceId, survey_id: surveyId, is_current: 1 })
+		.first('input_json');
+	const { checks = [] } = row
+		? (JSON.parse(row.input_json) as Pick<AssessmentInputRecord, 'checks'>)
+		: { checks: [] };
+	return checks.filter(({ outcome, overrule }) => outcome === 'blocks' && overrule === null).length;
+}
+
 async function actions(db: Db, scope: Scope, surveyId: string): Promise<Facts['actions']> {
 	const row = await db('actions')
 		.where({ practice_id: scope.practiceId, survey_id: surveyId })
@@ -138,7 +150,7 @@ export async function loadSurveyProgress(
 	const { latest, ...captureFacts } = await captures(db, scope, surveyId);
 	const changedAt = latest > pointUpdatedAt ? latest : pointUpdatedAt;
 	return {
-		captures: captureFacts,
+		captures: { ...captureFacts, blocking: await blockingChecks(db, scope, surveyId) },
 		readings: await readings(db, scope, surveyId),
 		assessment: await assessment(db, scope, surveyId, changedAt),
 		actions: await actions(db, scope, surveyId),

@@ -1,5 +1,6 @@
 import type { Assessment, VerdictRow } from '../../assessment/assessment';
 import { engineerSentence } from '../../assessment/verdict-sentence';
+import type { RecordedCheck } from '../../checks/recorded-check';
 import { applicableSets } from '../../limits/applicable-sets';
 import type { LimitSet, LimitTable } from '../../limits/limit-set';
 import { countryOfTimeZone } from '../../register/time-zones';
@@ -53,6 +54,8 @@ export interface VerdictPage {
 				totalLimits: { index: 'THD' | 'TDD'; quantity: 'voltage' | 'current'; limit_pct: number }[];
 				/** What the rows' uncertainty budgets are made from; null on assessments made before there were any. */
 				measuringChain: MeasuringChain | null;
+				/** What the checks of the captures said when it was made; null on assessments made before there were any. */
+				checks: RecordedCheck[] | null;
 		  })
 		| null;
 	/** Why there is no verdict yet. */
@@ -183,7 +186,8 @@ function assessmentView(
 		limitSetReason: input.limitSet.reason,
 		overLimit: overLimit(rows),
 		totalLimits: totalLimits(rows),
-		measuringChain: input.measuringChain ?? null
+		measuringChain: input.measuringChain ?? null,
+		checks: input.checks?.filter(({ outcome }) => outcome !== 'passes') ?? null
 	};
 }
 

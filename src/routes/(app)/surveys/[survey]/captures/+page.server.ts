@@ -1,3 +1,4 @@
+import { countChecks } from '$lib/checks/check-counts';
 import { container } from '$lib/server/container';
 import { guard } from '$lib/server/http/guard';
 import { CAPTURE_SORTS } from '$lib/server/read-models/capture-list';
@@ -11,5 +12,7 @@ export const load = guard('capture.read', async (event: PageServerLoadEvent, act
 		event.params.survey,
 		query
 	);
-	return { timeZone: survey.timeZone, surveyId: survey.id, captures, jobs, query };
+	const checked = await container().services.checks.ofSurvey(actor, event.params.survey);
+	const checks = Object.fromEntries(checked.captures.map((one) => [one.id, countChecks(one.checks)]));
+	return { checks, timeZone: survey.timeZone, surveyId: survey.id, captures, jobs, query };
 });

@@ -1,4 +1,6 @@
 import { fail, redirect } from '@sveltejs/kit';
+import { countChecks } from '$lib/checks/check-counts';
+import { standing } from '$lib/checks/overrule';
 import { AppError } from '$lib/server/app-error';
 import { container } from '$lib/server/container';
 import { guard } from '$lib/server/http/guard';
@@ -22,6 +24,9 @@ function linesOf({ capture }: Detail) {
 
 export const load = guard('capture.read', async (event: PageServerLoadEvent, actor) => {
 	const detail = await container().services.captures.detail(actor, event.params.survey, event.params.capture);
+	const checks = (await container().services.checks.ofSurvey(actor, event.params.survey)).captures.find(
+		({ id }) => id === detail.capture.id
+	)?.checks;
 	const { suggestions: _suggestions, ...facts } = detail.capture.facts;
 	return {
 		surveyId: detail.survey.id,
@@ -30,6 +35,12 @@ export const load = guard('capture.read', async (event: PageServerLoadEvent, act
 		system: detail.survey.facts.system,
 		capture: { ...detail.capture, facts, settings: undefined },
 		isConfirmed: detail.capture.settings !== null,
+		checks: checks
+			? {
+					counts: countChecks(checks),
+					blocking: standing(checks, 'blocks').map(({ check }) => check.sentence)
+				}
+			: null,
 		jobs: detail.jobs,
 		lines: linesOf(detail),
 		recordedWith: await container().services.captureInstrument.of(
