@@ -21,6 +21,8 @@ export interface CheckReference {
 	captureId: string | null;
 	code: string;
 	channelIndex: number | null;
+	/** The finding as the person read it; one that reads otherwise by now is not what they spoke about. */
+	sentence: string;
 }
 
 /** The checks of a survey's captures, and an engineer's word against them. */
@@ -46,8 +48,8 @@ export function createChecksService({ db, clock, jobs }: ServiceDeps) {
 			);
 		await withTransaction(db, async (trx) => {
 			await requireOpen(trx, actor, surveyId);
-			const found = requireFound(await standingCheck(trx, actor, surveyId, reference), 'check');
-			if (!canOverrule(found.check) || found.overrule !== null)
+			const found = await standingCheck(trx, actor, surveyId, reference);
+			if (!found || !canOverrule(found.check) || found.overrule !== null)
 				throw new AppError(
 					'conflict',
 					'There is nothing to overrule here any more. Load the page again to see how the check stands.'
@@ -58,7 +60,7 @@ export function createChecksService({ db, clock, jobs }: ServiceDeps) {
 				capture_id: reference.captureId,
 				code: reference.code,
 				channel_index: reference.channelIndex,
-				sentence: found.check.sentence,
+				sentence: reference.sentence,
 				reason: said,
 				overruled_by: actor.userId,
 				created_at: now.toISOString()
@@ -70,7 +72,7 @@ export function createChecksService({ db, clock, jobs }: ServiceDeps) {
 					action: 'check.overruled',
 					subjectKind: 'check',
 					subjectId: id,
-					detail: { surveyId, ...reference, finding: found.check.sentence, reason: said }
+					detail: { surveyId, ...reference, reason: said }
 				},
 				now
 			);
@@ -119,12 +121,16 @@ async function standingCheck(
 	trx: Db,
 	actor: Actor,
 	surveyId: string,
-	{ captureId, code, channelIndex }: CheckReference
+	{ captureId, code, channelIndex, sentence }: CheckReference
 ): Promise<StandingCheck | undefined> {
 	const checks = await surveyChecks(trx, scopeOf(actor), surveyId);
 	const candidates = checks ? [...checks.together, ...checks.captures.flatMap((one) => one.checks)] : [];
 	return candidates.find(
-		(one) => one.captureId === captureId && one.check.code === code && one.check.channelIndex === channelIndex
+		(one) =>
+			one.captureId === captureId &&
+			one.check.code === code &&
+			one.check.channelIndex === channelIndex &&
+			one.check.sentence === sentence
 	);
 }
 

@@ -25,6 +25,7 @@ const overruleForm = z.object({
 	captureId: z.string(),
 	code: z.string().min(1),
 	channelIndex: z.union([z.literal(''), z.coerce.number().int().min(0)]),
+	sentence: z.string().min(1),
 	reason: z.string()
 });
 
@@ -36,7 +37,7 @@ export const actions = {
 		const form = overruleForm.safeParse(Object.fromEntries(await event.request.formData()));
 		if (!form.success)
 			return fail(422, { key: '', reason: '', problem: 'Choose a check and state a reason.' });
-		const { captureId, code, channelIndex, reason } = form.data;
+		const { captureId, code, channelIndex, sentence, reason } = form.data;
 		try {
 			await container().services.checks.overrule(
 				actor,
@@ -44,6 +45,7 @@ export const actions = {
 				{
 					captureId: captureId === '' ? null : captureId,
 					code,
+					sentence,
 					channelIndex: channelIndex === '' ? null : channelIndex
 				},
 				reason
