@@ -21,8 +21,8 @@ beforeEach(async () => {
 });
 afterEach(() => world.close());
 
-/** Four seconds at a point of 277 V; the second voltage lead hangs in the air. */
-function captureWithLooseLead() {
+/** Four seconds at a point of 277 V; the second voltage lead sits on the first conductor. */
+function captureWithMisplacedLead() {
 	const channels = threePhaseChannels({
 		voltage_V: 277,
 		voltageHarmonics: [{ order: 5, magnitude_pctOfFundamental: 2, phase_deg: 0 }],
@@ -30,18 +30,21 @@ function captureWithLooseLead() {
 		currentHarmonics: [{ order: 5, magnitude_pctOfFundamental: 3, phase_deg: 180 }],
 		lag_deg: 20
 	});
-	channels[1] = { ...channels[1]!, fundamental_rms: 0.05, harmonics: [] };
+	channels[1] = { ...channels[0]!, name: 'U2', phase: 'L2' };
 	const recording = synthesiseRecording(
 		{ frequency_Hz: 60, samplingRate_Hz: 7680, duration_s: 4, seed: 3, channels },
 		{ nominalFrequency_Hz: 60 }
 	);
 	const start = { local: '2026-03-10T15:05:00.000000', utcOffset_min: null };
-	return writeComtrade({ ...recording, start }, { revision: '1999', dataFormat: 'BINARY', stem: 'loose' });
+	return writeComtrade(
+		{ ...recording, start },
+		{ revision: '1999', dataFormat: 'BINARY', stem: 'misplaced' }
+	);
 }
 
 async function analysed(): Promise<{ surveyId: string; captureId: string }> {
 	const { surveyId } = await surveyAtPoint(world.db, owner);
-	await upload(world.container, owner, surveyId, captureWithLooseLead());
+	await upload(world.container, owner, surveyId, captureWithMisplacedLead());
 	await workOff(world.container);
 	const captureId = await onlyCapture(world.db, surveyId);
 	await confirmAsSuggested(world.container, owner, surveyId, captureId);
@@ -66,17 +69,14 @@ async function current(surveyId: string) {
 	return (await assessmentsRepository(world.db, scopeOf(owner)).currentOf(surveyId))!;
 }
 
-const REASON = 'The lead of this phase was seen to hang loose; the client wants the figures shown.';
+const REASON = 'The second lead was on the first conductor; the client wants the figures shown.';
 
-describe('a capture with a loose voltage lead', () => {
+describe('a capture with a voltage lead on the wrong conductor', () => {
 	it('gives no verdict on that phase until it is overruled, and again none once that is taken back', async () => {
 		const { surveyId } = await analysed();
 		const { checks } = world.container.services;
 		const found = await blocking(surveyId);
-		expect(found.map(({ code, channelIndex }) => [code, channelIndex])).toEqual([
-			['dead-channel', 1],
-			['voltage-far-from-nominal', 1]
-		]);
+		expect(found.map(({ code, channelIndex }) => [code, channelIndex])).toEqual([['same-signal', 1]]);
 		const onL2 = async () =>
 			(await current(surveyId)).assessment.rows.filter(
 				({ quantity, phase }) => quantity === 'voltage' && phase === 'L2'
@@ -105,14 +105,9 @@ describe('a capture with a loose voltage lead', () => {
 		for (const { id } of overrules) await checks.takeBack(owner, surveyId, id);
 		await workOff(world.container);
 		expect((await onL2()).every(({ verdict }) => verdict === 'not-assessed')).toBe(true);
-		expect(await world.db('check_overrules').where({ survey_id: surveyId })).toHaveLength(2);
+		expect(await world.db('check_overrules').where({ survey_id: surveyId })).toHaveLength(1);
 		const audit = await world.db('audit_events').where('action', 'like', 'check.%').orderBy('id');
-		expect(audit.map(({ action }) => action)).toEqual([
-			'check.overruled',
-			'check.overruled',
-			'check.overrule-taken-back',
-			'check.overrule-taken-back'
-		]);
+		expect(audit.map(({ action }) => action)).toEqual(['check.overruled', 'check.overrule-taken-back']);
 	});
 
 	it('takes no reason that tells nothing, no second word, and no word against another finding', async () => {
