@@ -54,11 +54,11 @@ export interface LayoutGuess {
 const TREND_STEP_S = 0.999;
 
 const SEPARATOR_NAMES: Record<TableLayout['separator'], string> = {
-	',': 'commas',
-	';': 'semicolons',
-	'\t': 'tabs',
-	'|': 'bars',
-	' ': 'blanks'
+	',': 'Commas',
+	';': 'Semicolons',
+	'\t': 'Tabs',
+	'|': 'Bars',
+	' ': 'Blanks'
 };
 
 export function headLinesOf(lines: readonly string[]): HeadLine[] {
