@@ -22,7 +22,8 @@ export function checkClock(subject: CaptureSubject, point: CheckedPoint): Captur
 		...ofTheReader(subject)
 	].filter((one) => one !== null);
 	const whole = { title: TITLE, channelIndex: null, evidence: clockPicture(subject, point) };
-	if (found.length > 0) return found.map((one) => ({ ...whole, ...one }));
+	if (found.length > 0)
+		return found.map((one) => ({ ...whole, ...one, sentence: spoken(one.sentence, point.timeZone) }));
 	return [
 		{
 			...whole,
@@ -33,10 +34,15 @@ export function checkClock(subject: CaptureSubject, point: CheckedPoint): Captur
 				subject.statedStart === null
 					? 'The file tells no start; the one that was entered lies before the upload.'
 					: subject.statedStart.utcOffset_min === null
-						? `The file tells no zone; its start was read in ${point.timeZone}, where the clock did not change around it.`
-						: `The zone that the file states is that of ${point.timeZone} at that date.`
+						? `The file tells no zone; its start was read in ${spoken(point.timeZone, point.timeZone)}, where the clock did not change around it.`
+						: `The zone that the file states is that of ${spoken(point.timeZone, point.timeZone)} at that date.`
 		}
 	];
+}
+
+/** Names of zones without the low line that stands for a space; elsewhere it sets a subscript. */
+function spoken(text: string, timeZone: string): string {
+	return text.replaceAll(timeZone, timeZone.replaceAll('_', ' '));
 }
 
 type Finding = Pick<CaptureCheck, 'code' | 'outcome' | 'sentence' | 'advice'>;
