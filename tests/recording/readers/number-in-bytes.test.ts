@@ -1,6 +1,12 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { COMMA, DOT, isBlankInBytes, numberInBytes } from '$lib/recording/readers/number-in-bytes';
+import {
+	COMMA,
+	DOT,
+	isBlankInBytes,
+	numberInBytes,
+	numberInText
+} from '$lib/recording/readers/number-in-bytes';
 import { PINNED_SEED } from '../../synthesis/waveform-arbitrary';
 
 const bytes = (text: string) => new TextEncoder().encode(text);
@@ -56,6 +62,13 @@ describe('a number in bytes', () => {
 		'1e400',
 		'-1e400'
 	])('%j is no number', (text) => expect(parse(text)).toBeNaN());
+
+	it('is told from a very long text that is none without trying its digits in every division', () => {
+		const digits = '9'.repeat(400_000);
+		expect(numberInText(`${digits}x`)).toBeNaN();
+		expect(numberInText(`0.${digits}`)).toBe(1);
+		expect(numberInText('5.')).toBe(5);
+	});
 
 	it('keeps the sign of zero', () => expect(Object.is(parse('-0'), -0)).toBe(true));
 

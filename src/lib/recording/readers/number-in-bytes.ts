@@ -90,7 +90,8 @@ export function numberInBytes(bytes: Uint8Array, start: number, end: number, dec
 	return negative ? -magnitude : magnitude;
 }
 
-const NUMBER_TEXT = /^[+-]?(\d+\.?\d*|\.\d+)([eE][+-]?\d+)?$/;
+/** No two runs of digits side by side: where a long text is no number, they would be tried in every division. */
+const NUMBER_TEXT = /^[+-]?(\d+(\.\d*)?|\.\d+)([eE][+-]?\d+)?$/;
 
 /** The same for a short text field with a decimal point; NaN when it is not a number. */
 export function numberInText(text: string): number {
