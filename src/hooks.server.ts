@@ -12,7 +12,13 @@ import { authHandle, clearSessionCookie, pinAuthAddress } from '$lib/server/auth
 import { sessionCookieName } from '$lib/server/auth/session-cookie';
 import { hashToken } from '$lib/server/auth/tokens';
 import { parseConfig } from '$lib/server/config';
-import { buildContainer, container, installContainer, installedContainer } from '$lib/server/container';
+import {
+	buildContainer,
+	container,
+	installContainer,
+	installedContainer,
+	type Container
+} from '$lib/server/container';
 import { assertMigrated } from '$lib/server/db/pending-migrations';
 import { isForeignWrite, securityHeaders } from '$lib/server/http/security-headers';
 
@@ -20,13 +26,29 @@ const MIGRATIONS = Object.keys(import.meta.glob('/migrations/*.ts')).map((path) 
 	path.slice(path.lastIndexOf('/') + 1)
 );
 
+const SWEEP_EVERY_MS = 24 * 3600_000;
+
+/** Interrupted uploads that nobody went on with; a failed sweep is tried again the next day. */
+async function clearInterrupted({ services, log }: Container): Promise<void> {
+	try {
+		const cleared = await services.receiving.sweep();
+		if (cleared.sessions + cleared.files > 0) log.info(cleared, 'interrupted uploads cleared away');
+	} catch (cause) {
+		log.error({ err: cause }, 'interrupted uploads could not be cleared away');
+	}
+}
+
 export const init: ServerInit = async () => {
 	if (building || installedContainer()) return;
 	const built = buildContainer(parseConfig(process.env), 'web');
 	pinAuthAddress(built.config.origin);
 	await assertMigrated(built.db, MIGRATIONS);
 	installContainer(built);
+	const sweeping = setInterval(() => void clearInterrupted(built), SWEEP_EVERY_MS);
+	sweeping.unref();
+	void clearInterrupted(built);
 	process.once('sveltekit:shutdown', async () => {
+		clearInterval(sweeping);
 		await built.db.destroy();
 		built.log.info('web stopped');
 	});

@@ -41,6 +41,11 @@ async function oneOfEverything(container: Container, owner: Actor, clientName: s
 		'later.csv',
 		new Blob(['t,u\n']).stream() as unknown as Parameters<typeof container.services.uploads.receive>[3]
 	);
+	const session = await container.services.receiving.announce(owner, made.surveyId, {
+		name: 'under-way.dat',
+		size_bytes: 10,
+		sha256: null
+	});
 	const ids = {
 		instrument: newId(),
 		sensor: newId(),
@@ -137,6 +142,7 @@ async function oneOfEverything(container: Container, owner: Actor, clientName: s
 		job,
 		file: file?.id ?? '',
 		upload: waiting.id,
+		session,
 		limitSet: String(set?.id),
 		token: 'x'.repeat(43),
 		...ids

@@ -21,7 +21,9 @@ export interface RouteRule {
 	query?: string;
 	actions?: readonly string[] | Readonly<Record<string, Audience>>;
 	/** Of a +server.ts: method → what a permitted caller gets with an empty body. */
-	methods?: Readonly<Partial<Record<'GET' | 'POST' | 'PUT' | 'PATCH' | 'DELETE', readonly number[]>>>;
+	methods?: Readonly<
+		Partial<Record<'GET' | 'HEAD' | 'POST' | 'PUT' | 'PATCH' | 'DELETE', readonly number[]>>
+	>;
 }
 
 const consultants = (actions: readonly string[] = []): RouteRule => ({ for: CONSULTANTS, actions });
@@ -135,6 +137,21 @@ export const ROUTE_TABLE: Readonly<Record<string, RouteRule>> = {
 	'/(api)/api/v1/jobs/[job]/events': { for: CONSULTANTS, methods: { GET: [200] } },
 	'/(api)/api/v1/reports/[revision]/pdf': { for: SIGNED_IN, methods: { GET: [200] } },
 	'/(api)/api/v1/surveys/[survey]/captures': { for: CONSULTANTS, methods: { POST: [422] } },
+	'/(api)/api/v1/surveys/[survey]/upload-sessions': {
+		for: CONSULTANTS,
+		// Without the protocol's own header: precondition failed.
+		methods: { GET: [200], POST: [412] }
+	},
+	'/(api)/api/v1/surveys/[survey]/upload-sessions/[session]': {
+		for: CONSULTANTS,
+		// Sessions belong to the person who began them.
+		methods: { HEAD: [404, 412], PATCH: [404, 412], DELETE: [204, 404] }
+	},
+	'/(api)/api/v1/surveys/[survey]/upload-sessions/[session]/arrival': {
+		for: CONSULTANTS,
+		methods: { POST: [404, 409] }
+	},
+	'/(api)/api/v1/surveys/[survey]/uploads/known': { for: CONSULTANTS, methods: { POST: [422], PUT: [422] } },
 	'/(api)/api/v1/surveys/[survey]/uploads': { for: CONSULTANTS, methods: { PUT: [200, 201, 422] } },
 	'/(api)/api/v1/surveys/[survey]/uploads/[upload]': { for: CONSULTANTS, methods: { DELETE: [204] } }
 };

@@ -29,6 +29,7 @@ const environment = z
 			.default(''),
 		BUCKET_CACHE_GB: z.coerce.number().positive().default(20),
 		UPLOAD_LIMIT_MB: z.coerce.number().positive().default(2048),
+		STORAGE_QUOTA_GB: z.coerce.number().positive().optional(),
 		SESSION_DAYS: z.coerce.number().positive().max(90).default(14),
 		WORKER_POLL_MS: z.coerce.number().int().min(20).default(250)
 	})
@@ -77,6 +78,8 @@ export interface Config {
 	/** Room for local copies of what lies in the bucket. */
 	bucketCache_bytes: number;
 	uploadLimit_bytes: number;
+	/** Originals that one practice may keep; null sets no bound. */
+	storageQuota_bytes: number | null;
 	session_days: number;
 	workerPoll_ms: number;
 	/** The local mailbox can be read in the browser: demo and development only. */
@@ -105,6 +108,7 @@ export function parseConfig(env: Record<string, string | undefined>): Config {
 		bucket: bucketOf(value),
 		bucketCache_bytes: value.BUCKET_CACHE_GB * 1e9,
 		uploadLimit_bytes: value.UPLOAD_LIMIT_MB * 1024 * 1024,
+		storageQuota_bytes: value.STORAGE_QUOTA_GB === undefined ? null : value.STORAGE_QUOTA_GB * 1024 ** 3,
 		session_days: value.SESSION_DAYS,
 		workerPoll_ms: value.WORKER_POLL_MS,
 		mailboxVisible: value.SMTP_URL === undefined && value.SINEWRIGHT_MODE !== 'production'

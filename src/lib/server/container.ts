@@ -31,6 +31,7 @@ import { createCapturesService } from './services/captures.service';
 import { createChecksService } from './services/checks.service';
 import { createReadingsService } from './services/readings.service';
 import { createTablesService } from './services/tables.service';
+import { createReceivingService } from './services/receiving.service';
 import { createUploadsService } from './services/uploads.service';
 import { openBlobStore } from './storage/open-blob-store';
 
@@ -63,6 +64,7 @@ function buildServices(deps: ServiceDeps) {
 		queries: createQueriesService(deps),
 		desk: createDeskService(deps),
 		uploads: createUploadsService(deps),
+		receiving: createReceivingService(deps),
 		captures: createCapturesService(deps),
 		tables: createTablesService(deps),
 		checks: createChecksService(deps),
