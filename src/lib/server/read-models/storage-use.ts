@@ -22,7 +22,9 @@ export async function storageUse(
 		.where('capture_files.practice_id', practiceId)
 		.whereNull('captures.removed_at')
 		.select('capture_files.sha256', 'capture_files.size_bytes')
-		.union(db('uploads').where({ practice_id: practiceId }).select('sha256', 'size_bytes'));
+		.union(
+			(query) => void query.from('uploads').where({ practice_id: practiceId }).select('sha256', 'size_bytes')
+		);
 	const kept = await db
 		.from(originals.as('originals'))
 		.sum<{ total: number | null }>({ total: 'size_bytes' })
