@@ -1,4 +1,4 @@
-import { problemSentence, RequestProblem } from './request-problem';
+import { ask } from './ask';
 
 export interface IntakeOutcome {
 	jobs: { jobId: string; name: string; files: string[] }[];
@@ -13,18 +13,6 @@ export interface WaveformSlice {
 	sampleCount: number;
 	decimated: boolean;
 	channels: { channelIndex: number; points: (number | null)[] }[];
-}
-
-async function ask(path: string, init: RequestInit = {}): Promise<Response> {
-	const response = await fetch(path, {
-		...init,
-		headers: { accept: 'application/json', ...init.headers }
-	}).catch((cause: unknown) => {
-		if (cause instanceof DOMException && cause.name === 'AbortError') throw cause;
-		throw new RequestProblem('The server cannot be reached. Check the connection and try again.');
-	});
-	if (!response.ok) throw new RequestProblem(problemSentence(response.status, await response.text()));
-	return response;
 }
 
 /** Hands uploaded files over to be sorted into sets and read. */
