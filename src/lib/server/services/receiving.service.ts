@@ -17,7 +17,8 @@ import {
 import { uploadsRepository } from '../repositories/uploads.repository';
 import type { ServiceDeps } from '../service-deps';
 import { createReceivingFolder } from '../storage/receiving-folder';
-import { cleanFileName, type ReceivedUpload } from './uploads.service';
+import { cleanFileName } from './intake/file-name';
+import type { ReceivedUpload } from './uploads.service';
 
 const SHA256 = /^[0-9a-f]{64}$/;
 /** An interrupted upload is kept for a week after its last byte: long enough for a journey home. */
