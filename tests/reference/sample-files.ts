@@ -52,6 +52,7 @@ export interface ExpectedFile {
 	samples?: number;
 	rows?: number;
 	fs_hz?: number;
+	fs_source?: string;
 	form?: string;
 	frames?: number;
 	f1_hz_per_10s?: number[];
