@@ -78,6 +78,7 @@ export const ROUTE_TABLE: Readonly<Record<string, RouteRule>> = {
 	'/(app)/practice/history': owner(),
 	'/(app)/practice/letterhead': owner(['default']),
 	'/(app)/practice/outbox': owner(['retry']),
+	'/(app)/practice/storage': owner(['default']),
 	'/(app)/practice/people': owner(['invite', 'resend', 'withdraw', 'role', 'remove']),
 	'/(app)/queries': consultants(),
 	'/(app)/queries/[query]': consultants(['answer', 'close']),

@@ -1,6 +1,7 @@
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import type { Actor } from '$lib/access/access';
 import { letterheadSchema } from '$lib/register/letterhead';
+import { quotaOf, storageQuotaSchema } from '$lib/register/storage-quota';
 import { assertMigrated, pendingMigrations } from '$lib/server/db/pending-migrations';
 import { NOW, openWorld, personOf, practiceWithOwner, type World } from '../support/practice-world';
 
@@ -144,5 +145,32 @@ describe('start', () => {
 		await expect(assertMigrated(world.db, [...names, '29990101_later.ts'])).rejects.toThrow(
 			/npm run migrate/
 		);
+	});
+});
+
+describe('room for originals', () => {
+	it('is limited by the practice itself, never beyond what the installation gives, with a line in the history', async () => {
+		expect((await practice().storage(owner)).use).toMatchObject({ kept_bytes: 0, quota_bytes: null });
+		await practice().setStorageQuota(owner, 200e9);
+		expect((await practice().storage(owner)).use).toMatchObject({
+			quota_bytes: 200e9,
+			ownQuota_bytes: 200e9
+		});
+		expect((await practice().storage(stranger)).use.quota_bytes).toBeNull();
+		const events = await world.db('audit_events').where({ action: 'practice.changed' });
+		expect(JSON.parse(events[0]!.detail_json)).toEqual({ storageQuota_bytes: { from: null, to: 200e9 } });
+		world.container.config.storageQuota_bytes = 100e9;
+		expect((await practice().storage(owner)).use.quota_bytes).toBe(100e9);
+		await expect(practice().setStorageQuota(owner, 101e9)).rejects.toThrow(/at most 100 GB/);
+		await practice().setStorageQuota(owner, null);
+		expect((await practice().storage(owner)).use).toMatchObject({ quota_bytes: 100e9, ownQuota_bytes: null });
+	});
+
+	it('is entered in gigabytes as people write them', () => {
+		const read = (text: string) => {
+			const parsed = storageQuotaSchema.safeParse({ limit_GB: text });
+			return parsed.success ? quotaOf(parsed.data.limit_GB) : 'refused';
+		};
+		expect(['200', ' 1,5 GB', '', '0', 'much'].map(read)).toEqual([200e9, 1.5e9, null, 'refused', 'refused']);
 	});
 });

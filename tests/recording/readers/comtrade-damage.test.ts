@@ -187,7 +187,6 @@ describe('mutated captures', () => {
 			kind: fc.constantFrom(0, 0, 0, 1, 2, 3),
 			byte: fc.oneof(fc.nat(255), fc.constantFrom(0x2c, 0x0a, 0x30, 0x39, 0x2d))
 		});
-		const started = performance.now();
 		fc.assert(
 			fc.property(
 				fc.nat(originals.length - 1),
@@ -209,7 +208,5 @@ describe('mutated captures', () => {
 			),
 			{ seed: PINNED_SEED, numRuns: 4000 }
 		);
-		// A mutated capture of a few kilobytes is settled in well under a millisecond; 20 s would be 5 ms each.
-		expect(performance.now() - started).toBeLessThan(20_000);
 	});
 });

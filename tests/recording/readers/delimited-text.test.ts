@@ -278,7 +278,6 @@ describe('mutated tables', () => {
 			kind: fc.constantFrom(0, 0, 0, 1, 2, 3),
 			byte: fc.oneof(fc.nat(255), fc.constantFrom(0x2c, 0x3b, 0x09, 0x0a, 0x0d, 0x22, 0x30, 0x3a, 0x2d))
 		});
-		const started = performance.now();
 		fc.assert(
 			fc.property(fc.nat(2), fc.array(edit, { minLength: 1, maxLength: 6 }), (which, edits) => {
 				let bytes = [...(originals[which] as Uint8Array)];
@@ -300,7 +299,5 @@ describe('mutated tables', () => {
 			}),
 			{ seed: PINNED_SEED, numRuns: 3000 }
 		);
-		// A few milliseconds each, for tables of sixty rows.
-		expect(performance.now() - started).toBeLessThan(40_000);
 	});
 });

@@ -9,6 +9,8 @@ export interface StorageUse {
 	expected_bytes: number;
 	/** The smaller of the practice's own and the installation's setting; null where neither says. */
 	quota_bytes: number | null;
+	/** The practice's own setting alone. */
+	ownQuota_bytes: number | null;
 }
 
 export async function storageUse(
@@ -36,6 +38,37 @@ export async function storageUse(
 	return {
 		kept_bytes: Number(kept?.total ?? 0),
 		expected_bytes: await uploadSessionsRepository(db, { practiceId }).expected_bytes(exceptSessionId),
+		ownQuota_bytes: practice?.storage_quota_bytes ?? null,
 		quota_bytes: quotas.length === 0 ? null : Math.min(...quotas)
 	};
+}
+
+export interface LargeCapture {
+	id: string;
+	name: string;
+	surveyId: string;
+	surveyNumber: string;
+	size_bytes: number;
+	createdAt: string;
+}
+
+/** The captures whose originals take the most room. */
+export async function largestCaptures(db: Db, practiceId: string, most: number): Promise<LargeCapture[]> {
+	const rows: LargeCapture[] = await db('captures')
+		.join('capture_files', 'capture_files.capture_id', 'captures.id')
+		.join('surveys', 'surveys.id', 'captures.survey_id')
+		.where('captures.practice_id', practiceId)
+		.whereNull('captures.removed_at')
+		.groupBy('captures.id')
+		.orderBy('size_bytes', 'desc')
+		.limit(most)
+		.select({
+			id: 'captures.id',
+			name: 'captures.name',
+			surveyId: 'captures.survey_id',
+			surveyNumber: 'surveys.number',
+			createdAt: 'captures.created_at',
+			size_bytes: db.raw('sum(capture_files.size_bytes)')
+		});
+	return rows;
 }

@@ -14,6 +14,10 @@ export function practiceRepository(db: Db, scope: { practiceId: string }) {
 
 		async update(settings: PracticeSettings): Promise<void> {
 			await db('practices').where({ id: scope.practiceId }).update(settings);
+		},
+
+		async setStorageQuota(quota_bytes: number | null): Promise<void> {
+			await db('practices').where({ id: scope.practiceId }).update({ storage_quota_bytes: quota_bytes });
 		}
 	};
 }

@@ -17,6 +17,7 @@ import type { ListPage, ListQuery } from '../read-models/list-query';
 import { listMail, type MailLine, type MailSort } from '../read-models/mail-list';
 import { mailOutboxRepository } from '../repositories/mail-outbox.repository';
 import { practiceRepository, type PracticeSettings } from '../repositories/practice.repository';
+import { largestCaptures, storageUse, type LargeCapture, type StorageUse } from '../read-models/storage-use';
 import type { ServiceDeps } from '../service-deps';
 
 function toLetterhead(row: PracticeRow): Letterhead {
@@ -70,8 +71,10 @@ function changes(before: Letterhead, after: Letterhead): Record<string, { from: 
 	);
 }
 
+const LARGEST_SHOWN = 12;
+
 /** The owner's own area: letterhead and house rules, outgoing mail, history. */
-export function createPracticeService({ db, clock }: ServiceDeps) {
+export function createPracticeService({ db, clock, config }: ServiceDeps) {
 	async function letterhead(actor: Actor): Promise<Letterhead> {
 		requirePermission(actor, 'practice.manage');
 		return toLetterhead(await practiceRepository(db, actor).get());
@@ -88,6 +91,45 @@ export function createPracticeService({ db, clock }: ServiceDeps) {
 				trx,
 				actor,
 				{ action: 'practice.changed', subjectKind: 'practice', subjectId: actor.practiceId, detail },
+				clock()
+			);
+		});
+	}
+
+	/** Room that originals take, and what of it the practice may set itself: never more than the installation gives. */
+	async function storage(
+		actor: Actor
+	): Promise<{ use: StorageUse; largest: LargeCapture[]; installationQuota_bytes: number | null }> {
+		requirePermission(actor, 'practice.manage');
+		return {
+			use: await storageUse(db, config, actor.practiceId),
+			largest: await largestCaptures(db, actor.practiceId, LARGEST_SHOWN),
+			installationQuota_bytes: config.storageQuota_bytes
+		};
+	}
+
+	async function setStorageQuota(actor: Actor, quota_bytes: number | null): Promise<void> {
+		requirePermission(actor, 'practice.manage');
+		const most_bytes = config.storageQuota_bytes;
+		if (quota_bytes !== null && most_bytes !== null && quota_bytes > most_bytes)
+			throw new AppError(
+				'invalid',
+				`This installation gives a practice at most ${most_bytes / 1e9} GB. Enter that or less, or leave the field empty.`
+			);
+		await withTransaction(db, async (trx) => {
+			const practice = practiceRepository(trx, actor);
+			const { storage_quota_bytes: from } = await practice.get();
+			if (from === quota_bytes) return;
+			await practice.setStorageQuota(quota_bytes);
+			await appendAudit(
+				trx,
+				actor,
+				{
+					action: 'practice.changed',
+					subjectKind: 'practice',
+					subjectId: actor.practiceId,
+					detail: { storageQuota_bytes: { from, to: quota_bytes } }
+				},
 				clock()
 			);
 		});
@@ -128,5 +170,5 @@ export function createPracticeService({ db, clock }: ServiceDeps) {
 		};
 	}
 
-	return { letterhead, saveLetterhead, outbox, retryMail, history };
+	return { letterhead, saveLetterhead, storage, setStorageQuota, outbox, retryMail, history };
 }
