@@ -144,6 +144,8 @@ async function oneOfEverything(container: Container, owner: Actor, clientName: s
 		upload: waiting.id,
 		session,
 		limitSet: String(set?.id),
+		level: '0',
+		tile: '0',
 		token: 'x'.repeat(43),
 		...ids
 	};

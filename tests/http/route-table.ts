@@ -90,6 +90,7 @@ export const ROUTE_TABLE: Readonly<Record<string, RouteRule>> = {
 	'/(app)/surveys/[survey]/captures/[capture]/checks': consultants(['overrule', 'takeBack']),
 	// The matrix's capture is COMTRADE, whose columns nobody has to tell.
 	'/(app)/surveys/[survey]/captures/[capture]/table': { for: CONSULTANTS, status: 303, actions: ['apply'] },
+	'/(app)/surveys/[survey]/captures/[capture]/view': consultants(['prepare']),
 	'/(app)/surveys/[survey]/point': consultants(['save', 'close', 'reopen']),
 	'/(app)/surveys/[survey]/readings': consultants(),
 	'/(app)/surveys/[survey]/remedies': consultants([
@@ -127,9 +128,16 @@ export const ROUTE_TABLE: Readonly<Record<string, RouteRule>> = {
 
 	'/(api)/api/v1/captures/[capture]/files/[file]': { for: CONSULTANTS, methods: { GET: [200] } },
 	'/(api)/api/v1/captures/[capture]/table-preview': { for: CONSULTANTS, methods: { POST: [422] } },
+	'/(api)/api/v1/captures/[capture]/tiles/[level]/[tile]': { for: CONSULTANTS, methods: { GET: [200] } },
+	'/(api)/api/v1/captures/[capture]/view': { for: CONSULTANTS, methods: { GET: [200] } },
 	'/(api)/api/v1/captures/[capture]/waveform': {
 		for: CONSULTANTS,
 		query: 'from_s=0&to_s=0.1&points=100',
+		methods: { GET: [200] }
+	},
+	'/(api)/api/v1/captures/[capture]/window': {
+		for: CONSULTANTS,
+		query: 'at_s=0.1',
 		methods: { GET: [200] }
 	},
 	'/(api)/api/v1/certificates/[certificate]': { for: CONSULTANTS, methods: { GET: [200] } },

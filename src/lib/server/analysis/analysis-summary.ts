@@ -46,6 +46,16 @@ const summaryChannel = z.object({
 	toPrimary: z.number()
 });
 
+const summaryEvent = z.object({
+	kind: z.enum(['dip', 'swell', 'interruption']),
+	/** Seconds after sample 0. */
+	start_s: z.number(),
+	end_s: z.number(),
+	extreme_pct: z.number(),
+	phases: z.array(z.enum(PHASES))
+});
+export type SummaryEvent = z.infer<typeof summaryEvent>;
+
 const waveformSummary = z.object({
 	kind: z.literal('waveform'),
 	nominalFrequency_Hz: z.union([z.literal(50), z.literal(60)]),
@@ -57,7 +67,9 @@ const waveformSummary = z.object({
 	channels: z.array(summaryChannel),
 	quality: z.array(qualityRemark),
 	evidence: captureEvidence.optional(),
-	samples: samplesLayout
+	samples: samplesLayout,
+	/** Dips, swells and interruptions; absent in analyses from before they were kept, null where none could be looked for. */
+	events: z.array(summaryEvent).nullable().optional()
 });
 
 const trendSummary = z.object({

@@ -38,6 +38,9 @@ export interface PreparedAnalysis {
 	samples: StoredBlob | null;
 }
 
+/** Events that are kept with the summary; whoever has more looks at the flagged intervals. */
+const MOST_EVENTS = 2000;
+
 /** Stores the windows of one span as soon as they are there. */
 export type StorePart = (part: AnalysisPart) => Promise<void>;
 
@@ -104,7 +107,15 @@ export async function prepareWaveform(
 			channels: findings.whole.map(({ mapping, name }) => ({ ...mapping, name })),
 			quality: findings.quality,
 			evidence: captureEvidence(source, findings),
-			samples: { sha256: samples.sha256, ...layOutSamples(source, mappings) }
+			samples: { sha256: samples.sha256, ...layOutSamples(source, mappings) },
+			events:
+				findings.events?.slice(0, MOST_EVENTS).map(({ kind, start_s, end_s, extreme_pct, phases }) => ({
+					kind,
+					start_s,
+					end_s,
+					extreme_pct,
+					phases: phases.map(({ phase }) => phase)
+				})) ?? null
 		},
 		last: aggregatePart(collector, findings, {
 			start_ms: start_ms + 1000 * seen.start_s,

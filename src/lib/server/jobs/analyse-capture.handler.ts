@@ -1,7 +1,6 @@
 import { ENGINE_VERSION } from '../../harmonics/engine-version';
 import { nominalVoltagesByPhase_V } from '../../harmonics/nominal-voltages';
-import { openCapture, type OpenedCapture } from '../../recording/read-capture';
-import { parseToldLayout } from '../../recording/readers/delimited-text/table-layout-told';
+import type { OpenedCapture } from '../../recording/read-capture';
 import { parseSettings } from '../analysis/capture-settings';
 import {
 	prepareTrend,
@@ -15,14 +14,13 @@ import type { CaptureRow } from '../db/rows';
 import { captureSurvey, type CaptureSurvey } from '../read-models/capture-list';
 import { analysesRepository } from '../repositories/analyses.repository';
 import { capturesRepository } from '../repositories/captures.repository';
-import { openFileHandle, type FileHandle } from '../storage/file-handle';
-import { createScratchFolder, scratchRoot } from '../storage/scratch-folder';
 import { storedFilesRepository } from '../repositories/stored-files.repository';
 import { releaseCapture } from '../services/captures.service';
 import { analyseCapture } from './analyse-capture.job';
 import { assessSurvey } from './assess-survey.job';
 import type { JobHandler } from './handlers';
 import { JobCancelled, JobFailed, JobInterrupted, type JobContext } from './job-definition';
+import { openOriginals } from './open-originals';
 
 export const handle: JobHandler = async (container, rawPayload, context) => {
 	const { captureId, surveyId } = analyseCapture.payload.parse(rawPayload);
@@ -52,40 +50,6 @@ export const handle: JobHandler = async (container, rawPayload, context) => {
 		throw cause;
 	}
 };
-
-/** Opens the stored originals; what they hold may still be in them, so close them only at the very end. */
-async function openOriginals(
-	container: Container,
-	capture: CaptureRow,
-	context: JobContext
-): Promise<{ content: OpenedCapture; close: () => void }> {
-	const files = await capturesRepository(container.db, context).filesOf([capture.id]);
-	const total_bytes = files.reduce((sum, file) => sum + file.size_bytes, 0);
-	let done_bytes = 0;
-	const handles: FileHandle[] = [];
-	const scratch = createScratchFolder(scratchRoot(container.config.dataDir));
-	const close = () => {
-		handles.forEach((handle) => handle.close());
-		scratch.close();
-	};
-	try {
-		for (const file of files) {
-			await context.progress(done_bytes, total_bytes + 1, `reading ${file.name}`);
-			handles.push(openFileHandle(file.name, await container.blobs.localFile(file.sha256)));
-			done_bytes += file.size_bytes;
-		}
-		const opened = openCapture(handles, {
-			part: capture.part_key,
-			scratch,
-			...(capture.layout_json === null ? {} : { layout: parseToldLayout(capture.layout_json) })
-		});
-		if (!opened.ok) throw new JobFailed(opened.problem.sentence);
-		return { content: opened.value, close };
-	} catch (cause) {
-		close();
-		throw cause;
-	}
-}
 
 async function prepare(
 	container: Container,

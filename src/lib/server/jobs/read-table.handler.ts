@@ -9,6 +9,7 @@ import { openFileHandle, type FileHandle } from '../storage/file-handle';
 import { createScratchFolder, scratchRoot } from '../storage/scratch-folder';
 import type { JobHandler } from './handlers';
 import { JobFailed } from './job-definition';
+import { makePyramid, pyramidKey } from './make-pyramid.job';
 import { readTable } from './read-table.job';
 
 /** Reads a table whole by what was told; the capture then waits for its channels, or still for its columns. */
@@ -46,10 +47,20 @@ export const handle: JobHandler = async (container, rawPayload, context) => {
 					facts_json: JSON.stringify(facts),
 					started_at: startedAt(content, survey),
 					duration_s: facts.duration_s,
-					problem: null
+					problem: null,
+					// What was drawn of another reading of the columns is not this capture any more.
+					pyramid_sha256: null,
+					pyramid_json: null
 				},
 				clock()
 			);
+			if (content.kind === 'waveform')
+				await container.jobs.enqueue(
+					trx,
+					makePyramid,
+					{ surveyId: capture.survey_id, captureId },
+					{ practiceId: context.practiceId, dedupeKey: pyramidKey(captureId) }
+				);
 			await context.finish(trx);
 		});
 	} finally {

@@ -15,6 +15,7 @@ import { openFileHandle, type FileHandle } from '../storage/file-handle';
 import { createScratchFolder, scratchRoot } from '../storage/scratch-folder';
 import type { JobHandler } from './handlers';
 import { JobCancelled, JobFailed, type JobContext } from './job-definition';
+import { makePyramid, pyramidKey } from './make-pyramid.job';
 import { recogniseCapture } from './recognise-capture.job';
 
 /** Opens the uploads; binary samples are not read. */
@@ -50,7 +51,7 @@ async function giveUp(
 
 /** One recording or trend of the files as a capture of its own. */
 async function addCapture(
-	{ clock }: Container,
+	{ clock, jobs }: Container,
 	trx: Db,
 	context: JobContext,
 	payload: ReturnType<typeof recogniseCapture.payload.parse>,
@@ -95,6 +96,13 @@ async function addCapture(
 		},
 		clock()
 	);
+	if (content.kind === 'waveform')
+		await jobs.enqueue(
+			trx,
+			makePyramid,
+			{ surveyId: survey.id, captureId: id },
+			{ practiceId: context.practiceId, dedupeKey: pyramidKey(id) }
+		);
 }
 
 /** A table of numbers whose columns only a person can tell: it is kept, and waits. */

@@ -91,6 +91,8 @@ export function capturesRepository(db: Db, scope: Scope) {
 					| 'layout_json'
 					| 'layout_template_id'
 					| 'instrument_id'
+					| 'pyramid_sha256'
+					| 'pyramid_json'
 				>
 			>,
 			now: Date
