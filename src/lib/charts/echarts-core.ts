@@ -2,7 +2,7 @@
  * The parts of ECharts in use, registered once. Import this file lazily in the browser: it is the largest chunk of
  * the application.
  */
-import { BarChart, CustomChart, LineChart } from 'echarts/charts';
+import { BarChart, CustomChart, HeatmapChart, LineChart } from 'echarts/charts';
 import {
 	DataZoomComponent,
 	GridComponent,
@@ -10,7 +10,8 @@ import {
 	MarkAreaComponent,
 	MarkLineComponent,
 	PolarComponent,
-	TooltipComponent
+	TooltipComponent,
+	VisualMapComponent
 } from 'echarts/components';
 import { init, use } from 'echarts/core';
 import { CanvasRenderer, SVGRenderer } from 'echarts/renderers';
@@ -18,6 +19,7 @@ import { CanvasRenderer, SVGRenderer } from 'echarts/renderers';
 use([
 	BarChart,
 	CustomChart,
+	HeatmapChart,
 	LineChart,
 	DataZoomComponent,
 	GridComponent,
@@ -26,6 +28,7 @@ use([
 	MarkLineComponent,
 	PolarComponent,
 	TooltipComponent,
+	VisualMapComponent,
 	CanvasRenderer,
 	SVGRenderer
 ]);

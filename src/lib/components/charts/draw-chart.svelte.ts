@@ -3,11 +3,13 @@ import type { Attachment } from 'svelte/attachments';
 
 /**
  * Draws into the element as soon as the chart library has arrived, redraws when the option changes and when the
- * element's size does. `onrange` reports the part shown, in axis units, after the reader has zoomed or moved.
+ * element's size does. `onrange` reports the part shown, in axis units, after the reader has zoomed or moved;
+ * `onpick` the value of what was clicked.
  */
 export function drawChart(
 	option: () => EChartsOption,
-	onrange?: (from: number, to: number) => void
+	onrange?: (from: number, to: number) => void,
+	onpick?: (value: unknown) => void
 ): Attachment<HTMLElement> {
 	return (element) => {
 		let disposed = false;
@@ -21,6 +23,7 @@ export function drawChart(
 			const observer = new ResizeObserver(() => chart.resize());
 			observer.observe(element);
 			if (onrange) chart.on('datazoom', () => reportRange(chart.getOption(), onrange));
+			if (onpick) chart.on('click', ({ value }) => onpick(value));
 			dispose = () => {
 				observer.disconnect();
 				chart.dispose();

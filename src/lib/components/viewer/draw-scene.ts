@@ -32,6 +32,8 @@ export interface Scene {
 	range: ViewRange;
 	lanes: LaneScene[];
 	samples: SampleRun | null;
+	/** Pixels stand for so much of a cycle that only the outline of the wave is left. */
+	isEnvelope: boolean;
 	flagged: readonly Stretch[];
 	events: readonly (Stretch & { label: string })[];
 	/** The harmonic window in hand. */
@@ -42,8 +44,9 @@ export interface Scene {
 
 export const PLOT_LEFT_PX = 62;
 export const PLOT_RIGHT_PX = 10;
-const TOP_PX = 8;
-const BOTTOM_PX = 44;
+/** Room for the flags of the cursors. */
+export const TOP_PX = 20;
+export const BOTTOM_PX = 44;
 const LANE_HEAD_PX = 20;
 const LANE_GAP_PX = 8;
 /** Pixels between samples from which on each is marked. */
@@ -167,11 +170,16 @@ function drawLane(
 		for (const { channel, columns, place } of traces) {
 			const look = lookOf(channel, mode);
 			if (columns) {
-				pen.bars(PLOT_LEFT_PX, ...joinedBars(columns, channel.toPrimary, y), {
-					color: look.color,
-					width: 1,
-					dash: []
-				});
+				const [low, high] = joinedBars(columns, channel.toPrimary, y);
+				if (!scene.isEnvelope) pen.bars(PLOT_LEFT_PX, low, high, look.color, 1);
+				else {
+					// Conductors lie over one another: a thin wash each, and both edges in the look of the line.
+					pen.bars(PLOT_LEFT_PX, low, high, look.color, 0.16);
+					const xs = Float64Array.from(low, (_, i) => PLOT_LEFT_PX + i + 0.5);
+					const edge = { color: look.color, width: 1.25, dash: look.dash === 'solid' ? [] : look.dash };
+					pen.line(xs, Float64Array.from(low), edge);
+					pen.line(xs, Float64Array.from(high), edge);
+				}
 			} else if (samples) {
 				const values = samples.values[place]!;
 				const xs = new Float64Array(values.length);

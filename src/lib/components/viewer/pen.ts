@@ -11,7 +11,7 @@ export type DotShape = 'circle' | 'rect' | 'triangle' | 'diamond';
 export interface Pen {
 	rect(x: number, y: number, width: number, height: number, color: string, opacity: number): void;
 	/** Vertical strokes, one per pixel from x0 on, each from `low` to `high`; NaN leaves one out. */
-	bars(x0: number, low: Float32Array, high: Float32Array, look: LineLook): void;
+	bars(x0: number, low: Float32Array, high: Float32Array, color: string, opacity: number): void;
 	/** Through all points; NaN breaks the line. */
 	line(xs: Float64Array, ys: Float64Array, look: LineLook): void;
 	dots(xs: Float64Array, ys: Float64Array, color: string, shape: DotShape): void;
@@ -37,8 +37,9 @@ export function canvasPen(context: CanvasRenderingContext2D): Pen {
 			context.fillRect(x, y, width, height);
 			context.globalAlpha = 1;
 		},
-		bars(x0, low, high, look) {
-			take({ ...look, dash: [] });
+		bars(x0, low, high, color, opacity) {
+			context.globalAlpha = opacity;
+			take({ color, width: 1, dash: [] });
 			context.beginPath();
 			for (let i = 0; i < low.length; i++) {
 				const y = low[i]!;
@@ -47,6 +48,7 @@ export function canvasPen(context: CanvasRenderingContext2D): Pen {
 				context.lineTo(x0 + i + 0.5, high[i]!);
 			}
 			context.stroke();
+			context.globalAlpha = 1;
 		},
 		line(xs, ys, look) {
 			take(look);
@@ -129,11 +131,12 @@ export function svgPen(): Pen & { file: (width: number, height: number, title: s
 				`<rect x="${short(x)}" y="${short(y)}" width="${short(width)}" height="${short(height)}" fill="${color}"${opacity < 1 ? ` fill-opacity="${opacity}"` : ''}/>`
 			);
 		},
-		bars(x0, low, high, look) {
+		bars(x0, low, high, color, opacity) {
 			let path = '';
 			for (let i = 0; i < low.length; i++)
 				if (low[i] === low[i]) path += `M${x0 + i + 0.5} ${short(low[i]!)}V${short(high[i]!)}`;
-			parts.push(`<path d="${path}" ${stroke({ ...look, dash: [] })}/>`);
+			const look = stroke({ color, width: 1, dash: [] });
+			parts.push(`<path d="${path}" ${look}${opacity < 1 ? ` stroke-opacity="${opacity}"` : ''}/>`);
 		},
 		line(xs, ys, look) {
 			let path = '';

@@ -64,3 +64,11 @@ export function lengthText(length_s: number): string {
 	if (magnitude < 600) return `${length_s.toPrecision(5)} s`;
 	return secondsText(length_s, 1);
 }
+
+/** A value to so many significant digits, without a power of ten. */
+export function significant(value: number, digits: number): string {
+	if (!Number.isFinite(value)) return 'no data';
+	if (value === 0) return '0';
+	const decimals = Math.max(0, Math.min(12, digits - 1 - Math.floor(Math.log10(Math.abs(value)))));
+	return value.toFixed(decimals).replace('-', '−');
+}

@@ -1,5 +1,5 @@
 import { fetchTile, fetchWindow, type WindowFigures } from '$lib/api-client/viewer';
-import { samplesPerEntry, TILE_ENTRIES, type PyramidTiming } from '$lib/recording/pyramid/pyramid-layout';
+import { TILE_ENTRIES, type PyramidTiming } from '$lib/recording/pyramid/pyramid-layout';
 import type { Tile } from '$lib/recording/pyramid/tile-codec';
 import { timeAxis, type TimeAxis } from '$lib/recording/pyramid/time-axis';
 import { columnsOf, pixelEntries, planView, samplesOf, type PyramidShape, type ViewPlan } from './columns';
@@ -38,6 +38,8 @@ const HELD_BYTES = 192 * 2 ** 20;
 const FEWEST_SAMPLES = 8;
 /** Up to this many samples in a pixel a line through all of them is drawn, more are drawn as bands. */
 const LINE_UP_TO = 1;
+/** Share of a cycle in one pixel from which on a wave is drawn by its outline. */
+const ENVELOPE_FROM_CYCLES = 0.2;
 const WINDOW_AFTER_MS = 120;
 
 /** The state of one viewer: which part of which channels, the cursors, the tiles behind it. */
@@ -206,6 +208,8 @@ export class Viewer {
 			range,
 			lanes,
 			samples,
+			isEnvelope:
+				(range.to_s - range.from_s) / plot_px > ENVELOPE_FROM_CYCLES / this.capture.nominalFrequency_Hz,
 			flagged: this.capture.flagged,
 			events: (this.capture.events ?? []).map(({ start_s, end_s, kind }) => ({
 				from_s: start_s,
@@ -277,11 +281,6 @@ export class Viewer {
 				}
 			);
 		}, WINDOW_AFTER_MS);
-	}
-
-	/** Samples that one drawn point stands for at most. */
-	samplesPerPoint(plan: ViewPlan): number {
-		return samplesPerEntry(plan.level);
 	}
 
 	close(): void {

@@ -8,6 +8,7 @@ export const READING_VIEWS = [
 	{ view: 'sequence', label: 'Sequence and unbalance' },
 	{ view: 'losses', label: 'Losses and neutral' },
 	{ view: 'over-time', label: 'Over time' },
+	{ view: 'heatmap', label: 'Orders over time' },
 	{ view: 'interharmonics', label: 'Interharmonics' },
 	{ view: 'reconstruction', label: 'Wave shape' }
 ] as const;
@@ -24,4 +25,9 @@ export interface NoWaveform {
 /** A view of single samples, asked of a window that cannot be looked at so closely. */
 export interface NoSamples {
 	kind: 'no-samples';
+}
+
+/** Order × time, of a capture that holds no interval of the quantity. */
+export interface NoIntervals {
+	kind: 'no-intervals';
 }

@@ -15,10 +15,11 @@ import { intervalTrend, percentileTable, type IntervalTrend, type PercentileTabl
 import { loadSurveyChain } from '../survey-chain';
 import { samplePowers_W } from './point-windows';
 import { powerReadings, type PowerReadings } from './power-view';
+import { heatmapReadings, type HeatmapReadings, type HeatScale } from './heatmap-view';
 import { interharmonicReadings, type InterharmonicReadings } from './interharmonics-view';
 import { lossReadings, type LossReadings } from './losses-view';
 import { overTimeReadings, type OverTimeReadings } from './over-time-view';
-import type { NoSamples, NoWaveform, ReadingView } from './reading-views';
+import type { NoIntervals, NoSamples, NoWaveform, ReadingView } from './reading-views';
 import { reconstructionReadings, type ReconstructionReadings } from './reconstruction-view';
 import { sequenceReadings, type SequenceReadings } from './sequence-view';
 import { waveformReadings, type WaveformReadings } from './spectrum-view';
@@ -34,6 +35,10 @@ export interface ReadingsQuestion {
 	order: number | 'total';
 	/** Null = the longest that holds two intervals or more. */
 	interval: IntervalKind | null;
+	/** Conductor of the order × time picture; null or left out = the first. */
+	phase?: Phase | null;
+	/** Null or left out = percent of the limit where there is one. */
+	scale?: HeatScale | null;
 }
 
 export interface TrendReadings {
@@ -64,11 +69,16 @@ export interface Readings {
 		| OverTimeReadings
 		| InterharmonicReadings
 		| ReconstructionReadings
+		| HeatmapReadings
+		| NoIntervals
 		| NoWaveform
 		| NoSamples;
 	/** Of the spectrum view only. */
 	trend: IntervalTrend | null;
 }
+
+/** Views that look at all intervals of the capture. */
+const WHOLE_COURSE: readonly ReadingView[] = ['spectrum', 'over-time', 'heatmap'];
 
 /** All that one view of the readings page shows of one analysed capture. Null while the capture has no analysis. */
 export async function readings(
@@ -91,8 +101,7 @@ export async function readings(
 			: await limitSetsRepository(db, scope.practiceId).byId(survey.facts.limitSetId);
 	const windows =
 		summary.kind === 'waveform' ? await windowRows(db, scope, analysis, summary, asked.window) : null;
-	const overview =
-		asked.view === 'spectrum' || asked.view === 'over-time' ? await analyses.seriesOf(analysis.id) : [];
+	const overview = WHOLE_COURSE.includes(asked.view) ? await analyses.seriesOf(analysis.id) : [];
 	const quantities = (['voltage', 'current'] as const).filter((quantity) =>
 		(windows?.rows ?? overview).some((row) => row.quantity === quantity)
 	);
@@ -112,6 +121,17 @@ export async function readings(
 				asked: asked.interval,
 				label
 			});
+		if (view === 'heatmap')
+			return (
+				heatmapReadings(own, {
+					point,
+					basis,
+					label,
+					highestOrder,
+					start_ms: captureStart_ms(analysis),
+					asked: { phase: asked.phase ?? null, scale: asked.scale ?? null, interval: asked.interval }
+				}) ?? { kind: 'no-intervals' }
+			);
 		if (!windows || summary.kind !== 'waveform') return { kind: 'no-waveform' };
 		const { cyclesPerWindow, nominalFrequency_Hz } = summary;
 		const samples = () => windowSamples(blobs, summary, windows, captureStart_ms(analysis));

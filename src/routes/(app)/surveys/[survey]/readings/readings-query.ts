@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { MAX_ORDER } from '$lib/harmonics/intervals';
+import { PHASES } from '$lib/recording/phase';
 import { READING_VIEW_NAMES } from '$lib/server/read-models/readings/reading-views';
 
 /** What the address asks for. Whatever is not understood falls back: an old link must still open. */
@@ -9,7 +10,9 @@ const query = z.object({
 	quantity: z.enum(['voltage', 'current']).catch('voltage'),
 	window: z.coerce.number().int().min(1).nullable().catch(null),
 	order: z.union([z.literal('total'), z.coerce.number().int().min(1).max(MAX_ORDER)]).catch('total'),
-	interval: z.enum(['window', '3s', '10min', '2h']).nullable().catch(null)
+	interval: z.enum(['window', '3s', '10min', '2h']).nullable().catch(null),
+	phase: z.enum(PHASES).nullable().catch(null),
+	scale: z.enum(['fundamental', 'limit']).nullable().catch(null)
 });
 
 export function parseReadingsQuery(parameters: URLSearchParams) {
@@ -20,6 +23,8 @@ export function parseReadingsQuery(parameters: URLSearchParams) {
 		quantity: given('quantity'),
 		window: given('window') === null || given('window') === 'all' ? null : given('window'),
 		order: given('order') ?? 'total',
-		interval: given('interval')
+		interval: given('interval'),
+		phase: given('phase'),
+		scale: given('scale')
 	});
 }
