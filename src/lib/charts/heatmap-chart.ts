@@ -87,7 +87,7 @@ export function buildHeatmapOption(
 	const isNarrow = size.width_px < 560;
 	return {
 		...chartBase(mode),
-		grid: { left: 64, right: 12, top: isNarrow ? 84 : 44, bottom: 46 },
+		grid: { left: 64, right: 12, top: isNarrow ? 96 : 62, bottom: 46 },
 		tooltip: {
 			...tooltipStyle(mode),
 			trigger: 'item',
@@ -123,31 +123,34 @@ export function buildHeatmapOption(
 				interval: (index: number) => {
 					const order = data.orders[index - 1];
 					if (order === undefined) return data.masked.includes(true);
-					return order % 10 === 5 || order % 10 === 0 || [3, 7, 11, 13].includes(order);
+					return order < 15 ? [3, 5, 7, 9, 11, 13].includes(order) : order % 5 === 0;
 				}
 			},
 			axisTick: { show: false }
 		},
-		visualMap: {
-			type: 'piecewise',
-			seriesIndex: 0,
-			orient: 'horizontal',
-			left: 0,
-			top: 0,
-			itemWidth: 16,
-			itemHeight: 12,
-			itemGap: 10,
-			textGap: 5,
-			textStyle: legendStyle(mode).textStyle,
-			selectedMode: mode === 'print' ? false : 'multiple',
-			pieces: pieces.map(({ from, to, label }, i) => ({
-				gte: from,
-				...(Number.isFinite(to) ? { lt: to } : {}),
-				label,
-				color: i < 5 ? STEPS[mode][i]! : OVER[mode]
-			})),
-			outOfRange: { color: palette.ground }
-		},
+		visualMap: [
+			{
+				type: 'piecewise',
+				seriesIndex: 0,
+				orient: 'horizontal',
+				left: 0,
+				top: 0,
+				itemWidth: 16,
+				itemHeight: 12,
+				itemGap: 10,
+				textGap: 5,
+				textStyle: legendStyle(mode).textStyle,
+				selectedMode: mode === 'print' ? false : 'multiple',
+				pieces: pieces.map(({ from, to, label }, i) => ({
+					gte: from,
+					...(Number.isFinite(to) ? { lt: to } : {}),
+					label,
+					color: i < 5 ? STEPS[mode][i]! : OVER[mode]
+				})),
+				outOfRange: { color: palette.ground }
+			},
+			{ show: false, type: 'piecewise', seriesIndex: 1, pieces: [{ value: 0, color: palette.slate }] }
+		],
 		series: [
 			{
 				type: 'heatmap',
@@ -161,7 +164,6 @@ export function buildHeatmapOption(
 				name: 'flagged',
 				data: marked,
 				progressive: 0,
-				itemStyle: { color: palette.slate },
 				emphasis: { disabled: true }
 			}
 		]
