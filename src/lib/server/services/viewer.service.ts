@@ -49,7 +49,7 @@ export function createViewerService({ db, blobs, jobs }: ServiceDeps) {
 			.where({ practice_id: actor.practiceId, dedupe_key: pyramidKey(captureId) })
 			.first('id', 'status');
 		const isOpen = last !== undefined && last.status !== 'done';
-		const id = isOpen ? last.id : (await queue(actor, capture.survey_id, captureId));
+		const id = isOpen ? last.id : await queue(actor, capture.survey_id, captureId);
 		return jobs.state(actor.practiceId, id);
 	}
 
