@@ -126,7 +126,9 @@ export class Viewer {
 		this.shown = next;
 		if (next.every((one) => this.fetched.includes(one))) return;
 		this.store.close();
-		this.fetched = [...new Set([...this.fetched, ...next])].sort((a, b) => a - b);
+		this.fetched = [...this.fetched, ...next.filter((one) => !this.fetched.includes(one))].sort(
+			(a, b) => a - b
+		);
 		this.store = this.newStore();
 		this.arrivals++;
 	}
