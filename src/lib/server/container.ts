@@ -31,11 +31,8 @@ import { createCapturesService } from './services/captures.service';
 import { createChecksService } from './services/checks.service';
 import { createReadingsService } from './services/readings.service';
 import { createTablesService } from './services/tables.service';
-<<<<<<< HEAD
 import { createReceivingService } from './services/receiving.service';
-=======
 import { createViewerService } from './services/viewer.service';
->>>>>>> c0aee28 (Look at every sample: least and greatest at each zoom made at intake, served as tiles, drawn on one time axis)
 import { createUploadsService } from './services/uploads.service';
 import { openBlobStore } from './storage/open-blob-store';
 
