@@ -336,12 +336,12 @@ function writtenOut(times: SeriesTimes, start_s: number): Float64Array | { fault
 	return out;
 }
 
-/** The middle one of the steps; null for fewer than two times. */
+/** The middle one of the steps, the shorter one of two; null for fewer than two times. */
 function usualStep(times: Float64Array): number | null {
 	if (times.length < 2) return null;
 	const steps = times.subarray(1, 1001).map((time, index) => time - times[index]!);
 	steps.sort();
-	return steps[Math.floor(steps.length / 2)]!;
+	return steps[(steps.length - 1) >> 1]!;
 }
 
 /** Whole seconds where rounding hides them. */
