@@ -177,7 +177,7 @@ describe('frequency and rate', () => {
 		expect(found.map((r) => [r.code, r.severity])).toEqual(
 			expect.arrayContaining([
 				['wrong-nominal-frequency', 'blocks'],
-				['wrong-nominal-frequency', 'warns']
+				['stated-frequency-differs', 'warns']
 			])
 		);
 	});

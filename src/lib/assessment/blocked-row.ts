@@ -12,6 +12,13 @@ export function blockOn(
 	return blocked.find((one) => one.quantity === quantity && one.phase === phase) ?? null;
 }
 
+const LEAD = 'Not assessed, because the capture cannot be relied on:';
+
+/** Whether a row, also one read back from a stored assessment, was left without a verdict by a finding about its capture. */
+export function isBlockedRow({ verdict, reason }: Pick<VerdictRow, 'verdict' | 'reason'>): boolean {
+	return verdict === 'not-assessed' && reason.startsWith(LEAD);
+}
+
 /** One item on a blocked conductor: no value is shown, because none may be relied on. */
 export function blockedRow(
 	table: LimitTable,
@@ -39,6 +46,6 @@ export function blockedRow(
 		flaggedCount: 0,
 		worstPeriod: null,
 		verdict: 'not-assessed',
-		reason: `Not assessed, because the capture cannot be relied on: ${sentence}`
+		reason: `${LEAD} ${sentence}`
 	};
 }

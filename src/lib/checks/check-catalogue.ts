@@ -93,7 +93,7 @@ export const SIGNAL_CHECKS: readonly CheckEntry[] = [
 	{
 		code: 'wrong-nominal-frequency',
 		title: 'Frequency',
-		remarks: ['frequency-out-of-range', 'wrong-nominal-frequency'],
+		remarks: ['frequency-out-of-range', 'wrong-nominal-frequency', 'stated-frequency-differs'],
 		passes: 'The measured frequency is that of the point.',
 		advice: 'Correct the nominal frequency of the point, or check the sampling rate that the file states.',
 		picture: 'frequency',

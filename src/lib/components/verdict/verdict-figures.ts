@@ -15,6 +15,8 @@ export interface HeadlineInput {
 	headline: { tdd: PhaseValue[]; currentThd: PhaseValue[]; voltageThd: PhaseValue[] };
 	totalLimits: TotalLimit[];
 	overLimit: string[];
+	/** Quantities with a conductor that a check of its capture blocks. */
+	blockedQuantities: readonly ('voltage' | 'current')[];
 	demandCurrent_A: number | null;
 	phaseNames: PhaseNames;
 }
@@ -34,6 +36,7 @@ export function headlineFigures({
 	headline,
 	totalLimits,
 	overLimit,
+	blockedQuantities,
 	demandCurrent_A,
 	phaseNames
 }: HeadlineInput) {
@@ -54,6 +57,8 @@ export function headlineFigures({
 			tone: over ? ('exceeds' as const) : ('plain' as const)
 		};
 	};
+	const absentBecause = (quantity: TotalLimit['quantity'], otherwise: string) =>
+		blockedQuantities.includes(quantity) ? 'blocked by a check' : otherwise;
 	const limitOf = (quantity: TotalLimit['quantity'], index: TotalLimit['index']) =>
 		totalLimits.find((limit) => limit.quantity === quantity && limit.index === index);
 	return [
@@ -61,15 +66,20 @@ export function headlineFigures({
 			'Current TDD, of I_L',
 			headline.tdd,
 			limitOf('current', 'TDD'),
-			'needs a demand current and currents'
+			absentBecause('current', 'needs a demand current and currents')
 		),
 		figure(
 			'Current THD, of the fundamental',
 			headline.currentThd,
 			limitOf('current', 'THD'),
-			'no currents recorded'
+			absentBecause('current', 'no currents recorded')
 		),
-		figure('Voltage THD', headline.voltageThd, limitOf('voltage', 'THD'), 'no voltages recorded'),
+		figure(
+			'Voltage THD',
+			headline.voltageThd,
+			limitOf('voltage', 'THD'),
+			absentBecause('voltage', 'no voltages recorded')
+		),
 		{
 			label: 'Demand current I_L',
 			value: demandCurrent_A === null ? null : formatCurrent(demandCurrent_A)

@@ -78,7 +78,7 @@ export function findFrequencyFaults(
 	if (stated_Hz !== null && stated_Hz > 0 && Math.abs(measured_Hz / stated_Hz - 1) > 0.1) {
 		remarks.push({
 			severity: 'warns',
-			code: 'wrong-nominal-frequency',
+			code: 'stated-frequency-differs',
 			channelIndex: null,
 			sentence:
 				`The file states ${stated_Hz} Hz, its signals run at ${measured_Hz.toFixed(3)} Hz; the measured value is used ` +

@@ -1,4 +1,5 @@
 import type { Assessment, VerdictRow } from '../../assessment/assessment';
+import { isBlockedRow } from '../../assessment/blocked-row';
 import { engineerSentence } from '../../assessment/verdict-sentence';
 import type { RecordedCheck } from '../../checks/recorded-check';
 import { applicableSets } from '../../limits/applicable-sets';
@@ -52,6 +53,8 @@ export interface VerdictPage {
 				limitSetReason: string;
 				overLimit: string[];
 				totalLimits: { index: 'THD' | 'TDD'; quantity: 'voltage' | 'current'; limit_pct: number }[];
+				/** Quantities of which at least one conductor has no verdict because a check blocks it. */
+				blockedQuantities: ('voltage' | 'current')[];
 				/** What the rows' uncertainty budgets are made from; null on assessments made before there were any. */
 				measuringChain: MeasuringChain | null;
 				/** What the checks of the captures said when it was made; null on assessments made before there were any. */
@@ -186,6 +189,7 @@ function assessmentView(
 		limitSetReason: input.limitSet.reason,
 		overLimit: overLimit(rows),
 		totalLimits: totalLimits(rows),
+		blockedQuantities: [...new Set(rows.filter(isBlockedRow).map(({ quantity }) => quantity))],
 		measuringChain: input.measuringChain ?? null,
 		checks: input.checks?.filter(({ outcome }) => outcome !== 'passes') ?? null
 	};
