@@ -6,6 +6,7 @@ import {
 	axisTextStyle,
 	categoryAxisStyle,
 	chartBase,
+	legendStyle,
 	tooltipStyle,
 	type ChartMode,
 	type ChartPalette,
@@ -33,6 +34,13 @@ const TONE: Record<SpansData['spans'][number]['tone'], keyof ChartPalette> = {
 	attention: 'ochre',
 	bad: 'oxide'
 };
+/** What each colour says, in the order of the legend. */
+const TONE_WORDS: Record<SpansData['spans'][number]['tone'], string> = {
+	plain: 'recorded',
+	good: 'in order',
+	attention: 'to be looked at',
+	bad: 'fault'
+};
 /** A span is drawn at least this wide, so that a second in a week is still seen. */
 const LEAST_PX = 3;
 
@@ -40,9 +48,16 @@ export function spanRows(data: SpansData): string[] {
 	return [...new Set(data.spans.map(({ row }) => row))];
 }
 
+/** Tones that occur, in the order of the legend. */
+function tonesOf({ spans }: SpansData) {
+	return (['plain', 'good', 'attention', 'bad'] as const).filter((tone) =>
+		spans.some((span) => span.tone === tone)
+	);
+}
+
 /** Height that gives every row its line. */
 export function spansHeight_px(data: SpansData): number {
-	return 96 + 34 * Math.max(1, spanRows(data).length);
+	return 126 + 34 * Math.max(1, spanRows(data).length);
 }
 
 export function buildSpansOption(data: SpansData, mode: ChartMode, size: ChartSize): EChartsOption {
@@ -55,10 +70,16 @@ export function buildSpansOption(data: SpansData, mode: ChartMode, size: ChartSi
 	const [first, last] = [Math.min(...instants), Math.max(...instants)];
 	const margin = Math.max(1000, (last - first) * 0.04);
 	const text = instantText(data.timeZone, last - first);
+	const tones = tonesOf(data);
 	const labelWidth = size.width_px < 480 ? 84 : 150;
 	return {
 		...chartBase(mode),
-		grid: { left: labelWidth + 12, right: 16, top: 30, bottom: 42 },
+		legend: {
+			...legendStyle(mode),
+			selectedMode: false,
+			data: tones.map((tone) => ({ name: TONE_WORDS[tone], icon: 'rect' }))
+		},
+		grid: { left: labelWidth + 12, right: 16, top: 60, bottom: 42 },
 		tooltip: {
 			...tooltipStyle(mode),
 			trigger: 'item',
@@ -111,7 +132,14 @@ export function buildSpansOption(data: SpansData, mode: ChartMode, size: ChartSi
 					},
 					data: data.marks.map(({ at_ms, label }) => ({ xAxis: at_ms, name: label }))
 				}
-			}
+			},
+			// Spans carry their own colours; these are there for the legend alone.
+			...tones.map((tone) => ({
+				type: 'bar' as const,
+				name: TONE_WORDS[tone],
+				color: palette[TONE[tone]],
+				data: []
+			}))
 		]
 	};
 }

@@ -8,6 +8,8 @@ import { captureSurvey } from '../read-models/capture-list';
 import { READING_VIEWS, type ReadingView } from '../read-models/readings/reading-views';
 import { readings, type Readings, type ReadingsQuestion } from '../read-models/readings/readings';
 import { analysesRepository } from '../repositories/analyses.repository';
+import type { Overrule } from '../../checks/overrule';
+import { checkOverrulesRepository } from '../repositories/check-overrules.repository';
 import { capturesRepository } from '../repositories/captures.repository';
 import { scopeOf } from '../repositories/scope';
 import type { ServiceDeps } from '../service-deps';
@@ -23,7 +25,11 @@ export interface ReadingsPage {
 	view: ReadingView;
 	views: typeof READING_VIEWS;
 	readings: Readings | null;
+	/** Remarks of the capture shown that an engineer has overruled. */
+	overruled: OverruledRemark[];
 }
+
+export type OverruledRemark = Pick<Overrule, 'code' | 'channelIndex' | 'sentence' | 'reason' | 'by'>;
 
 /** Figures of one capture, as the readings page and the waveform view ask for them. */
 export function createReadingsService({ db, blobs }: ServiceDeps) {
@@ -44,6 +50,7 @@ export function createReadingsService({ db, blobs }: ServiceDeps) {
 		const shown = captures.find((row) => row.id === captureId) ?? captures[0];
 		if (captureId !== null && shown?.id !== captureId && !rows.some((row) => row.id === captureId))
 			throw new AppError('not-found', 'This capture does not exist, or you have no access to it.');
+		const overrules = await checkOverrulesRepository(db, scope).ofSurvey(survey.id);
 		return {
 			survey: {
 				id: survey.id,
@@ -58,7 +65,10 @@ export function createReadingsService({ db, blobs }: ServiceDeps) {
 			captureId: shown?.id ?? null,
 			view: asked.view,
 			views: READING_VIEWS,
-			readings: shown ? await readings(db, blobs, scope, survey, shown, asked) : null
+			readings: shown ? await readings(db, blobs, scope, survey, shown, asked) : null,
+			overruled: overrules
+				.filter((one) => one.captureId === shown?.id && one.takenBackAt === null)
+				.map(({ code, channelIndex, sentence, reason, by }) => ({ code, channelIndex, sentence, reason, by }))
 		};
 	}
 
