@@ -57,8 +57,10 @@ describe('spans', () => {
 	});
 	it('explains the colours that occur, and no other', () => {
 		const svg = renderChartSvg(buildSpansOption(data, 'print', SIZE), SIZE);
-		expect(svg).toContain('>fault<');
+		// The row's name and the legend's entry: once each.
+		expect(svg.match(/>missing</g)).toHaveLength(2);
 		expect(svg).not.toContain('>to be looked at<');
+		expect(svg).not.toContain('>counts<');
 		expect(svg).toContain('>uploaded<');
 	});
 	it('writes instants in the zone of the site', () => {

@@ -34,12 +34,12 @@ const TONE: Record<SpansData['spans'][number]['tone'], keyof ChartPalette> = {
 	attention: 'ochre',
 	bad: 'oxide'
 };
-/** What each colour says, in the order of the legend. */
+/** What a colour says where its spans have no label in common. */
 const TONE_WORDS: Record<SpansData['spans'][number]['tone'], string> = {
-	plain: 'recorded',
-	good: 'in order',
+	plain: 'one capture each',
+	good: 'counts',
 	attention: 'to be looked at',
-	bad: 'fault'
+	bad: 'at fault'
 };
 /** A span is drawn at least this wide, so that a second in a week is still seen. */
 const LEAST_PX = 3;
@@ -48,11 +48,13 @@ export function spanRows(data: SpansData): string[] {
 	return [...new Set(data.spans.map(({ row }) => row))];
 }
 
-/** Tones that occur, in the order of the legend. */
-function tonesOf({ spans }: SpansData) {
-	return (['plain', 'good', 'attention', 'bad'] as const).filter((tone) =>
-		spans.some((span) => span.tone === tone)
-	);
+/** Tones that occur, in the order of the legend, each with the label that all its spans share. */
+function legendOf({ spans }: SpansData) {
+	return (['plain', 'good', 'attention', 'bad'] as const).flatMap((tone) => {
+		const labels = new Set(spans.filter((span) => span.tone === tone).map(({ label }) => label));
+		if (labels.size === 0) return [];
+		return [{ tone, word: labels.size === 1 ? [...labels][0]! : TONE_WORDS[tone] }];
+	});
 }
 
 /** Height that gives every row its line. */
@@ -70,14 +72,14 @@ export function buildSpansOption(data: SpansData, mode: ChartMode, size: ChartSi
 	const [first, last] = [Math.min(...instants), Math.max(...instants)];
 	const margin = Math.max(1000, (last - first) * 0.04);
 	const text = instantText(data.timeZone, last - first);
-	const tones = tonesOf(data);
+	const legend = legendOf(data);
 	const labelWidth = size.width_px < 480 ? 84 : 150;
 	return {
 		...chartBase(mode),
 		legend: {
 			...legendStyle(mode),
 			selectedMode: false,
-			data: tones.map((tone) => ({ name: TONE_WORDS[tone], icon: 'rect' }))
+			data: legend.map(({ word }) => ({ name: word, icon: 'rect' }))
 		},
 		grid: { left: labelWidth + 12, right: 16, top: 60, bottom: 42 },
 		tooltip: {
@@ -134,9 +136,9 @@ export function buildSpansOption(data: SpansData, mode: ChartMode, size: ChartSi
 				}
 			},
 			// Spans carry their own colours; these are there for the legend alone.
-			...tones.map((tone) => ({
+			...legend.map(({ tone, word }) => ({
 				type: 'bar' as const,
-				name: TONE_WORDS[tone],
+				name: word,
 				color: palette[TONE[tone]],
 				data: []
 			}))
