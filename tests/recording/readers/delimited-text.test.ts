@@ -64,6 +64,14 @@ describe('headings of samples', () => {
 	])('%s', (text, name, unit) => expect(splitHeading(text)).toEqual({ name, unit }));
 });
 
+describe('headings that damage has filled with blanks', () => {
+	it('are split without trying every division of the blanks', () => {
+		const text = `U_L1${' '.repeat(200_000)}x`;
+		expect(splitHeading(text)).toEqual({ name: 'U_L1 x', unit: '' });
+		expect(parseTrendHeading(text, 'V')).toBeTruthy();
+	});
+});
+
 describe('headings of logs', () => {
 	const meaning = (name: string, unit: string) => {
 		const parsed = parseTrendHeading(name, unit);

@@ -51,12 +51,17 @@ export function withoutBrackets(text: string): string {
 		.trim();
 }
 
+/** One blank for every run of them: damage can leave thousands, over which patterns would take forever. */
+export function singleBlanks(text: string): string {
+	return text.replace(/\s+/g, ' ').trim();
+}
+
 /**
  * "V1 (V)", "I_L1 [mA]", "t[ms]", "U1 / kV", "Va_V". A single symbol with a letter ("I_A") is a conductor's
  * name and not a unit.
  */
 export function splitHeading(text: string): Heading {
-	const plain = text.trim().replace(/^"|"$/g, '').trim();
+	const plain = singleBlanks(text).replace(/^"|"$/g, '').trim();
 	const bracketed = /^(.*?)\s*[([]\s*([^()[\]]*)\s*[)\]]\s*$/.exec(plain);
 	if (bracketed !== null && isUnitWord(bracketed[2] ?? ''))
 		return { name: bracketed[1] ?? '', unit: (bracketed[2] ?? '').trim() };

@@ -1,5 +1,6 @@
 import type { TrendSeries } from '../../recording';
 import { parseUnit } from '../../unit-text';
+import { singleBlanks } from './heading-text';
 import { quantityByName } from './quantity-name';
 
 /** What one column of a trend log tabulates. */
@@ -50,7 +51,7 @@ function isPercent(unit: string): boolean {
 /** The meaning of a heading, or the reason why it is left out. */
 export function parseTrendHeading(name: string, unit: string): TrendHeading | { leftOut: string } {
 	// Word marks inside "VAB_avg" and "Ia_min" are underscores, which count as letters in a pattern.
-	const text = name.replace(/_/g, ' ');
+	const text = singleBlanks(name.replace(/_/g, ' '));
 	if (OTHER_FIGURES.test(text)) return { leftOut: 'another kind of figure' };
 	const extreme = MINIMUM.test(text) ? 'minimum' : MAXIMUM.test(text) ? 'maximum' : null;
 	const plain = text.replace(AVERAGE, ' ').replace(MINIMUM, ' ').replace(MAXIMUM, ' ');
