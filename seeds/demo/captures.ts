@@ -1,5 +1,6 @@
 import type { CaptureFile } from '../../src/lib/recording/recording';
 import { writeComtrade } from '../../src/lib/synthesis/comtrade-writer';
+import { writePqdifTrend } from '../../src/lib/synthesis/pqdif-writer';
 import { writeDelimitedTrend, writeDelimitedWaveform } from '../../src/lib/synthesis/delimited-text-writer';
 import type { WaveformTruth } from '../../src/lib/synthesis/waveform';
 import { threePhaseChannels, type ThreePhaseTruth } from '../../src/lib/synthesis/waveform-three-phase';
@@ -69,7 +70,7 @@ const coldStore = (hour: number): number => 0.78 + 0.22 * Math.exp(-(((hour - 15
 
 export function bellwetherWeek(start: LocalStart): CaptureFile[] {
 	return [
-		writeDelimitedTrend(
+		writePqdifTrend(
 			weekTrend({
 				startLocal: start.local,
 				utcOffset_min: start.utcOffset_min,
@@ -85,7 +86,7 @@ export function bellwetherWeek(start: LocalStart): CaptureFile[] {
 				withNeutral: true,
 				seed: 142
 			}),
-			{ stem: 'HarrowDock4_week_10min', digits: 5 }
+			{ stem: 'HarrowDock4_week_10min', compression: 'records', nominalFrequency_Hz: 60 }
 		)
 	];
 }

@@ -37,8 +37,10 @@ function dcNotes(point: AssessedPoint, phases: PhaseData[]): string[] {
 function flaggedNotes(phases: PhaseData[]): string[] {
 	const most = phases.reduce((count, data) => Math.max(count, data.flaggedCount), 0);
 	if (most === 0) return [];
-	const what = most === 1 ? 'interval was' : 'intervals were';
-	return [`${most} flagged ${what} (dip, swell or interruption) left out of every percentile on a phase.`];
+	const [what, were] = most === 1 ? ['interval', 'was'] : ['intervals', 'were'];
+	return [
+		`${most} flagged ${what} (dip, swell or interruption) ${were} left out of every percentile on a phase.`
+	];
 }
 
 function neutralNotes(phases: PhaseData[]): string[] {
