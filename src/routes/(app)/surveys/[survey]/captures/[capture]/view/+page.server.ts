@@ -32,7 +32,9 @@ export const load = guard('capture.read', async (event: PageServerLoadEvent, act
 
 export const actions = {
 	prepare: guard('capture.write', async (event: RequestEvent, actor) => {
-		await container().services.viewer.prepareAgain(actor, event.params.capture);
+		const { viewer, captures } = container().services;
+		const { capture } = await captures.detail(actor, event.params.survey, event.params.capture);
+		await viewer.prepareAgain(actor, capture.id);
 		redirect(303, event.url.pathname);
 	})
 };
