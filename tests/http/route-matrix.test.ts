@@ -185,8 +185,7 @@ describe.skipIf(buildMissing)('every route (skipped where build/ is missing: run
 	it.each(withIds.filter(({ audience }) => audience.includes('client')))(
 		"$title: another client's ids are as if they did not exist",
 		async (call) => {
-			for (const name of idsOf(call.routeId))
-				await expectUnknown(call, 'client', name, world.neighbours);
+			for (const name of idsOf(call.routeId)) await expectUnknown(call, 'client', name, world.neighbours);
 		}
 	);
 
