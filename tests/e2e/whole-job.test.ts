@@ -404,7 +404,10 @@ async function breakOffUpload(page: Page, files: ReturnType<typeof ownCapture>):
 	await line.send('Network.emulateNetworkConditions', slow);
 	await page.locator('input[type="file"]').setInputFiles(files);
 	// The configuration is small and there at once; the samples are under way.
-	await page.getByText(/sending, [1-9]/).waitFor();
+	await page
+		.getByText(/sending, [1-9].* of [\d.]+ MB/)
+		.first()
+		.waitFor();
 	await page.waitForTimeout(1500);
 	page.once('dialog', (dialog) => void dialog.accept());
 	await page.reload();
