@@ -376,7 +376,10 @@ function bySpacing(chunks: readonly Chunk[]): Map<number, Chunk[]> {
 		const isUsualWithGaps =
 			own > usual && chunk.values.length < 6 && Math.abs(own / usual - Math.round(own / usual)) < 0.02;
 		const spacing = isUsualWithGaps ? usual : own;
-		groups.set(spacing, [...(groups.get(spacing) ?? []), chunk]);
+		// Appended in place: a log with one value in each observation has as many chunks as intervals.
+		const group = groups.get(spacing);
+		if (group === undefined) groups.set(spacing, [chunk]);
+		else group.push(chunk);
 	}
 	return groups;
 }
