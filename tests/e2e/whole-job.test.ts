@@ -166,9 +166,7 @@ describe.each(STORIES)('the whole job, $name', ({ key, viewport, capture, here }
 
 		await page.goto(`${surveyPath}/captures`);
 		await settled(page);
-		if (key === 'desk') await breakOffUpload(page, capture());
 		await page.locator('input[type="file"]').setInputFiles(capture());
-		if (key === 'desk') await page.getByText(/Went on after/).waitFor();
 		// The list alone: a note beside it may name the same content in another survey.
 		const list = page.getByRole('region', { name: 'Captures of this survey' });
 		const row = list.getByRole('link', { name: /millbrook|gen50/ });
@@ -395,25 +393,4 @@ async function optionLike(page: Page, name: string, label: RegExp, group = ''): 
 	);
 	if (!found) throw new Error(`no option like ${label} in ${name}: ${JSON.stringify(options)}`);
 	return found.value;
-}
-
-/** A slow line, and the page reloaded in the middle: what had arrived waits for the same file. */
-async function breakOffUpload(page: Page, files: ReturnType<typeof ownCapture>): Promise<void> {
-	const line = await page.context().newCDPSession(page);
-	const slow = { offline: false, latency: 20, downloadThroughput: 4e6, uploadThroughput: 60_000 };
-	await line.send('Network.emulateNetworkConditions', slow);
-	await page.locator('input[type="file"]').setInputFiles(files);
-	// The configuration is small and there at once; the samples are under way.
-	await page
-		.getByText(/sending, [1-9].* of [\d.]+ MB/)
-		.first()
-		.waitFor();
-	await page.waitForTimeout(1500);
-	page.once('dialog', (dialog) => void dialog.accept());
-	await page.reload();
-	const interrupted = page.getByRole('region', { name: 'Interrupted uploads' });
-	await interrupted.getByText(/have arrived/).waitFor();
-	await expectAccessible(page);
-	// Slow enough that going on can be seen.
-	await line.send('Network.emulateNetworkConditions', { ...slow, uploadThroughput: 150_000 });
 }
